@@ -1,0 +1,1 @@
+"""Composition root: the window and the command line."""

@@ -1,0 +1,1 @@
+"""The laws: pure mathematics on numbers and arrays, numpy only."""

@@ -1,0 +1,1 @@
+"""Content of each paper, one module per paper."""
