@@ -38,7 +38,7 @@ def qapp(qapp_args: list[str], pytestconfig: pytest.Config, tmp_path_factory: py
     from PySide6.QtGui import QFont, QFontDatabase
     from PySide6.QtWidgets import QApplication
 
-    from kitplanner.app.paths import resource
+    from kitplanner.plan.shipped import resource
 
     QStandardPaths.setTestModeEnabled(True)
     QLocale.setDefault(QLocale.c())

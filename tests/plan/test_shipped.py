@@ -4,23 +4,23 @@ from __future__ import annotations
 
 import pytest
 
-from kitplanner.app import paths
+from kitplanner.plan import shipped
 
 
 @pytest.mark.parametrize("name", ["fonts/DejaVuSans.ttf", "fonts/DejaVuSans-Bold.ttf", "LICENSE.txt"])
 def test_resource_is_there(name: str) -> None:
-    assert paths.resource(name).stat().st_size > 500
+    assert shipped.resource(name).stat().st_size > 500
 
 
 @pytest.mark.parametrize("name", ["nothing.txt", "../pyproject.toml", "../kitplanner/__init__.py"])
 def test_missing_or_outside_resource_is_refused(name: str) -> None:
-    with pytest.raises(paths.MissingFileError, match="install the program again"):
-        paths.resource(name)
+    with pytest.raises(shipped.MissingFileError, match="install the program again"):
+        shipped.resource(name)
 
 
-@pytest.mark.parametrize("name", paths.DEMOS)
+@pytest.mark.parametrize("name", shipped.DEMOS)
 def test_every_demo_is_there(name: str) -> None:
-    path = paths.demo(name)
+    path = shipped.demo(name)
     assert path.suffix == ".kitplan"
     assert path.stat().st_size > 500
 
@@ -30,7 +30,7 @@ def test_installed_copy_wins_over_checkout(tmp_path, monkeypatch) -> None:
     for folder in (package / "_resources", tmp_path / "resources"):
         folder.mkdir(parents=True)
         (folder / "a.txt").write_text(folder.name)
-    monkeypatch.setattr(paths, "PACKAGE", package)
-    assert paths.resource("a.txt").read_text() == "_resources"
+    monkeypatch.setattr(shipped, "PACKAGE", package)
+    assert shipped.resource("a.txt").read_text() == "_resources"
     (package / "_resources" / "a.txt").unlink()
-    assert paths.resource("a.txt").read_text() == "resources"
+    assert shipped.resource("a.txt").read_text() == "resources"
