@@ -6,13 +6,13 @@ the old one (`plan/edits.py`), so undo is a reference and a planner sees by iden
 Units are in the names (`_w _wh _min _v _a _ohm _rpm _nm _degc`); `eta*` and `*_fraction` run from 0 to 1.
 `None` always means "use the default", and the default is in `plan/fields.py` with its source, or in the
 law that needs it; the file leaves out None and empty collections and spells out everything else, so a
-later change of a default never changes an old plan. Clock times are text "HH:MM" from 00:00 to 24:00; a window whose end is before its
-start crosses midnight.
+later change of a default never changes an old plan. Clock times are text "HH:MM" from 00:00 to 24:00; a
+window whose end is before its start crosses midnight.
 """
 
 from __future__ import annotations
 
-import datetime
+import datetime as dt
 from typing import Annotated, Literal
 
 from msgspec import Meta, Struct
@@ -33,10 +33,10 @@ Mark = Literal["measured", "default", "guidance", "guess", "own", "demo"]
 
 
 class Record(Struct, frozen=True, kw_only=True, forbid_unknown_fields=True):
-    """Base of every record: frozen, keyword-only, unknown keys refused."""
+    """Base of every record: frozen, unknown keys refused."""
 
 
-class Note(Record):
+class Note(Record, frozen=True):
     """Where one value of a record comes from, kept only where it differs from its FieldSpec."""
 
     mark: Mark = "own"
@@ -44,14 +44,14 @@ class Note(Record):
     spread_fraction: float | None = None
 
 
-class Window(Record):
+class Window(Record, frozen=True):
     """A part of the day; an end before the start crosses midnight."""
 
     start: ClockTime
     end: ClockTime
 
 
-class TemperaturePart(Record):
+class TemperaturePart(Record, frozen=True):
     """Temperature in one part of one day (day 0: every day), overriding `Conditions.air_degc`."""
 
     id: str
@@ -64,7 +64,7 @@ class TemperaturePart(Record):
     notes: dict[str, Note] = {}
 
 
-class Conditions(Record):
+class Conditions(Record, frozen=True):
     """Surroundings and the switches for rules that depend on them."""
 
     air_degc: float = 20.0
@@ -76,7 +76,7 @@ class Conditions(Record):
     notes: dict[str, Note] = {}
 
 
-class Block(Record):
+class Block(Record, frozen=True):
     """Time in which nobody of the named groups works (empty `groups`: all; empty `days`: every day)."""
 
     id: str
@@ -88,7 +88,7 @@ class Block(Record):
     notes: dict[str, Note] = {}
 
 
-class Group(Record):
+class Group(Record, frozen=True):
     """A set of people that blocks can name."""
 
     id: str
@@ -96,7 +96,7 @@ class Group(Record):
     notes: dict[str, Note] = {}
 
 
-class Person(Record):
+class Person(Record, frozen=True):
     """One person: how many watts, for how long, when and where; never a reason for a limit."""
 
     id: str
@@ -123,7 +123,7 @@ class Person(Record):
     notes: dict[str, Note] = {}
 
 
-class Machine(Record):
+class Machine(Record, frozen=True):
     """Permanent-magnet DC machine used as a generator."""
 
     ke_v_s: float
@@ -134,7 +134,7 @@ class Machine(Record):
     notes: dict[str, Note] = {}
 
 
-class Gear(Record):
+class Gear(Record, frozen=True):
     """Step-up gear between handle and machine."""
 
     ratio: float
@@ -143,7 +143,7 @@ class Gear(Record):
     notes: dict[str, Note] = {}
 
 
-class DiodeStage(Record, tag_field="kind", tag="diode"):
+class DiodeStage(Record, frozen=True, tag_field="kind", tag="diode"):
     """One or more diodes in series with the current (1 blocking diode, 2 a bridge)."""
 
     id: str
@@ -155,7 +155,7 @@ class DiodeStage(Record, tag_field="kind", tag="diode"):
     notes: dict[str, Note] = {}
 
 
-class SynchronousStage(Record, tag_field="kind", tag="synchronous"):
+class SynchronousStage(Record, frozen=True, tag_field="kind", tag="synchronous"):
     """Transistors that replace diodes."""
 
     id: str
@@ -166,7 +166,7 @@ class SynchronousStage(Record, tag_field="kind", tag="synchronous"):
     notes: dict[str, Note] = {}
 
 
-class LinearStage(Record, tag_field="kind", tag="linear"):
+class LinearStage(Record, frozen=True, tag_field="kind", tag="linear"):
     """Adjustable three-terminal linear regulator set by a divider."""
 
     id: str
@@ -184,7 +184,7 @@ class LinearStage(Record, tag_field="kind", tag="linear"):
     notes: dict[str, Note] = {}
 
 
-class ConverterStage(Record, tag_field="kind", tag="converter"):
+class ConverterStage(Record, frozen=True, tag_field="kind", tag="converter"):
     """Switching converter with the loss law (a0 + a1 V) + (b0 + b1 V) I + c I^2."""
 
     id: str
@@ -201,7 +201,7 @@ class ConverterStage(Record, tag_field="kind", tag="converter"):
     notes: dict[str, Note] = {}
 
 
-class CableStage(Record, tag_field="kind", tag="cable"):
+class CableStage(Record, frozen=True, tag_field="kind", tag="cable"):
     """Cable and contacts: a resistance, or a wire size and length it follows from."""
 
     id: str
@@ -216,7 +216,7 @@ class CableStage(Record, tag_field="kind", tag="cable"):
     notes: dict[str, Note] = {}
 
 
-class LossStage(Record, tag_field="kind", tag="loss"):
+class LossStage(Record, frozen=True, tag_field="kind", tag="loss"):
     """Any other step known only by its efficiency; volts pass, amps shrink."""
 
     id: str
@@ -228,7 +228,7 @@ class LossStage(Record, tag_field="kind", tag="loss"):
 Stage = DiodeStage | SynchronousStage | LinearStage | ConverterStage | CableStage | LossStage
 
 
-class TestLoad(Record):
+class TestLoad(Record, frozen=True):
     """What the bench hangs on the station: a charger and a cell. Effort uses the device's own."""
 
     charger_eta: float = 0.90
@@ -240,7 +240,7 @@ class TestLoad(Record):
     notes: dict[str, Note] = {}
 
 
-class Station(Record):
+class Station(Record, frozen=True):
     """A crank or pedal place with an output socket, described by measurement, label or parts."""
 
     id: str
@@ -275,7 +275,7 @@ class Station(Record):
     notes: dict[str, Note] = {}
 
 
-class Store(Record):
+class Store(Record, frozen=True):
     """A battery between stations and devices; values are per unit, `count` units alike."""
 
     id: str
@@ -296,7 +296,7 @@ class Store(Record):
     notes: dict[str, Note] = {}
 
 
-class OtherSource(Record):
+class OtherSource(Record, frozen=True):
     """Energy that reaches the stores' input without anybody turning."""
 
     id: str
@@ -306,7 +306,7 @@ class OtherSource(Record):
     notes: dict[str, Note] = {}
 
 
-class Device(Record):
+class Device(Record, frozen=True):
     """Devices of one kind, `count` alike; `battery_wh` None means it runs only while fed."""
 
     id: str
@@ -341,7 +341,7 @@ class Device(Record):
     notes: dict[str, Note] = {}
 
 
-class ChargingPoint(Record):
+class ChargingPoint(Record, frozen=True):
     """An attended place where devices are charged."""
 
     id: str
@@ -353,7 +353,7 @@ class ChargingPoint(Record):
     notes: dict[str, Note] = {}
 
 
-class MedicalNeed(Record):
+class MedicalNeed(Record, frozen=True):
     """Powered medical equipment: power and hours only, kept outside the balance, never a person."""
 
     id: str
@@ -364,7 +364,7 @@ class MedicalNeed(Record):
     notes: dict[str, Note] = {}
 
 
-class PackItem(Record):
+class PackItem(Record, frozen=True):
     """Something that could be packed."""
 
     id: str
@@ -372,7 +372,7 @@ class PackItem(Record):
     notes: dict[str, Note] = {}
 
 
-class LogEntry(Record):
+class LogEntry(Record, frozen=True):
     """One line of the day's paper log."""
 
     id: str
@@ -380,7 +380,7 @@ class LogEntry(Record):
     notes: dict[str, Note] = {}
 
 
-class Rota(Record):
+class Rota(Record, frozen=True):
     """An adopted rota."""
 
     id: str
@@ -388,14 +388,14 @@ class Rota(Record):
     notes: dict[str, Note] = {}
 
 
-class Plan(Record):
+class Plan(Record, frozen=True):
     """The whole document: one household, camp, shelter or bench."""
 
     format: str = FORMAT
     version: int = VERSION
     title: str = ""
     place: str = ""
-    start: datetime.date = datetime.date(2026, 1, 1)
+    start: dt.date = dt.date(2026, 1, 1)
     days: int = 3
     margin_fraction: float = 0.15
     seed: int = 1
