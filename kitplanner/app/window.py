@@ -4,9 +4,10 @@ from __future__ import annotations
 
 import os
 import sys
+from dataclasses import dataclass
 from pathlib import Path
 
-from PySide6.QtCore import QLibraryInfo, QObject, QStandardPaths, Qt, QThread, Signal, Slot
+from PySide6.QtCore import QLibraryInfo, QObject, QStandardPaths, Qt, Signal, Slot
 from PySide6.QtWidgets import QApplication, QMessageBox
 
 from kitplanner import __version__
@@ -20,7 +21,7 @@ from kitplanner.ui.main_window import MainWindow
 
 APPLICATION = "Kitplanner"
 DESKTOP_FILE = "org.kitplanner.Kitplanner"
-EXIT_UNREADABLE = 2
+EXIT_CANNOT_OPEN = 2
 
 
 class FaultReporter(QObject):
@@ -65,13 +66,24 @@ def make_application(arguments: list[str]) -> QApplication:
     return app
 
 
-def run(path: Path | None) -> int:
-    """Open the window on a plan and stay until it is closed; return the exit code."""
-    plugins = Path(QLibraryInfo.path(QLibraryInfo.LibraryPath.PluginsPath)) / "platforms"
-    refusal = missing_plugin_library(os.environ, plugins)
-    if refusal is not None:
-        print(f"kitplanner: {refusal}", file=sys.stderr)
-        return EXIT_UNREADABLE
+@dataclass(frozen=True)
+class Desk:
+    """Everything that must live as long as the window."""
+
+    app: QApplication
+    document: PlanDocument
+    window: MainWindow
+    collector: WindowCollector
+
+
+def prepare(path: Path | None) -> Desk:
+    """Build the window on a plan, not yet shown.
+
+    Raises
+    ------
+    DocumentError
+        With one sentence, when the plan cannot be opened.
+    """
     app = make_application([APPLICATION])
     reporter = FaultReporter(app)
     notes = Path(QStandardPaths.writableLocation(QStandardPaths.StandardLocation.AppLocalDataLocation))
@@ -80,17 +92,29 @@ def run(path: Path | None) -> int:
     theme.apply(app, settings.scheme, settings.text_percent / 100)
     document = PlanDocument()
     if path is not None:
-        try:
-            document.open_file(path)
-        except DocumentError as error:
-            print(f"kitplanner: {error}", file=sys.stderr)
-            return EXIT_UNREADABLE
+        document.open_file(path)
     collector = WindowCollector(app)
     collector.start()
-    assert QThread.currentThread() is app.thread()
-    window = MainWindow(document, settings)
-    window.show()
-    code = app.exec()
-    collector.stop()
-    document.close()
+    return Desk(app, document, MainWindow(document, settings), collector)
+
+
+def run(path: Path | None) -> int:
+    """Open the window on a plan and stay until it is closed; return the exit code."""
+    plugins = Path(QLibraryInfo.path(QLibraryInfo.LibraryPath.PluginsPath)) / "platforms"
+    refusal = missing_plugin_library(os.environ, plugins)
+    if refusal is not None:
+        return _refuse(refusal)
+    try:
+        desk = prepare(path)
+    except DocumentError as error:
+        return _refuse(str(error))
+    desk.window.show()
+    code = desk.app.exec()
+    desk.collector.stop()
+    desk.document.close()
     return code
+
+
+def _refuse(sentence: str) -> int:
+    print(f"kitplanner: {sentence}", file=sys.stderr)
+    return EXIT_CANNOT_OPEN

@@ -1,0 +1,85 @@
+"""One process that shows one kind of window, prints the time of its first finished frame and ends.
+
+Called by bench_first_frame with the kind, the plan's path and the time at which the process was started, on the
+clock that all processes of the machine share.
+"""
+
+from __future__ import annotations
+
+import sys
+import time
+
+from PySide6.QtCore import QEvent, QObject, QTimer
+from PySide6.QtWidgets import QApplication, QMainWindow, QWidget
+
+GIVE_UP_MS = 20_000
+
+
+class FirstFrame(QObject):
+    """Ends the program after the event turn in which the awaited widget was first painted."""
+
+    def __init__(self, kind: str, start: float) -> None:
+        super().__init__()
+        self._kind = kind
+        self._start = start
+        self._seen = False
+
+    def eventFilter(self, watched: QObject, event: QEvent) -> bool:
+        if event.type() == QEvent.Type.Paint and not self._seen and self._is_awaited(watched):
+            self._seen = True
+            QTimer.singleShot(0, self._end)
+        return False
+
+    def _is_awaited(self, watched: QObject) -> bool:
+        if not isinstance(watched, QWidget):
+            return False
+        if self._kind in ("plot", "charts"):
+            pyqtgraph = sys.modules.get("pyqtgraph")
+            return pyqtgraph is not None and isinstance(watched.parent(), pyqtgraph.GraphicsView)
+        if self._kind == "window":
+            return type(watched).__name__ == "VerdictStrip"
+        return watched.isWindow()
+
+    def _end(self) -> None:
+        print(f"{(time.monotonic() - self._start) * 1000:.2f}", flush=True)
+        QApplication.exit(0)
+
+
+def bare() -> QMainWindow:
+    window = QMainWindow()
+    window.resize(1200, 800)
+    return window
+
+
+def plot() -> QMainWindow:
+    import pyqtgraph
+
+    window = bare()
+    widget = pyqtgraph.PlotWidget()
+    widget.plot([0.0, 1.0, 2.0, 3.0], [0.0, 1.0, 4.0, 9.0])
+    window.setCentralWidget(widget)
+    return window
+
+
+def main() -> int:
+    kind, plan, start = sys.argv[1], sys.argv[2], float(sys.argv[3])
+    watcher = FirstFrame(kind, start)
+    if kind in ("bare", "plot"):
+        app = QApplication([])
+        app.installEventFilter(watcher)
+        window = bare() if kind == "bare" else plot()
+    else:
+        from pathlib import Path
+
+        from kitplanner.app.window import prepare
+
+        desk = prepare(Path(plan))
+        app, window = desk.app, desk.window
+        app.installEventFilter(watcher)
+    QTimer.singleShot(GIVE_UP_MS, lambda: QApplication.exit(3))
+    window.show()
+    return app.exec()
+
+
+if __name__ == "__main__":
+    sys.exit(main())
