@@ -181,7 +181,9 @@ class EnergyFlow(Struct, frozen=True, kw_only=True):
 
     `people_m` and `stations_s` hold one band per station kind (same keys); `sources_s` other sources;
     `devices_d` one band per device category. `b_wh`, `o_wh` are what human and other sources bring into
-    store and out of it, `start_o_wh` what start charges add per day, `missing_o_wh` the gap (0 if none).
+    store and out of it, `start_o_wh` what start charges add per day, `missing_o_wh` the gap (0 if none),
+    `margin_o_wh` the planned margin and `spare_o_wh` what is left beyond it:
+    o_wh + start_o_wh + missing_o_wh = devices at O + margin_o_wh + spare_o_wh.
     """
 
     people_m: tuple[FlowBand, ...]
@@ -193,6 +195,8 @@ class EnergyFlow(Struct, frozen=True, kw_only=True):
     devices_d: tuple[FlowBand, ...]
     losses: tuple[FlowLoss, ...]
     missing_o_wh: float
+    margin_o_wh: float = 0.0
+    spare_o_wh: float = 0.0
 
 
 class BenchStage(Struct, frozen=True, kw_only=True):

@@ -96,11 +96,28 @@ def station_to_outlet_fraction(stores: Iterable[Store]) -> float:
     (0.765, 1.0)
     """
     lines = tuple(stores)
+    return _weighted(lines, [line.eta_in * line.eta_out for line in lines])
+
+
+def station_to_store_fraction(stores: Iterable[Store]) -> float:
+    """Return the share of a station's output that arrives in the cells of these stores; 1 without stores [-].
+
+    Examples
+    --------
+    >>> station_to_store_fraction([Store(id="b", name="bank", eta_in=0.9)])
+    0.9
+    """
+    lines = tuple(stores)
+    return _weighted(lines, [line.eta_in for line in lines])
+
+
+def _weighted(lines: tuple[Store, ...], fractions: list[float]) -> float:
+    """Return the mean of the fractions, weighted by usable capacity at full."""
     weights = [line.count * line.nominal_wh * line.health_fraction * (1.0 - line.floor_fraction) for line in lines]
-    if sum(weights) <= 0.0:
+    whole = sum(weights)
+    if whole <= 0.0:
         return 1.0
-    products = (weight * line.eta_in * line.eta_out for weight, line in zip(weights, lines, strict=True))
-    return sum(products) / sum(weights)
+    return sum(weight / whole * fraction for weight, fraction in zip(weights, fractions, strict=True))
 
 
 def fed_stores(plan: Plan, station: Station) -> tuple[Store, ...]:
