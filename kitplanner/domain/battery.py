@@ -186,7 +186,8 @@ def _steady_hours(span: FloatArray, rate_per_h: FloatArray) -> FloatArray:
     """Hours for a span at a constant rate; infinite at no rate, zero for no span."""
     shape = np.broadcast(span, rate_per_h).shape
     blocked = np.where(np.broadcast_to(span, shape) > 0.0, np.inf, 0.0)
-    return np.divide(span, rate_per_h, out=blocked, where=np.broadcast_to(rate_per_h, shape) > 0.0)
+    moving = np.broadcast_to(rate_per_h, shape) > 0.0
+    return np.asarray(np.divide(span, rate_per_h, out=blocked, where=moving))
 
 
 def soc_after(
@@ -330,7 +331,7 @@ def charge_rate_per_h(
     """
     c = np.minimum(np.asarray(source_rate_per_h, dtype=float), np.asarray(acceptance.rate_per_h, dtype=float))
     taper = taper_rate_per_h(soc, acceptance)
-    return np.where(c <= taper, c, taper / np.asarray(acceptance.tail_factor))
+    return np.asarray(np.where(c <= taper, c, taper / np.asarray(acceptance.tail_factor)))
 
 
 def minutes_by_energy(energy_wh: npt.ArrayLike, source_w: npt.ArrayLike, eta: npt.ArrayLike = 1.0) -> FloatArray:
