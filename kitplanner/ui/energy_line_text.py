@@ -14,9 +14,14 @@ SECTIONS = ("people", "stations", "stores", "stores", "devices")
 
 def figure(value: float) -> str:
     """Return an energy or power with as many digits as it deserves."""
-    if abs(value) >= 9.95 or abs(value) < 0.05:
+    if abs(value) >= 9.95:
         return f"{value:.0f}"
-    return f"{value:.1f}"
+    return f"{value:.1f}".removesuffix(".0")
+
+
+def watts(value: float) -> str:
+    """Return a power of a station's chain, to the hundredth of a watt below ten."""
+    return f"{value:.1f}" if abs(value) >= 9.995 else f"{value:.2f}"
 
 
 def _tr(text: str) -> str:
@@ -90,6 +95,8 @@ def _outlet_sentence(flow: EnergyFlow) -> str:
         text += _tr(" Energy stored at the start adds {wh} Wh a day.").format(wh=figure(flow.start_o_wh))
     if flow.missing_o_wh > 0:
         text += _tr(" {wh} Wh a day are missing.").format(wh=figure(flow.missing_o_wh))
+    if flow.margin_o_wh + flow.spare_o_wh > 0:
+        text += _tr(" Kept back: {parts}.").format(parts=reserve_texts(flow.margin_o_wh, flow.spare_o_wh)[0])
     return text
 
 
@@ -102,26 +109,20 @@ def _loss_sentence(flow: EnergyFlow, level: str) -> str:
 
 
 def chain_stages(point: BenchPoint, name: str) -> tuple[StageText, ...]:
-    """Return a station's own chain in words, from the hand to the battery."""
-    watts = point.human_w or 0.0
-    stages = [
-        StageText(
-            "M",
-            "stations",
-            (_tr("Turning"),),
-            (f"{figure(watts)} W",),
-            _tr("{name}: {w} W at the crank (M).").format(name=name, w=figure(watts)),
-        )
-    ]
+    """Return a station's own chain in words, from the hand to the battery; each step names the watts it gets."""
     plug = plug_index(point)
+    stages = []
     for index, stage in enumerate(point.stages):
-        out = stage.out_w or 0.0
-        level = "S" if index == plug else ""
-        where = _tr(" at the output socket (S)") if level else ""
-        sentence = _tr("{stage}: {w} W go on{where}, {loss} W are lost.").format(
-            stage=stage.name, w=figure(out), where=where, loss=figure(stage.loss_w or 0.0)
+        level = "M" if index == 0 else "S" if plug is not None and index == plug + 1 else ""
+        where = _tr(" at the crank (M)") if level == "M" else _tr(" at the output socket (S)") if level else ""
+        got = watts(stage.in_w or 0.0)
+        sentence = _tr("{name}, {stage}: {w} W arrive{where}, {loss} W are lost.").format(
+            name=name, stage=stage.name, w=got, where=where, loss=watts(stage.loss_w or 0.0)
         )
-        stages.append(StageText(level, "stations", (stage.name,), (f"{figure(out)} W",), sentence))
+        stages.append(StageText(level, "stations", (stage.name,), (f"{got} W", got), sentence))
+    stored = watts(point.stored_w or 0.0)
+    sentence = _tr("{name}: {w} W are stored.").format(name=name, w=stored)
+    stages.append(StageText("", "stations", (_tr("Stored"),), (f"{stored} W", stored), sentence))
     return tuple(stages)
 
 
@@ -133,3 +134,44 @@ def plug_index(point: BenchPoint) -> int | None:
     gaps = [abs((stage.out_w or 0.0) - plug_w) for stage in point.stages]
     best = min(range(len(gaps)), key=gaps.__getitem__, default=None)
     return best if best is not None and gaps[best] <= 1e-6 * max(1.0, plug_w) else None
+
+
+def start_name() -> str:
+    """Return the name of energy that was stored at the start."""
+    return _tr("stored at the start")
+
+
+def missing_text(wh: float) -> str:
+    """Return the words of the gap."""
+    return _tr("{wh} Wh missing").format(wh=figure(wh))
+
+
+def reserve_texts(margin_wh: float, spare_wh: float) -> tuple[str, ...]:
+    """Return the words of what is kept back, from the fullest to the shortest."""
+    margin = _tr("margin {wh} Wh").format(wh=figure(margin_wh))
+    spare = _tr("spare {wh} Wh").format(wh=figure(spare_wh))
+    if spare_wh < 0.05:
+        return (margin, figure(margin_wh))
+    if margin_wh < 0.05:
+        return (spare, figure(spare_wh))
+    both = _tr("kept back {wh} Wh").format(wh=figure(margin_wh + spare_wh))
+    return (f"{margin}, {spare}", both, f"+{figure(margin_wh + spare_wh)} Wh", figure(margin_wh + spare_wh))
+
+
+def rest_text(count: int, wh: float) -> str:
+    """Return the words for device categories that had no room."""
+    return _tr("and {n} more, {wh} Wh").format(n=count, wh=figure(wh))
+
+
+def empty_text() -> str:
+    """Return what the line says before there is anything to draw."""
+    return _tr("Add people, stations and devices, and this line shows where each day's energy goes.")
+
+
+def chain_title(point: BenchPoint, name: str) -> str:
+    """Return the heading over a station's own chain."""
+    if point.human_w is None or point.rpm is None:
+        return _tr("{name}: no output at this point. Esc returns to the day.").format(name=name)
+    return _tr("{name} at {rpm} turns a minute, in watts. Esc returns to the day.").format(
+        name=name, rpm=f"{point.rpm:.0f}"
+    )

@@ -269,13 +269,11 @@ class SchemeFollower(QObject):
 
 
 def load_fonts() -> None:
-    """Make the shipped type family known to Qt, once; where the files are missing Qt's own choice stays."""
+    """Make the shipped type family known to Qt, once."""
     if FAMILY in QFontDatabase.families():
         return
     for name in ("DejaVuSans.ttf", "DejaVuSans-Bold.ttf"):
-        path = resource(f"fonts/{name}")
-        if path.is_file():
-            QFontDatabase.addApplicationFont(str(path))
+        QFontDatabase.addApplicationFont(str(resource(f"fonts/{name}")))
 
 
 def apply(app: QApplication, scheme: Scheme = "system", text_scale: float = 1.0) -> None:
