@@ -9,9 +9,10 @@ import csv
 import html
 import io
 import re
-import unicodedata
 
 from kitplanner.report.content import Block, Cell, Heading, PageBreak, Paper, Paragraph, Table
+from kitplanner.report.tables import columns
+from kitplanner.report.wording import plain
 
 _FORMULA_STARTS = ("=", "+", "-", "@", "\t", "\r", "\n", "\uff1d", "\uff0b", "\uff0d", "\uff20")
 _PLAIN_NUMBER = re.compile(r"[+-]?[0-9]+([.,][0-9]+)?")
@@ -72,52 +73,42 @@ def plain_text(paper: Paper) -> str:
     """Return the paper as text with aligned tables, in reading order."""
     parts = [_underlined(paper.title, "=")]
     if paper.subtitle:
-        parts.append(paper.subtitle)
+        parts.append(plain(paper.subtitle))
     for block in paper.blocks:
         match block:
             case Heading():
                 parts.append(_underlined(block.text, "-"))
             case Paragraph():
-                parts.append(_labelled(block))
+                parts.append(plain(_labelled(block)))
             case Table():
                 parts.append(_plain_table(block))
             case PageBreak():
                 pass
     if paper.foot:
-        parts.append(paper.foot)
+        parts.append(plain(paper.foot))
     return "\n\n".join(parts) + "\n"
 
 
 def _underlined(text: str, mark: str) -> str:
-    return f"{text}\n{mark * _columns(text)}"
-
-
-def _columns(text: str) -> int:
-    """Return the terminal columns of a text: wide East Asian letters take two, combining marks none."""
-    return sum(
-        0 if unicodedata.combining(char) else 2 if unicodedata.east_asian_width(char) in "WF" else 1 for char in text
-    )
+    line = plain(text)
+    return f"{line}\n{mark * columns(line)}"
 
 
 def _plain_table(table: Table) -> str:
-    rows = [[_one_line(text) for text in _spread(row)] for row in (*table.header, *table.rows)]
+    rows = [[plain(text) for text in _spread(row)] for row in (*table.header, *table.rows)]
     aligns = [[item.align for item in row for _ in range(item.span)] for row in (*table.header, *table.rows)]
-    widths = [max(_columns(row[i]) for row in rows) for i in range(table.column_count)] if rows else []
+    widths = [max(columns(row[i]) for row in rows) for i in range(table.column_count)] if rows else []
     lines = [
         "  ".join(_padded(text, width, side) for text, width, side in zip(row, widths, sides, strict=True)).rstrip()
         for row, sides in zip(rows, aligns, strict=True)
     ]
     lines.insert(len(table.header), "-" * (sum(widths) + 2 * (len(widths) - 1)))
-    head = [table.title, ""] if table.title else []
-    return "\n".join([*head, *lines, *table.footnotes])
-
-
-def _one_line(text: str) -> str:
-    return " ".join(text.split())
+    head = [plain(table.title), ""] if table.title else []
+    return "\n".join([*head, *lines, *map(plain, table.footnotes)])
 
 
 def _padded(text: str, width: int, align: str) -> str:
-    space = width - _columns(text)
+    space = width - columns(text)
     left = space if align == "right" else space // 2 if align == "centre" else 0
     return " " * left + text + " " * (space - left)
 

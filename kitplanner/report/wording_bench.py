@@ -10,7 +10,6 @@ import numpy as np
 from kitplanner.planners.results import BenchPoint, BenchState, BenchSweep
 from kitplanner.report.wording import number, percent, plain, power, sentence
 
-
 STATE_WORDS: Mapping[BenchState, str] = MappingProxyType(
     {
         "no_output": "the generator gives no output",

@@ -1,0 +1,197 @@
+"""The command line: `kitplanner [PLAN]` opens the window, a command answers in the terminal.
+
+Answers go to stdout, messages to stderr. Exit codes: 0 answered (also "does not fit"), 1 the plan has
+problems that stop the calculation, 2 wrong call or unreadable file.
+"""
+
+from __future__ import annotations
+
+import argparse
+import math
+import os
+import sys
+from collections.abc import Callable, Sequence
+from contextlib import suppress
+from pathlib import Path
+
+from kitplanner import __version__
+from kitplanner.app.cli_balance import run_balance
+from kitplanner.app.cli_bench import run_bench
+from kitplanner.app.cli_effort import run_effort
+from kitplanner.app.cli_output import EXIT_ANSWERED, EXIT_WRONG_CALL, CommandError
+from kitplanner.app.cli_plan import KINDS, run_check, run_new
+from kitplanner.app.main import open_window
+from kitplanner.report.wording import plain
+
+COMMANDS = ("new", "check", "effort", "balance", "bench")
+EXIT_INTERRUPTED = 130
+_LARGEST_NUMBER = 1e6
+
+
+def main(argv: Sequence[str] | None = None) -> int:
+    """Run the command line and return the exit code."""
+    arguments = sys.argv[1:] if argv is None else list(argv)
+    _keep_every_sign()
+    try:
+        code = _run(arguments)
+        if sys.stdout is not None:
+            sys.stdout.flush()
+    except CommandError as error:
+        _complain(str(error))
+        return error.exit_code
+    except SystemExit as error:
+        return error.code if isinstance(error.code, int) else EXIT_ANSWERED
+    except KeyboardInterrupt:
+        return EXIT_INTERRUPTED
+    except BrokenPipeError:
+        # Whoever read the answer has seen enough, as with `| head`.
+        _drop_output()
+        return EXIT_ANSWERED
+    except OSError as error:
+        _drop_output()
+        _complain(f"The answer cannot be written ({error.strerror or 'unknown cause'}).")
+        return EXIT_WRONG_CALL
+    return code
+
+
+def _run(arguments: list[str]) -> int:
+    if not arguments or (arguments[0] not in COMMANDS and not arguments[0].startswith("-")):
+        return _run_window(arguments)
+    parsed = _parser().parse_args(arguments)
+    if parsed.run is None:
+        return _run_window([])
+    command: Callable[[argparse.Namespace], int] = parsed.run
+    return command(parsed)
+
+
+def _run_window(arguments: list[str]) -> int:
+    if not arguments:
+        return open_window(None)
+    name = arguments[0]
+    if len(arguments) > 1:
+        raise CommandError(f'"{plain(name)}" is no command; the window opens one PLAN. See `kitplanner --help`.')
+    try:
+        exists = os.path.lexists(name)
+    except ValueError:
+        exists = False
+    if not exists:
+        commands = ", ".join(COMMANDS)
+        raise CommandError(f'"{plain(name)}" is neither a file nor a command; the commands are {commands}.')
+    return open_window(Path(name))
+
+
+def _keep_every_sign() -> None:
+    """Let a terminal that cannot show a sign get a question mark instead of an error."""
+    for stream in (sys.stdout, sys.stderr):
+        reconfigure = getattr(stream, "reconfigure", None)
+        if reconfigure is not None:
+            reconfigure(errors="replace")
+
+
+def _complain(text: str) -> None:
+    if sys.stderr is not None:
+        with suppress(OSError):
+            sys.stderr.write(f"kitplanner: {text}\n")
+            sys.stderr.flush()
+
+
+def _drop_output() -> None:
+    """Send what is still buffered nowhere, so that the interpreter's last flush cannot fail."""
+    with suppress(OSError, ValueError, AttributeError):
+        nowhere = os.open(os.devnull, os.O_WRONLY)
+        os.dup2(nowhere, sys.stdout.fileno())
+        os.close(nowhere)
+
+
+def _parser() -> argparse.ArgumentParser:
+    parser = argparse.ArgumentParser(
+        prog="kitplanner",
+        usage="kitplanner [PLAN]\n       kitplanner COMMAND ...",
+        description="Plan emergency kits run on human power. Without a command the window opens, on PLAN if given.",
+        epilog="A planning aid: figures are estimates with the ranges shown. Example: kitplanner balance camp.kitplan",
+    )
+    parser.add_argument("--version", action="version", version=f"kitplanner {__version__}")
+    parser.set_defaults(run=None)
+    commands = parser.add_subparsers(metavar="COMMAND", title="commands")
+    _add_plan_commands(commands)
+    _add_effort(commands)
+    _add_bench(commands)
+    return parser
+
+
+Commands = argparse._SubParsersAction  # noqa: SLF001 - argparse has no public name for what add_subparsers returns
+
+
+def _add(commands: Commands[argparse.ArgumentParser], name: str, about: str, example: str) -> argparse.ArgumentParser:
+    return commands.add_parser(
+        name, help=about, description=f"{about}.", epilog=f"Example: {example}", allow_abbrev=False
+    )
+
+
+def _add_plan_commands(commands: Commands[argparse.ArgumentParser]) -> None:
+    new = _add(commands, "new", "Write a first plan to a new file", "kitplanner new household home.kitplan")
+    new.add_argument("kind", choices=KINDS, help="which first plan")
+    new.add_argument("file", metavar="FILE", help="file to write; an existing one is refused")
+    new.set_defaults(run=run_new)
+    check = _add(commands, "check", "List every problem of a plan with its place", "kitplanner check home.kitplan")
+    balance = _add(
+        commands, "balance", "Does it fit, by how much, and what limits", "kitplanner balance home.kitplan --json"
+    )
+    for parser, run in ((check, run_check), (balance, run_balance)):
+        _add_plan_argument(parser)
+        _add_json(parser)
+        parser.set_defaults(run=run)
+
+
+def _add_effort(commands: Commands[argparse.ArgumentParser]) -> None:
+    parser = _add(
+        commands,
+        "effort",
+        "Minutes of turning for each charge",
+        "kitplanner effort camp.kitplan --device B-D2, or without a plan: kitplanner effort --wh 15.4 --station-w 6",
+    )
+    parser.add_argument("plan", nargs="?", type=Path, metavar="PLAN", help="plan file (.kitplan)")
+    for name in ("station", "device", "person"):
+        parser.add_argument(f"--{name}", metavar="ID", help=f"only this {name}")
+    parser.add_argument("--wh", type=_positive, metavar="WH", help="capacity of one phone's battery [Wh]")
+    parser.add_argument("--station-w", type=_positive, metavar="W", help="watts at the station's output [W]")
+    _add_json(parser)
+    parser.set_defaults(run=run_effort)
+
+
+def _add_bench(commands: Commands[argparse.ArgumentParser]) -> None:
+    parser = _add(
+        commands,
+        "bench",
+        "A station from its parts at one cadence: volts, amps, losses, failure states",
+        "kitplanner bench bench.kitplan A --amps 0.3",
+    )
+    _add_plan_argument(parser)
+    parser.add_argument("station", metavar="STATION", help="id of a station described by its parts")
+    parser.add_argument("--rpm", type=_positive, metavar="N", help="cadence; else the best one in the comfort band")
+    parser.add_argument("--amps", type=_positive, metavar="X", help="current at the device's plug; else its own")
+    _add_json(parser)
+    parser.set_defaults(run=run_bench)
+
+
+def _add_plan_argument(parser: argparse.ArgumentParser) -> None:
+    parser.add_argument("plan", type=Path, metavar="PLAN", help="plan file (.kitplan)")
+
+
+def _add_json(parser: argparse.ArgumentParser) -> None:
+    parser.add_argument("--json", action="store_true", help="answer as one JSON object")
+
+
+def _positive(text: str) -> float:
+    """Return a number above zero."""
+    try:
+        value = float(text)
+    except ValueError:
+        value = math.nan
+    if not 0.0 < value <= _LARGEST_NUMBER:
+        raise argparse.ArgumentTypeError(f"{text!a} is not a number above 0 and up to {_LARGEST_NUMBER:.0f}")
+    return value
+
+
+if __name__ == "__main__":
+    sys.exit(main())
