@@ -6,6 +6,7 @@ import math
 from dataclasses import dataclass
 
 from kitplanner.domain.machine import copper_ohm
+from kitplanner.domain.stage import Flow
 from kitplanner.domain.units import M2_PER_MM2, M_PER_MM, Values
 
 # IEC 60028: 100 % IACS copper at 20 degC [ohm.m].
@@ -30,9 +31,9 @@ class Cable:
         """Volts and amps at the far end for volts and amps at the near end."""
         return in_v - self.loop_ohm * in_a, in_a
 
-    def loss_w(self, in_v: Values, in_a: Values, out_v: Values, out_a: Values) -> Values:
+    def loss_w(self, at: Flow) -> Values:
         """Heat of the cable [W]: R I^2."""
-        return self.loop_ohm * in_a * in_a
+        return self.loop_ohm * at.in_a * at.in_a
 
 
 def awg_diameter_mm(awg: float) -> float:
@@ -109,7 +110,9 @@ def conductor_ohm_per_m(area_mm2: float, copper_degc: float = 20.0) -> float:
     return float(copper_ohm(cold_ohm, copper_degc))
 
 
-def loop_ohm(ohm_per_m: float, length_m: float, contacts: int = USB_CONTACTS, contact_ohm: float = CONTACT_OHM) -> float:
+def loop_ohm(
+    ohm_per_m: float, length_m: float, contacts: int = USB_CONTACTS, contact_ohm: float = CONTACT_OHM
+) -> float:
     """Resistance there and back with contacts: R = 2 L R' + nc Rc.
 
     Parameters

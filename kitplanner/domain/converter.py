@@ -12,6 +12,7 @@ from dataclasses import dataclass
 
 import numpy as np
 
+from kitplanner.domain.stage import Flow
 from kitplanner.domain.units import Values
 
 
@@ -35,9 +36,9 @@ class SwitchingConverter:
         """Least input at which the converter runs [V]: max(lock-out, Vo + headroom)."""
         return max(self.lockout_v, self.output_v + self.headroom_needed_v)
 
-    def headroom_v(self, in_v: Values, in_a: Values) -> Values:
+    def headroom_v(self, at: Flow) -> Values:
         """Volts above the least input; negative when the converter is off [V]."""
-        return in_v - self.least_in_v
+        return at.in_v - self.least_in_v
 
     def forward(self, in_v: Values, in_a: Values) -> tuple[Values, Values]:
         """Volts and amps behind the converter: the positive root of c I^2 + (b + Vo) I + a = Vin Iin.
@@ -51,9 +52,9 @@ class SwitchingConverter:
         out_a = 2.0 * surplus_w / (linear + np.sqrt(np.maximum(radicand, 0.0)))
         return np.full_like(out_a, self.output_v), out_a
 
-    def loss_w(self, in_v: Values, in_a: Values, out_v: Values, out_a: Values) -> Values:
+    def loss_w(self, at: Flow) -> Values:
         """Heat of the converter [W]."""
-        return converter_loss_w(self, in_v, out_a)
+        return converter_loss_w(self, at.in_v, at.out_a)
 
 
 def converter_loss_w(converter: SwitchingConverter, in_v: Values, out_a: Values) -> Values:
@@ -81,7 +82,7 @@ def converter_loss_w(converter: SwitchingConverter, in_v: Values, out_a: Values)
     Examples
     --------
     >>> round(converter_loss_w(SwitchingConverter(), 10.12, 1.0), 4)
-    0.3412
+    0.2612
     """
     constant_w = converter.a0_w + converter.a1_w_per_v * in_v
     linear_v = converter.b0_v + converter.b1_v_per_v * in_v

@@ -58,7 +58,9 @@ class GearBox:
     def __post_init__(self) -> None:
         """Refuse constants for which the equations have no meaning."""
         if not (self.ratio > 0 and 0 < self.eta <= 1 and self.drag_nm >= 0):
-            raise ValueError("A gear needs a ratio above zero, an efficiency above zero up to one and no negative drag.")
+            raise ValueError(
+                "A gear needs a ratio above zero, an efficiency above zero up to one and no negative drag."
+            )
 
 
 def ke_from_kv(kv_rpm_per_v: Values) -> Values:
@@ -133,7 +135,7 @@ def terminal_v(machine: DcMachine, speed_rad_s: Values, current_a: Values) -> Va
     Examples
     --------
     >>> round(terminal_v(DcMachine(0.045, 1.5), rad_s_from_rpm(2400.0), 0.5298), 2)
-    10.51
+    10.52
     """
     return machine.ke_v_s * speed_rad_s - machine.ra_ohm * current_a - machine.vb_v
 

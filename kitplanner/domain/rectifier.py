@@ -11,6 +11,7 @@ from dataclasses import dataclass
 
 import numpy as np
 
+from kitplanner.domain.stage import Flow
 from kitplanner.domain.units import Values
 
 # CODATA 2018 exact constants (BIPM SI brochure, 9th edition): k = 1.380649e-23 J/K, e = 1.602176634e-19 C.
@@ -68,9 +69,9 @@ class Diode:
         drop = diode_v(in_a, self.saturation_a, self.ideality, self.series_ohm)
         return in_v - self.series * drop, in_a
 
-    def loss_w(self, in_v: Values, in_a: Values, out_v: Values, out_a: Values) -> Values:
+    def loss_w(self, at: Flow) -> Values:
         """Heat of all diodes [W]: k Vf I."""
-        return self.series * diode_v(in_a, self.saturation_a, self.ideality, self.series_ohm) * in_a
+        return self.series * diode_v(at.in_a, self.saturation_a, self.ideality, self.series_ohm) * at.in_a
 
 
 @dataclass(frozen=True)
@@ -87,9 +88,9 @@ class SynchronousRectifier:
         out_a = in_a - self.quiescent_a
         return in_v - self.series * self.on_ohm * out_a, out_a
 
-    def loss_w(self, in_v: Values, in_a: Values, out_v: Values, out_a: Values) -> Values:
+    def loss_w(self, at: Flow) -> Values:
         """Heat of the transistors and their control [W]: k Rds I^2 + Vin Iq."""
-        return self.series * self.on_ohm * out_a * out_a + in_v * self.quiescent_a
+        return self.series * self.on_ohm * at.out_a * at.out_a + at.in_v * self.quiescent_a
 
 
 # Typical constants (shape from memory): one 1N5819-class Schottky and one 1N5404-class silicon diode.

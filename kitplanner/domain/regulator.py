@@ -11,11 +11,12 @@ from dataclasses import dataclass
 
 import numpy as np
 
+from kitplanner.domain.stage import Flow
 from kitplanner.domain.units import Values
 
-# LM317 data sheet, absolute maximum ratings and electrical characteristics (Texas Instruments SLVS044, STMicroelectronics).
+# LM317 data sheet (Texas Instruments SLVS044, STMicroelectronics), maximum ratings and characteristics.
 JUNCTION_LIMIT_DEGC = 125.0
-REFERENCE_LOW_V, REFERENCE_HIGH_V = 1.20, 1.30
+REFERENCE_V, REFERENCE_LOW_V, REFERENCE_HIGH_V = 1.25, 1.20, 1.30
 ADJUST_TYPICAL_A, ADJUST_HIGH_A = 50e-6, 100e-6
 LEAST_LOAD_WORST_A, LEAST_LOAD_TYPICAL_A = 0.010, 0.0035
 # Below this headroom beyond dropout the adjustment current fades out, so that the current law has no step.
@@ -50,11 +51,15 @@ class LinearRegulator:
     @property
     def output_v(self) -> float:
         """Set output [V]."""
-        return divider_output_v(self.r1_ohm, self.r2_ohm, self.reference_v, self.adjust_a)
+        return float(divider_output_v(self.r1_ohm, self.r2_ohm, self.reference_v, self.adjust_a))
 
-    def headroom_v(self, in_v: Values, in_a: Values) -> Values:
+    def band_v(self) -> tuple[float, float]:
+        """Lowest and highest output by the part's own limits and the resistors' tolerance [V]."""
+        return divider_band_v(self.r1_ohm, self.r2_ohm, self.tolerance_fraction, self.reference_v)
+
+    def headroom_v(self, at: Flow) -> Values:
         """Volts above what regulation needs: Vin - Vset - (V0 + r Iin); negative in dropout [V]."""
-        return in_v - (self.output_v + self.dropout_v) - self.dropout_ohm * in_a
+        return at.in_v - self.least_in_v(at.in_a)
 
     def least_in_v(self, in_a: Values) -> Values:
         """Least input that holds the output at an input current [V]."""
@@ -62,7 +67,7 @@ class LinearRegulator:
 
     def forward(self, in_v: Values, in_a: Values) -> tuple[Values, Values]:
         """Volts and amps behind the regulator; in dropout the divider draws Vo / (R1 + R2)."""
-        headroom = self.headroom_v(in_v, in_a)
+        headroom = in_v - self.least_in_v(in_a)
         out_v = self.output_v + np.minimum(headroom, 0.0)
         return out_v, in_a - self._divider_a(out_v, headroom)
 
@@ -74,21 +79,22 @@ class LinearRegulator:
         chain_ohm = self.r1_ohm + self.r2_ohm
         return (out_v + self.r1_ohm * self._adjust_a(headroom_v)) * (1.0 / chain_ohm)
 
-    def die_w(self, in_v: Values, in_a: Values, out_v: Values) -> Values:
+    def die_w(self, at: Flow) -> Values:
         """Heat of the die alone, without the divider [W]."""
-        adjust = self._adjust_a(self.headroom_v(in_v, in_a))
-        upper_a = (out_v - adjust * self.r2_ohm) / (self.r1_ohm + self.r2_ohm)
-        return (in_v - out_v) * (in_a - adjust) + adjust * (in_v - out_v + upper_a * self.r1_ohm)
+        adjust = self._adjust_a(self.headroom_v(at))
+        upper_a = (at.out_v - adjust * self.r2_ohm) / (self.r1_ohm + self.r2_ohm)
+        drop = at.in_v - at.out_v
+        return drop * (at.in_a - adjust) + adjust * (drop + upper_a * self.r1_ohm)
 
-    def divider_w(self, in_v: Values, in_a: Values, out_v: Values) -> Values:
+    def divider_w(self, at: Flow) -> Values:
         """Heat of the two resistors [W]."""
-        adjust = self._adjust_a(self.headroom_v(in_v, in_a))
-        upper_a = (out_v - adjust * self.r2_ohm) / (self.r1_ohm + self.r2_ohm)
+        adjust = self._adjust_a(self.headroom_v(at))
+        upper_a = (at.out_v - adjust * self.r2_ohm) / (self.r1_ohm + self.r2_ohm)
         return upper_a**2 * self.r1_ohm + (upper_a + adjust) ** 2 * self.r2_ohm
 
-    def loss_w(self, in_v: Values, in_a: Values, out_v: Values, out_a: Values) -> Values:
+    def loss_w(self, at: Flow) -> Values:
         """Heat of die and divider [W]."""
-        return self.die_w(in_v, in_a, out_v) + self.divider_w(in_v, in_a, out_v)
+        return self.die_w(at) + self.divider_w(at)
 
     def junction_degc(self, die_w: Values) -> Values:
         """Junction temperature [degC]: Ta + theta Pd."""
@@ -129,7 +135,9 @@ def divider_output_v(r1_ohm: Values, r2_ohm: Values, reference_v: Values = 1.25,
     return reference_v * (1.0 + r2_ohm / r1_ohm) + adjust_a * r2_ohm
 
 
-def divider_band_v(r1_ohm: float, r2_ohm: float, tolerance_fraction: float = 0.0) -> tuple[float, float]:
+def divider_band_v(
+    r1_ohm: float, r2_ohm: float, tolerance_fraction: float = 0.0, reference_v: float = REFERENCE_V
+) -> tuple[float, float]:
     """Lowest and highest output that the part's limits and the resistors' tolerance allow.
 
     Parameters
@@ -137,7 +145,9 @@ def divider_band_v(r1_ohm: float, r2_ohm: float, tolerance_fraction: float = 0.0
     r1_ohm, r2_ohm : float
         Nominal resistors [ohm].
     tolerance_fraction : float
-        Tolerance of each resistor [-].
+        Tolerance of each resistor; 0 gives the band of the part alone [-].
+    reference_v : float
+        Typical reference; its limits are 4 % below and above [V].
 
     Returns
     -------
@@ -154,8 +164,10 @@ def divider_band_v(r1_ohm: float, r2_ohm: float, tolerance_fraction: float = 0.0
     [4.869, 5.468]
     """
     down, up = 1.0 - tolerance_fraction, 1.0 + tolerance_fraction
-    low = divider_output_v(r1_ohm * up, r2_ohm * down, REFERENCE_LOW_V, ADJUST_TYPICAL_A)
-    high = divider_output_v(r1_ohm * down, r2_ohm * up, REFERENCE_HIGH_V, ADJUST_HIGH_A)
+    low_reference = reference_v * REFERENCE_LOW_V / REFERENCE_V
+    high_reference = reference_v * REFERENCE_HIGH_V / REFERENCE_V
+    low = divider_output_v(r1_ohm * up, r2_ohm * down, low_reference, ADJUST_TYPICAL_A)
+    high = divider_output_v(r1_ohm * down, r2_ohm * up, high_reference, ADJUST_HIGH_A)
     return float(low), float(high)
 
 
@@ -226,9 +238,9 @@ def pick_divider(target_v: float, *, load_stays: bool = False, within_v: float =
     values = np.array([mantissa * 10.0**decade for decade in (1, 2, 3) for mantissa in E24]).round(6)
     r1, r2 = np.meshgrid(values, values, indexing="ij")
     error_v = np.abs(np.asarray(divider_output_v(r1, r2)) - target_v)
-    divider_a = 1.25 / r1
+    divider_a = REFERENCE_V / r1
     fits = (error_v <= within_v) & (divider_a >= least_a)
     if not fits.any():
-        raise ValueError(f"No pair of E24 resistors sets {target_v:g} V within {within_v * 1000:g} mV; choose another output.")
+        raise ValueError(f"No pair of E24 resistors sets {target_v:g} V within {within_v:g} V; choose another output.")
     order = np.lexsort((error_v[fits], divider_a[fits]))
     return float(r1[fits][order[0]]), float(r2[fits][order[0]])

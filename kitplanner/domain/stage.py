@@ -3,9 +3,18 @@
 from __future__ import annotations
 
 from dataclasses import dataclass
-from typing import Protocol
+from typing import NamedTuple, Protocol
 
 from kitplanner.domain.units import Values
+
+
+class Flow(NamedTuple):
+    """Volts [V] and amps [A] before and behind one step."""
+
+    in_v: Values
+    in_a: Values
+    out_v: Values
+    out_a: Values
 
 
 class Stage(Protocol):
@@ -20,7 +29,7 @@ class Stage(Protocol):
         """Volts and amps behind the step for volts and amps before it."""
         ...
 
-    def loss_w(self, in_v: Values, in_a: Values, out_v: Values, out_a: Values) -> Values:
+    def loss_w(self, at: Flow) -> Values:
         """Heat of the step [W], from its own law and not as a difference."""
         ...
 
@@ -36,6 +45,6 @@ class FixedLoss:
         """Volts and amps behind the step for volts and amps before it."""
         return in_v, self.eta * in_a
 
-    def loss_w(self, in_v: Values, in_a: Values, out_v: Values, out_a: Values) -> Values:
+    def loss_w(self, at: Flow) -> Values:
         """Heat of the step [W]: (1 - eta) V I."""
-        return (1.0 - self.eta) * in_v * in_a
+        return (1.0 - self.eta) * at.in_v * at.in_a

@@ -18,7 +18,7 @@ WH_PER_J = 1.0 / J_PER_WH
 MINUTES_PER_HOUR = 60.0
 MINUTES_PER_DAY = 1440
 HOURS_PER_MONTH = 730.5
-# International avoirdupois pound, foot and inch, exact by the 1959 agreement (NIST Special Publication 811, appendix B).
+# International pound, foot and inch, exact by the 1959 agreement (NIST Special Publication 811, appendix B).
 KG_PER_LB = 0.45359237
 M_PER_FT = 0.3048
 CM_PER_IN = 2.54
@@ -365,5 +365,5 @@ def clock(time_min: float) -> str:
     """
     whole = round(time_min)
     if not 0 <= whole <= MINUTES_PER_DAY:
-        raise ValueError(f"{time_min} minutes lie outside the day; a clock time runs from 0 to {MINUTES_PER_DAY} minutes.")
+        raise ValueError(f"{time_min} minutes lie outside the day; it runs from 0 to {MINUTES_PER_DAY} minutes.")
     return f"{whole // 60:02d}:{whole % 60:02d}"

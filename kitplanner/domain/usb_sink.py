@@ -25,11 +25,11 @@ HOLD_TOLERANCE_V = 1e-3
 
 @dataclass(frozen=True)
 class UsbSink:
-    """Greatest current [A], held input voltage [V], least current that charges [A]."""
+    """Greatest current [A], held input voltage [V], least current that charges [A]; numbers or arrays."""
 
-    limit_a: float = math.inf
-    hold_v: float = LOW_POWER_PORT_V
-    least_a: float = 0.10
+    limit_a: Values = math.inf
+    hold_v: Values = LOW_POWER_PORT_V
+    least_a: Values = 0.10
 
 
 def device_net_w(plug_v: Values, plug_a: Values, eta_charger: Values, system_w: Values) -> Values:
