@@ -8,6 +8,7 @@ turn, `meter_band` which volts to hold on a panel meter.
 from __future__ import annotations
 
 from kitplanner.domain.cable import Cable
+from kitplanner.domain.cadence import best_cadence, best_fraction_cadence, meter_band, regulating_rpm
 from kitplanner.domain.chain_model import Chain, Comfort
 from kitplanner.domain.chain_solver import charging_point, operating_point
 from kitplanner.domain.converter import SwitchingConverter
@@ -35,6 +36,10 @@ __all__ = [
     "SwitchingConverter",
     "SynchronousRectifier",
     "UsbSink",
+    "best_cadence",
+    "best_fraction_cadence",
     "charging_point",
+    "meter_band",
     "operating_point",
+    "regulating_rpm",
 ]

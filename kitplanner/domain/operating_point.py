@@ -35,6 +35,7 @@ FAILED_STATES = ("no_output", "vin_low", "collapse")
 BINDINGS = ("current", "hold", "acceptance", "human", "torque", "nothing")
 # Rounding of a root, relative to the limit it meets.
 _ROUNDING = 1e-9
+_NO_CURRENT_A = 1e-12
 
 
 @dataclass(frozen=True)
@@ -146,12 +147,16 @@ def describe(chain: Chain, solution: Solution, sink: UsbSink) -> OperatingPoint:
     _, _, t1, t0 = human_cost(chain, rpm)
     torque = t0 + t1 * current
     steps = flows(chain, net_v, current)
-    plug_v, plug_a = (steps[-1].out_v, steps[-1].out_a) if steps else (net_v - chain.machine.ra_ohm * current, current)
-    plug = (np.asarray(plug_v, np.float64), np.asarray(plug_a, np.float64))
+    copper = Flow(emf, current, net_v - chain.machine.ra_ohm * current, current)
+    plug_v, plug_a = (copper, *steps)[-1][2:]
+    # A device that takes nothing is solved to a current of about 1e-17 A of either sign.
+    plug_a = np.where(np.abs(plug_a) < _NO_CURRENT_A, 0.0, plug_a)
+    steps = (*steps[:-1], steps[-1]._replace(out_a=plug_a)) if steps else ()
+    plug = (np.asarray(plug_v, np.float64), plug_a)
 
     shaft_w = shaft_nm * shaft_rad_s
     armature_w = emf * current
-    terminal_w = (net_v - chain.machine.ra_ohm * current) * current
+    terminal_w = copper.out_v * current
     mechanical = (
         (torque * crank_rad_s, shaft_w, shaft_w * (1.0 / chain.gear.eta - 1.0) + chain.gear.drag_nm * crank_rad_s),
         (shaft_w, armature_w, drag_nm * shaft_rad_s),
@@ -164,7 +169,6 @@ def describe(chain: Chain, solution: Solution, sink: UsbSink) -> OperatingPoint:
         return np.where(failed, np.nan, np.asarray(values, np.float64))
 
     none = np.full(rpm.shape, np.nan)
-    copper = Flow(emf, current, net_v - chain.machine.ra_ohm * current, current)
     electric = [(none,) * 4, (none,) * 4, *(tuple(shown(v) for v in flow) for flow in (copper, *steps))]
     watts = [tuple(shown(v) for v in step) for step in mechanical]
     for stage, flow in zip(chain.stages, steps, strict=True):
