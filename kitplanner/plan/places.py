@@ -4,8 +4,12 @@ from __future__ import annotations
 
 from collections.abc import Sequence
 
+from kitplanner.plan.records import SECTIONS
+
 Part = str | int
 
+_COLLECTIONS = frozenset((*SECTIONS, "stages", "temperatures"))
+_GROUPS = _COLLECTIONS | {"conditions", "machine", "gear", "test_load", "rota"}
 ORDINALS = ("first", "second", "third", "fourth", "fifth", "sixth", "seventh", "eighth", "ninth", "tenth")
 
 
@@ -69,3 +73,24 @@ def place_in_file(raw: object, parts: Sequence[Part]) -> str:
             is_section = depth < len(parts) - 1 and isinstance(here, (list, dict))
             words.append(part if is_section else f"key {short(part)[1:-1]}")
     return ", ".join(words) if words else "the top of the file"
+
+
+def place_of_path(path: Sequence[str]) -> str:
+    """Return the place an edit or a check names, in words.
+
+    Examples
+    --------
+    >>> place_of_path(("people", "M3", "age"))
+    'people, record M3, key age'
+    >>> place_of_path(("stations", "A", "stages", "s2", "loop_ohm"))
+    'stations, record A, stages, record s2, key loop_ohm'
+    """
+    words: list[str] = []
+    after_collection = False
+    for depth, part in enumerate(path):
+        if after_collection:
+            words.append(f"record {short(part)[1:-1]}")
+        else:
+            words.append(part if part in _GROUPS or depth < len(path) - 1 else f"key {short(part)[1:-1]}")
+        after_collection = not after_collection and part in _COLLECTIONS
+    return ", ".join(words) if words else "the plan"
