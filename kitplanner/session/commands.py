@@ -8,21 +8,8 @@ from PySide6.QtGui import QUndoCommand
 
 from kitplanner.plan.records import Plan
 
-Edit = Callable[[Plan], Plan]
-
 _MERGEABLE_ID = 1
 _SINGLE_ID = -1
-
-
-def together(*edits: Edit) -> Edit:
-    """Join several edits into one, so that they become one undo step."""
-
-    def joined(plan: Plan) -> Plan:
-        for edit in edits:
-            plan = edit(plan)
-        return plan
-
-    return joined
 
 
 class PlanCommand(QUndoCommand):
@@ -45,6 +32,11 @@ class PlanCommand(QUndoCommand):
         self._after = after
         self._restore = restore
         self._merge_key = merge_key
+
+    @property
+    def merge_key(self) -> str | None:
+        """Steps with the same key become one; None never merges."""
+        return self._merge_key
 
     @property
     def before(self) -> Plan:
@@ -70,9 +62,9 @@ class PlanCommand(QUndoCommand):
 
     def mergeWith(self, other: QUndoCommand) -> bool:
         """Take over a following step of the same intention."""
-        if not isinstance(other, PlanCommand) or other._merge_key != self._merge_key:
+        if not isinstance(other, PlanCommand) or other.merge_key != self._merge_key:
             return False
-        self._after = other._after
+        self._after = other.after
         if self._after == self._before:
             self.setObsolete(True)
         return True

@@ -10,10 +10,10 @@ from PySide6.QtCore import QObject, Signal
 from PySide6.QtGui import QUndoStack
 
 from kitplanner.plan.codec import PlanFileError
-from kitplanner.plan.edits import EditError
+from kitplanner.plan.edits import Edit, EditError
 from kitplanner.plan.files import read_plan, write_plan
 from kitplanner.plan.records import Plan
-from kitplanner.session.commands import Edit, PlanCommand
+from kitplanner.session.commands import PlanCommand
 from kitplanner.session.file_lock import FileLock
 
 

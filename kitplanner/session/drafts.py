@@ -6,7 +6,7 @@ from collections.abc import Iterable
 
 from msgspec import Struct
 
-Path = tuple[str, ...]
+from kitplanner.plan.edits import Path
 
 
 class Draft(Struct, frozen=True):

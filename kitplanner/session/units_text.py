@@ -7,10 +7,19 @@ import re
 from kitplanner.domain import units
 
 # Prefixes of the International System (BIPM, SI brochure, 9th edition, 2019, table 7) that occur in this trade.
-_PREFIXES = {"u": 1e-6, "µ": 1e-6, "μ": 1e-6, "m": 1e-3, "k": 1e3, "M": 1e6}  # noqa: RUF001 - both signs for micro
+_PREFIXES = {"u": 1e-6, "µ": 1e-6, "μ": 1e-6, "m": 1e-3, "k": 1e3, "M": 1e6}
 _PREFIXED = ("Wh", "W", "A", "V", "ohm", "Nm", "m", "F", "J", "g", "s")
-_SPELLINGS = {"Ω": "ohm", "Ohm": "ohm", "ohms": "ohm", "N m": "Nm", "minutes": "min", "hours": "h", "WH": "Wh", "wh": "Wh"}
-_CHARGE = re.compile(r"^(m?)Ah\s*(?:at|@|x|×|,|\*)\s*([\d.,]+)\s*V?$")  # noqa: RUF001 - a times sign may be typed
+_SPELLINGS = {
+    "Ω": "ohm",
+    "Ohm": "ohm",
+    "ohms": "ohm",
+    "N m": "Nm",
+    "minutes": "min",
+    "hours": "h",
+    "WH": "Wh",
+    "wh": "Wh",
+}
+_CHARGE = re.compile(r"^(m?)Ah\s*(?:at|@|x|×|,|\*)\s*([\d.,]+)\s*V?$")
 
 
 def factor_of_unit(typed: str, wanted: str) -> float | None:
@@ -40,7 +49,7 @@ def factor_of_unit(typed: str, wanted: str) -> float | None:
 
 
 def _plain(unit: str) -> str:
-    unit = unit.strip().replace("Ω", "ohm").replace("Ω", "ohm")
+    unit = unit.strip().removesuffix("/day").replace("Ω", "ohm").replace("Ω", "ohm")
     return _SPELLINGS.get(unit, unit)
 
 

@@ -1,0 +1,1 @@
+"""Item models over the records of a plan."""

@@ -1,0 +1,1 @@
+"""The left side of the window: sections, tables and forms."""

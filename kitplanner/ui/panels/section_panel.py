@@ -1,0 +1,303 @@
+"""One section of the plan: its cautions and problems, its table, and the details of the chosen record."""
+
+from __future__ import annotations
+
+from collections.abc import Mapping
+from typing import Any
+
+from PySide6.QtCore import QItemSelectionModel, QModelIndex, Qt, QTimer, Signal, Slot
+from PySide6.QtGui import QAction, QKeySequence
+from PySide6.QtWidgets import (
+    QAbstractItemView,
+    QHBoxLayout,
+    QHeaderView,
+    QPushButton,
+    QScrollArea,
+    QSplitter,
+    QTableView,
+    QVBoxLayout,
+    QWidget,
+)
+
+from kitplanner.plan.edits import Path
+from kitplanner.plan.fields import FIELDS
+from kitplanner.plan.records import Plan
+from kitplanner.session.editing import Editing
+from kitplanner.session.field_text import translate
+from kitplanner.session.new_records import singular
+from kitplanner.ui import theme
+from kitplanner.ui.dialogs.ask import ask_how_many
+from kitplanner.ui.models.field_delegate import FieldDelegate
+from kitplanner.ui.models.records_model import RecordsModel
+from kitplanner.ui.panels.record_details import RecordDetails, make_details
+from kitplanner.ui.panels.sections import PLAN_SECTION, Section
+from kitplanner.ui.widgets.plain import colour_label, plain_label
+
+_MEASURED_ROWS = 60
+_LEAST_TABLE_ROWS = 4
+
+
+class SectionPanel(QWidget):
+    """Table and form of one section.
+
+    Signals
+    -------
+    record_chosen(section: str, record_id: str)
+        Another record is current in the table; empty id for none.
+    """
+
+    record_chosen = Signal(str, str)
+
+    def __init__(self, section: Section, editing: Editing, parent: QWidget | None = None) -> None:
+        super().__init__(parent)
+        self.section = section
+        self._editing = editing
+        self._plan: Plan = editing.plan
+        self._problems: Mapping[Path, str] = {}
+        self._details: RecordDetails | None = None
+        self._buttons: dict[str, QPushButton] = {}
+        self._layout = QVBoxLayout(self)
+        self._layout.setContentsMargins(0, 0, 0, 0)
+        self._layout.setSpacing(4)
+        self._scroll = QScrollArea(self)
+        self._scroll.setWidgetResizable(True)
+        self._scroll.setFrameShape(QScrollArea.Shape.NoFrame)
+        self._scroll.setFocusPolicy(Qt.FocusPolicy.NoFocus)
+        self._scroll.setAccessibleName(self.tr("Details"))
+        self._scroll.setHorizontalScrollBarPolicy(Qt.ScrollBarPolicy.ScrollBarAsNeeded)
+        self.table: QTableView | None = None
+        if section.key == PLAN_SECTION:
+            self._layout.addWidget(self._scroll, 1)
+        else:
+            self._build_table()
+        self.show_plan(editing.plan, {})
+
+    @property
+    def current_id(self) -> str:
+        """Id of the chosen record, empty without one."""
+        if self.table is None:
+            return ""
+        index = self.table.currentIndex()
+        records = self._model.records
+        return records[index.row()].id if index.isValid() and index.row() < len(records) else ""
+
+    @property
+    def details(self) -> RecordDetails:
+        """Details of the chosen record, made when first needed."""
+        if self._details is None:
+            self._details = make_details(self.section.kind, self._editing, self._scroll)
+            self._scroll.setWidget(self._details)
+        return self._details
+
+    def button(self, name: str) -> QPushButton:
+        """One of the buttons: add, several, duplicate, remove, up, down."""
+        return self._buttons[name]
+
+    def show_plan(self, plan: Plan, problems: Mapping[Path, str]) -> None:
+        """Show the section of a plan with the problems of its fields."""
+        before, self._plan = self._plan, plan
+        same_problems = dict(problems) == dict(self._problems)
+        self._problems = problems
+        if self.table is None:
+            self._show_details()
+            return
+        records = getattr(plan, self.section.key)
+        self._model.set_records(records)
+        self._model.set_problems({path: text for path, text in problems.items() if path[:1] == (self.section.key,)})
+        if not self.current_id and records:
+            self.table.setCurrentIndex(self._model.index(0, 0))
+        if before is not plan or not same_problems:
+            self._show_details()
+        self._hint.setVisible(not records)
+
+    def show_details_when_idle(self) -> None:
+        """Build the form after what is on the screen now; called once the window stands."""
+        QTimer.singleShot(0, self._show_details)
+
+    def choose(self, record_id: str) -> bool:
+        """Choose a record; False when it is not there."""
+        row = self._model.row_of(record_id) if self.table is not None else -1
+        if row < 0 or self.table is None:
+            return False
+        self.table.setCurrentIndex(self._model.index(row, 0))
+        return True
+
+    def focus_field(self, path: Path) -> bool:
+        """Choose the record of a field and put the keyboard into the field."""
+        if self.table is None:
+            return self._show_details() and self.details.focus_field(path)
+        if len(path) < 2 or not self.choose(path[1]):
+            return False
+        self._show_details()
+        if len(path) > 2 and self.details.focus_field(path[2:]):
+            return True
+        self.table.setFocus(Qt.FocusReason.OtherFocusReason)
+        return True
+
+    @Slot()
+    def add_one(self) -> None:
+        """Add a record and begin with its name."""
+        self._chosen_after_adding(self._editing.add(self.section.key))
+
+    @Slot()
+    def remove_chosen(self) -> None:
+        """Remove the selected records."""
+        if self.table is None:
+            return
+        rows = sorted({index.row() for index in self.table.selectionModel().selectedIndexes()})
+        records = self._model.records
+        ids = tuple(records[row].id for row in rows if row < len(records))
+        if ids and self._editing.remove(self.section.key, ids) is None and self._model.rowCount():
+            self.table.setCurrentIndex(self._model.index(min(rows[0], self._model.rowCount() - 1), 0))
+
+    def _build_table(self) -> None:
+        columns = tuple(spec for spec in FIELDS[self.section.kind] if spec.column)
+        title = translate("Sections", self.section.title)
+        self._model = RecordsModel((self.section.key,), columns, self._editing, self)
+        self.table = QTableView(self)
+        self.table.setModel(self._model)
+        self.table.setItemDelegate(FieldDelegate(self.table))
+        self.table.setAccessibleName(title)
+        self.table.setSelectionBehavior(QAbstractItemView.SelectionBehavior.SelectRows)
+        self.table.setAlternatingRowColors(True)
+        self.table.setTabKeyNavigation(False)
+        self.table.setShowGrid(False)
+        self.table.setCornerButtonEnabled(False)
+        self.table.verticalHeader().hide()
+        header = self.table.horizontalHeader()
+        header.setResizeContentsPrecision(_MEASURED_ROWS)
+        header.setSectionResizeMode(QHeaderView.ResizeMode.ResizeToContents)
+        header.setDefaultAlignment(Qt.AlignmentFlag.AlignLeft | Qt.AlignmentFlag.AlignVCenter)
+        header.setMaximumSectionSize(260)
+        header.setHighlightSections(False)
+        self.table.selectionModel().currentRowChanged.connect(self._on_current_row_changed)
+        self._model.dataChanged.connect(self._on_rows_changed)
+        remove = QAction(self.tr("Remove"), self.table)
+        remove.setShortcut(QKeySequence(QKeySequence.StandardKey.Delete))
+        remove.setShortcutContext(Qt.ShortcutContext.WidgetShortcut)
+        remove.triggered.connect(self.remove_chosen)
+        self.table.addAction(remove)
+        self._hint = plain_label(translate("Sections", self.section.hint), wrap=True)
+        self._hint.setContentsMargins(8, 4, 8, 4)
+        top = QWidget(self)
+        layout = QVBoxLayout(top)
+        layout.setContentsMargins(0, 0, 0, 0)
+        layout.setSpacing(4)
+        layout.addWidget(self._hint)
+        layout.addWidget(self.table, 1)
+        layout.addLayout(self._build_buttons())
+        splitter = QSplitter(Qt.Orientation.Vertical, self)
+        splitter.setChildrenCollapsible(False)
+        splitter.addWidget(top)
+        splitter.addWidget(self._scroll)
+        splitter.setStretchFactor(0, 2)
+        splitter.setStretchFactor(1, 3)
+        self._layout.addWidget(splitter, 1)
+        self._fit_rows()
+
+    def _build_buttons(self) -> QHBoxLayout:
+        word = translate("Fields", singular(self.section.key))
+        row = QHBoxLayout()
+        row.setSpacing(4)
+        for name, text, help_, slot in (
+            ("add", self.tr("Add"), self.tr("Add: {what}"), self.add_one),
+            ("several", self.tr("Several…"), self.tr("Add several: {what}"), self._on_several),
+            ("duplicate", self.tr("Copy"), self.tr("Copy the chosen one: {what}"), self._on_duplicate),
+            ("remove", self.tr("Remove"), self.tr("Remove the chosen ones: {what}"), self.remove_chosen),
+            ("up", "↑", self.tr("Move up: {what}"), self._on_up),
+            ("down", "↓", self.tr("Move down: {what}"), self._on_down),
+        ):
+            button = QPushButton(text, self)
+            button.setMinimumHeight(26)
+            button.setAutoDefault(False)
+            button.setAccessibleName(help_.format(what=word))
+            button.setToolTip(help_.format(what=word))
+            if name in ("up", "down"):
+                button.setMaximumWidth(button.fontMetrics().horizontalAdvance("MMM") + 10)
+            button.clicked.connect(slot)
+            self._buttons[name] = button
+            row.addWidget(button)
+        row.addStretch(1)
+        return row
+
+    def _fit_rows(self) -> None:
+        if self.table is not None:
+            height = max(24, self.table.fontMetrics().height() + 8)
+            self.table.verticalHeader().setDefaultSectionSize(height)
+            self.table.setMinimumHeight(height * _LEAST_TABLE_ROWS)
+            colour_label(self._hint, "muted")
+
+    def _record(self) -> Any:
+        if self.table is None:
+            return self._plan
+        current = self.current_id
+        return next((record for record in self._model.records if record.id == current), None)
+
+    def _show_details(self) -> bool:
+        record = self._record()
+        if self._details is None and not self.isVisible():
+            # The form is built when it can be seen; the first picture of the window does not wait for it.
+            return False
+        has_record = record is not None
+        self._scroll.setVisible(has_record)
+        if has_record:
+            path = () if self.table is None else (self.section.key, record.id)
+            self.details.show_record(path, record, self._problems)
+        for name in ("duplicate", "remove", "up", "down"):
+            if name in self._buttons:
+                self._buttons[name].setEnabled(has_record)
+        return has_record
+
+    def _chosen_after_adding(self, ids: tuple[str, ...]) -> None:
+        if ids and self.choose(ids[0]):
+            self._show_details()
+            self.details.form.focus_field("name")
+            editor = self.details.form.row("name").editor
+            if hasattr(editor, "selectAll"):
+                editor.selectAll()
+
+    @Slot(QModelIndex, QModelIndex)
+    def _on_current_row_changed(self, _current: QModelIndex, _previous: QModelIndex) -> None:
+        self._show_details()
+        self.record_chosen.emit(self.section.key, self.current_id)
+
+    @Slot()
+    def _on_rows_changed(self) -> None:
+        # A value may have become longer; the header measures only what is on the screen.
+        if self.table is not None:
+            self.table.horizontalHeader().resizeSections(QHeaderView.ResizeMode.ResizeToContents)
+
+    @Slot()
+    def _on_several(self) -> None:
+        word = translate("Fields", singular(self.section.key))
+        count = ask_how_many(self, self.tr("Add several"), self.tr("How many ({what})?").format(what=word))
+        if count:
+            self._chosen_after_adding(self._editing.add(self.section.key, count))
+
+    @Slot()
+    def _on_duplicate(self) -> None:
+        if self.current_id:
+            self._chosen_after_adding(self._editing.duplicate(self.section.key, self.current_id))
+
+    @Slot()
+    def _on_up(self) -> None:
+        self._move(-1)
+
+    @Slot()
+    def _on_down(self) -> None:
+        self._move(1)
+
+    def _move(self, steps: int) -> None:
+        chosen = self.current_id
+        if chosen and self._editing.move((self.section.key, chosen), steps) is None and self.table is not None:
+            row = self._model.row_of(chosen)
+            flags = QItemSelectionModel.SelectionFlag.ClearAndSelect | QItemSelectionModel.SelectionFlag.Rows
+            self.table.selectionModel().setCurrentIndex(self._model.index(row, 0), flags)
+
+    def recolour(self) -> None:
+        """Follow the theme and the text size."""
+        self._fit_rows()
+        if self.table is not None:
+            self.table.viewport().update()
+            theme_font = theme.type_font()
+            self.table.setFont(theme_font)
