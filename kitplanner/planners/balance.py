@@ -10,6 +10,8 @@ from collections.abc import Sequence
 
 from kitplanner.plan.records import Plan
 from kitplanner.planners.balance_cuts import cuts, shared_fraction
+from kitplanner.planners.balance_offers import Supply, supply
+from kitplanner.planners.balance_output import reference_output_w
 from kitplanner.planners.balance_windows import (
     MINUTES_PER_HOUR,
     WHOLE_DAY,
@@ -27,15 +29,7 @@ from kitplanner.planners.results import (
     BalanceStore,
     Verdict,
 )
-from kitplanner.planners.supply import (
-    Supply,
-    fed_stores,
-    open_parts,
-    reference_output_w,
-    station_to_outlet_fraction,
-    store_wh,
-    supply,
-)
+from kitplanner.planners.supply import fed_stores, open_parts, station_to_outlet_fraction, store_wh
 
 FITS_FROM_FRACTION = 1.05
 TIGHT_FROM_FRACTION = 1.0
@@ -62,9 +56,9 @@ def balance(plan: Plan) -> BalanceResult:
     stores = tuple(BalanceStore(store=line.id, usable_wh=store_wh(line, line.start_fraction)) for line in plan.stores)
     stored_wh = sum(line.usable_wh for line in stores)
     need_wh = max(0.0, sum(need.use_wh - need.credit_wh for need in needs))
-    have_wh = stored_wh + plan.days * brought.made_o_wh_per_day
+    have_wh = stored_wh + sum(brought.made_o_wh_by_day)
     coverage = have_wh / need_wh if need_wh > _ROUNDING_WH else None
-    days = _days(plan, needs, brought, stored_wh)
+    days = _days(needs, brought, stored_wh)
     return BalanceResult(
         coverage_fraction=coverage,
         need_wh=need_wh,
@@ -98,15 +92,15 @@ def verdict_of(coverage_fraction: float | None) -> Verdict:
     return "tight" if coverage_fraction >= TIGHT_FROM_FRACTION else "short"
 
 
-def _days(plan: Plan, needs: Sequence[DeviceNeed], brought: Supply, stored_wh: float) -> tuple[BalanceDay, ...]:
+def _days(needs: Sequence[DeviceNeed], brought: Supply, stored_wh: float) -> tuple[BalanceDay, ...]:
     """Return the pooled level at the end of each day: stores and start charges, without margin."""
     use_wh = sum(need.day_o_wh for need in needs)
-    made_wh = brought.made_o_wh_per_day
-    start_wh = stored_wh + sum(need.credit_plain_wh for need in needs)
-    return tuple(
-        BalanceDay(day=day, use_wh=use_wh, made_wh=made_wh, end_wh=start_wh + day * (made_wh - use_wh))
-        for day in range(1, plan.days + 1)
-    )
+    level_wh = stored_wh + sum(need.credit_plain_wh for need in needs)
+    days = []
+    for day, made_wh in enumerate(brought.made_o_wh_by_day, start=1):
+        level_wh += made_wh - use_wh
+        days.append(BalanceDay(day=day, use_wh=use_wh, made_wh=made_wh, end_wh=level_wh))
+    return tuple(days)
 
 
 def _limit(plan: Plan, needs: Sequence[DeviceNeed], brought: Supply, days: Sequence[BalanceDay]) -> BalanceLimit | None:
@@ -115,7 +109,7 @@ def _limit(plan: Plan, needs: Sequence[DeviceNeed], brought: Supply, days: Seque
         return None
     # Full: stores at 100 %, devices at their target or as much as they will use, whichever is less.
     full_wh = sum(store_wh(store, 1.0) for store in plan.stores) + sum(need.full_plain_wh for need in needs)
-    if brought.made_o_wh_per_day > 0.0 and any(day.end_wh > full_wh + _ROUNDING_WH for day in days):
+    if any(wh > 0.0 for wh in brought.made_o_wh_by_day) and any(day.end_wh > full_wh + _ROUNDING_WH for day in days):
         return "storage"
     if not any(station.available_min > 0.0 for station in brought.stations):
         return "station-minutes"
