@@ -25,11 +25,9 @@ from kitplanner.domain.units import rad_s_from_rpm
 from kitplanner.domain.usb_sink import ENTRY_TEST_A, ENTRY_TEST_V, UsbSink
 
 Question = npt.ArrayLike
-_STEPS = 24
+_STEPS = 16
 # Points per batch, so that its arrays stay in the processor's second-level cache.
 _BATCH = 4096
-# Least scale of a limit, so that a limit of zero can be met.
-_LEAST_A, _LEAST_V, _LEAST_W = 1e-6, 1.0, 1e-6
 _BEHIND_PEAK = 1e-7
 _CURRENT, _HOLD, _ACCEPTANCE, _HUMAN, _TORQUE, _NOTHING = range(len(BINDINGS))
 ANY_SINK = UsbSink()
@@ -64,14 +62,14 @@ class _Limits:
         )
 
     def terms(self, plug_v: FloatArray, plug_a: FloatArray, current_a: FloatArray) -> dict[int, FloatArray]:
-        """By how much each limit is exceeded, in shares of itself; negative while there is room."""
-        terms = {_HOLD: (self.hold_v - plug_v) / np.maximum(self.hold_v, _LEAST_V)}
+        """By how much each limit is exceeded, each in its own unit; negative while there is room."""
+        terms = {_HOLD: self.hold_v - plug_v}
         if self.plug_a is not None:
-            terms[_CURRENT] = (plug_a - self.plug_a) / np.maximum(self.plug_a, _LEAST_A)
+            terms[_CURRENT] = plug_a - self.plug_a
         if self.plug_w is not None:
-            terms[_ACCEPTANCE] = (plug_v * plug_a - self.plug_w) / np.maximum(self.plug_w, _LEAST_W)
+            terms[_ACCEPTANCE] = plug_v * plug_a - self.plug_w
         if self.cap_a is not None:
-            terms[_HUMAN] = (current_a - self.cap_a) / np.maximum(np.abs(self.cap_a), _LEAST_A)
+            terms[_HUMAN] = current_a - self.cap_a
         return terms
 
 
@@ -294,7 +292,8 @@ def _first_limit(chain: Chain, limits: _Limits) -> tuple[FloatArray, BoolArray]:
         current[todo] = bracketed_roots(
             lambda x, at: excess(x, todo if at is None else todo[at]), low[todo], high[todo], f_low[todo], f_high[todo]
         )
-    if chain.has_converter:
+    # A limit of the plug is met upwards only; one of the person may be met behind the peak too.
+    if chain.has_converter and limits.cap_a is not None:
         behind = unsettled & ~walk.fallen & _behind_peak(chain, limits, current)
         if behind.any():
             some = np.flatnonzero(behind)

@@ -4,16 +4,17 @@ from __future__ import annotations
 
 from collections.abc import Mapping
 from dataclasses import dataclass
+from functools import cached_property
 
 import numpy as np
 
 from kitplanner.domain.chain_model import Chain, flows, human_cost, overvolted, regulating_stage, source_v
 from kitplanner.domain.converter import SwitchingConverter
-from kitplanner.domain.machine import drag_torque_nm
+from kitplanner.domain.machine import drag_torque_nm, shaft_torque_nm
 from kitplanner.domain.regulator import JUNCTION_LIMIT_DEGC, LinearRegulator
 from kitplanner.domain.roots import BoolArray, FloatArray, IntArray
 from kitplanner.domain.stage import Flow
-from kitplanner.domain.units import rad_s_from_rpm
+from kitplanner.domain.units import Values, rad_s_from_rpm
 from kitplanner.domain.usb_sink import ENTRY_TEST_V, HOLD_TOLERANCE_V, UsbSink
 
 # Failure states of a chain, in the order in which they are told; `cold` belongs to the device's cell.
@@ -58,11 +59,11 @@ class OperatingPoint:
     """A chain at one cadence or many; every array has the shape of the broadcast question.
 
     Failed points hold NaN and their states. `stage_*` are tuples with one array per step (gear, friction,
-    copper, then the stages in order), volts and amps NaN where mechanical. The losses and `plug_w` sum to
-    `human_w`. `regulator_*` belong to the first stage that sets a voltage; `junction_degc` is NaN without a
-    linear one and the hottest of several. `binding` indexes `BINDINGS`. `charges` is False where the current
-    is too small to charge or the point has failed: then the charge counts as none. `greatest_plug_w` are the
-    watts at which a collapsed point gives up, NaN elsewhere.
+    copper, then the stages in order), volts and amps NaN where mechanical; they are worked out when first
+    asked for. The losses and `plug_w` sum to `human_w`. `regulator_*` belong to the first stage that sets a
+    voltage; `junction_degc` is NaN without a linear one and the hottest of several. `binding` indexes
+    `BINDINGS`. `charges` is False where the current is too small to charge or the point has failed: then the
+    charge counts as none. `greatest_plug_w` are the watts at which a collapsed point gives up, NaN elsewhere.
     """
 
     rpm: FloatArray
@@ -73,26 +74,16 @@ class OperatingPoint:
     plug_v: FloatArray
     plug_a: FloatArray
     plug_w: FloatArray
-    stage_names: tuple[str, ...]
-    stage_in_w: tuple[FloatArray, ...]
-    stage_out_w: tuple[FloatArray, ...]
-    stage_in_v: tuple[FloatArray, ...]
-    stage_in_a: tuple[FloatArray, ...]
-    stage_out_v: tuple[FloatArray, ...]
-    stage_out_a: tuple[FloatArray, ...]
-    stage_loss_w: tuple[FloatArray, ...]
     regulator_in_v: FloatArray
     regulator_w: FloatArray
     junction_degc: FloatArray
     binding: IntArray
+    failed: BoolArray
     charges: BoolArray
     greatest_plug_w: FloatArray
     flags: Mapping[str, BoolArray]
-
-    @property
-    def failed(self) -> BoolArray:
-        """Where the point has no numbers."""
-        return self.flags["no_output"] | self.flags["vin_low"] | self.flags["collapse"]
+    chain: Chain
+    electric: tuple[Flow, ...]
 
     @property
     def has_state(self) -> BoolArray:
@@ -107,6 +98,71 @@ class OperatingPoint:
         cost = np.where(self.charges, self.human_w, 1.0)
         return share / cost
 
+    @property
+    def stage_names(self) -> tuple[str, ...]:
+        """Names of all steps."""
+        return self.chain.stage_names
+
+    @cached_property
+    def _watts(self) -> tuple[tuple[FloatArray, FloatArray, FloatArray], ...]:
+        """Watts in, out and lost of every step, the losses by their own laws and not as differences."""
+        machine, gear = self.chain.machine, self.chain.gear
+        crank_rad_s = np.asarray(rad_s_from_rpm(self.rpm), np.float64)
+        shaft_rad_s = crank_rad_s * gear.ratio
+        drag_nm = np.asarray(drag_torque_nm(machine, shaft_rad_s), np.float64)
+        amps = self.generator_a
+        shaft_w = np.asarray(shaft_torque_nm(machine, shaft_rad_s, amps), np.float64) * shaft_rad_s
+        gear_w = shaft_w * (1.0 / gear.eta - 1.0) + gear.drag_nm * crank_rad_s
+        armature_w = self.emf_v * amps
+        copper = self.electric[0]
+        rows = [
+            (self.human_w, shaft_w, gear_w),
+            (shaft_w, armature_w, drag_nm * shaft_rad_s),
+            (armature_w, _array(copper.out_v * amps), machine.ra_ohm * amps * amps + machine.vb_v * amps),
+        ]
+        for stage, flow in zip(self.chain.stages, self.electric[1:], strict=True):
+            rows.append((_array(flow.in_v * flow.in_a), _array(flow.out_v * flow.out_a), _array(stage.loss_w(flow))))
+        return tuple(rows)
+
+    @property
+    def stage_in_w(self) -> tuple[FloatArray, ...]:
+        """Watts into every step [W]."""
+        return tuple(step[0] for step in self._watts)
+
+    @property
+    def stage_out_w(self) -> tuple[FloatArray, ...]:
+        """Watts out of every step [W]."""
+        return tuple(step[1] for step in self._watts)
+
+    @property
+    def stage_loss_w(self) -> tuple[FloatArray, ...]:
+        """Heat of every step [W]."""
+        return tuple(step[2] for step in self._watts)
+
+    @property
+    def stage_in_v(self) -> tuple[FloatArray, ...]:
+        """Volts into every step [V]."""
+        return self._electric(0)
+
+    @property
+    def stage_in_a(self) -> tuple[FloatArray, ...]:
+        """Amps into every step [A]."""
+        return self._electric(1)
+
+    @property
+    def stage_out_v(self) -> tuple[FloatArray, ...]:
+        """Volts out of every step [V]."""
+        return self._electric(2)
+
+    @property
+    def stage_out_a(self) -> tuple[FloatArray, ...]:
+        """Amps out of every step [A]."""
+        return self._electric(3)
+
+    def _electric(self, which: int) -> tuple[FloatArray, ...]:
+        mechanical = np.full(self.rpm.shape, np.nan)
+        return (mechanical, mechanical, *(_array(flow[which]) for flow in self.electric))
+
     def states_at(self, index: tuple[int, ...] = ()) -> tuple[str, ...]:
         """Names of the states of one point."""
         return tuple(state for state in STATES if bool(self.flags[state][index]))
@@ -117,7 +173,7 @@ class OperatingPoint:
 
 
 def describe(chain: Chain, solution: Solution, sink: UsbSink) -> OperatingPoint:
-    """Operating point of a solved generator current, with every loss from its own law.
+    """Operating point of a solved generator current.
 
     Parameters
     ----------
@@ -139,66 +195,55 @@ def describe(chain: Chain, solution: Solution, sink: UsbSink) -> OperatingPoint:
     """
     rpm, current = solution.rpm, solution.current_a
     net_v = source_v(chain, rpm)
-    crank_rad_s = np.asarray(rad_s_from_rpm(rpm), np.float64)
-    shaft_rad_s = crank_rad_s * chain.gear.ratio
-    emf = chain.machine.ke_v_s * shaft_rad_s
-    drag_nm = np.asarray(drag_torque_nm(chain.machine, shaft_rad_s), np.float64)
-    shaft_nm = drag_nm + chain.machine.ke_v_s * current
-    _, _, t1, t0 = human_cost(chain, rpm)
+    p0, p1, t1, t0 = human_cost(chain, rpm)
     torque = t0 + t1 * current
-    steps = flows(chain, net_v, current)
-    copper = Flow(emf, current, net_v - chain.machine.ra_ohm * current, current)
-    plug_v, plug_a = (copper, *steps)[-1][2:]
-    # A device that takes nothing is solved to a current of about 1e-17 A of either sign.
-    plug_a = np.where(np.abs(plug_a) < _NO_CURRENT_A, 0.0, plug_a)
-    steps = (*steps[:-1], steps[-1]._replace(out_a=plug_a)) if steps else ()
-    plug = (np.asarray(plug_v, np.float64), plug_a)
-
-    shaft_w = shaft_nm * shaft_rad_s
-    armature_w = emf * current
-    terminal_w = copper.out_v * current
-    mechanical = (
-        (torque * crank_rad_s, shaft_w, shaft_w * (1.0 / chain.gear.eta - 1.0) + chain.gear.drag_nm * crank_rad_s),
-        (shaft_w, armature_w, drag_nm * shaft_rad_s),
-        (armature_w, terminal_w, chain.machine.ra_ohm * current * current + chain.machine.vb_v * current),
-    )
-    flags = _flags(chain, solution, sink, steps, (*plug, torque, net_v))
+    emf = net_v + chain.machine.vb_v
+    electric = _electric(chain, net_v, emf, current)
+    plug_v, plug_a = _array(electric[-1].out_v), _array(electric[-1].out_a)
+    flags = _flags(chain, solution, sink, electric[1:], (plug_v, plug_a, torque, net_v))
     failed = flags["no_output"] | flags["vin_low"] | flags["collapse"]
-
-    def shown(values: object) -> FloatArray:
-        return np.where(failed, np.nan, np.asarray(values, np.float64))
-
-    none = np.full(rpm.shape, np.nan)
-    electric = [(none,) * 4, (none,) * 4, *(tuple(shown(v) for v in flow) for flow in (copper, *steps))]
-    watts = [tuple(shown(v) for v in step) for step in mechanical]
-    for stage, flow in zip(chain.stages, steps, strict=True):
-        watts.append((shown(flow.in_v * flow.in_a), shown(flow.out_v * flow.out_a), shown(stage.loss_w(flow))))
-    meter_v, regulator_w, junction = _regulator(chain, steps, none)
+    plug_w = plug_v * plug_a
+    greatest_w = np.where(flags["collapse"], plug_w, np.nan)
+    if failed.any():
+        hidden = np.where(failed, np.nan, 0.0)
+        electric = tuple(Flow(*(_array(values) + hidden for values in flow)) for flow in electric)
+        torque, plug_w = torque + hidden, plug_w + hidden
+        p1 = p1 + hidden
+    meter_v, regulator_w, junction = _regulator(chain, electric[1:], np.full(rpm.shape, np.nan))
     return OperatingPoint(
         rpm=rpm,
-        human_w=shown(torque * crank_rad_s),
-        torque_nm=shown(torque),
-        generator_a=shown(current),
-        emf_v=shown(emf),
-        plug_v=shown(plug[0]),
-        plug_a=shown(plug[1]),
-        plug_w=shown(plug[0] * plug[1]),
-        stage_names=chain.stage_names,
-        stage_in_w=tuple(step[0] for step in watts),
-        stage_out_w=tuple(step[1] for step in watts),
-        stage_in_v=tuple(step[0] for step in electric),
-        stage_in_a=tuple(step[1] for step in electric),
-        stage_out_v=tuple(step[2] for step in electric),
-        stage_out_a=tuple(step[3] for step in electric),
-        stage_loss_w=tuple(step[2] for step in watts),
-        regulator_in_v=shown(meter_v),
-        regulator_w=shown(regulator_w),
-        junction_degc=shown(junction),
+        human_w=p0 + p1 * current,
+        torque_nm=torque,
+        generator_a=_array(electric[0].in_a),
+        emf_v=_array(electric[0].in_v),
+        plug_v=_array(electric[-1].out_v),
+        plug_a=_array(electric[-1].out_a),
+        plug_w=plug_w,
+        regulator_in_v=meter_v,
+        regulator_w=regulator_w,
+        junction_degc=junction,
         binding=solution.binding,
+        failed=failed,
         charges=~(failed | flags["not_charging"]),
-        greatest_plug_w=np.where(flags["collapse"], plug[0] * plug[1], np.nan),
+        greatest_plug_w=greatest_w,
         flags=flags,
+        chain=chain,
+        electric=electric,
     )
+
+
+def _array(values: Values) -> FloatArray:
+    return np.asarray(values, np.float64)
+
+
+def _electric(chain: Chain, net_v: FloatArray, emf_v: FloatArray, current_a: FloatArray) -> tuple[Flow, ...]:
+    """Volts and amps of the winding and of every stage."""
+    copper = Flow(emf_v, current_a, net_v - chain.machine.ra_ohm * current_a, current_a)
+    steps = [copper, *flows(chain, net_v, current_a)]
+    # A device that takes nothing is solved to a current of about 1e-17 A of either sign.
+    plug_a = _array(steps[-1].out_a)
+    steps[-1] = steps[-1]._replace(out_a=np.where(np.abs(plug_a) < _NO_CURRENT_A, 0.0, plug_a))
+    return tuple(steps)
 
 
 def _regulator(chain: Chain, steps: tuple[Flow, ...], none: FloatArray) -> tuple[FloatArray, FloatArray, FloatArray]:

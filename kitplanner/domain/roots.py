@@ -18,7 +18,9 @@ IntArray = npt.NDArray[np.intp]
 IndexedFunction = Callable[[FloatArray, IntArray | None], FloatArray]
 
 _EPS = float(np.finfo(np.float64).eps)
-_FIRST_PASS = 9
+_FIRST_PASS = 6
+# Function values this small are rounding of quantities of about one.
+_SMALLEST = 2e-16
 _MOST_STEPS = 120
 _GOLDEN = (5.0**0.5 - 1.0) / 2.0
 
@@ -28,8 +30,8 @@ def bracketed_roots(
 ) -> FloatArray:
     """Roots between `low` and `high`, where the function changes sign (Chandrupatla's method).
 
-    Inverse quadratic interpolation where the last three points allow it, bisection elsewhere. After a few
-    steps only the points that are not done yet are evaluated again.
+    Inverse quadratic interpolation where the last three points allow it, bisection elsewhere, after a first
+    straight line. After a few steps only the points that are not done yet are evaluated again.
 
     Parameters
     ----------
@@ -61,7 +63,8 @@ def bracketed_roots(
     points: IntArray | None = None
     x1, x2, f1, f2 = high, low, f_high, f_low
     x3, f3 = x1, f1
-    t = np.full_like(low, 0.5)
+    # The first look is where a straight line through the bracket's ends crosses zero.
+    t = np.clip(f_high / np.where(f_high == f_low, np.inf, f_high - f_low), 0.01, 0.99)
     for step in range(_MOST_STEPS):
         x = x1 + t * (x2 - x1)
         f = function(x, points)
@@ -73,7 +76,7 @@ def bracketed_roots(
         best = np.where(better, x1, x2)
         width = np.abs(x2 - x1)
         tolerance = 2.0 * _EPS * np.abs(best) + 1e-300
-        done = (width <= 2.0 * tolerance) | (f1 == 0.0)
+        done = (width <= 2.0 * tolerance) | (np.abs(f1) <= _SMALLEST)
         if done.all() or step == _MOST_STEPS - 1:
             _store(found, points, best)
             break
