@@ -12,7 +12,16 @@ from dataclasses import dataclass, field
 from PySide6.QtCore import QRectF, Qt
 
 from kitplanner.planners.results import EnergyFlow, FlowBand
-from kitplanner.ui.energy_line_text import StageText, day_stages, figure, missing_text, reserve_texts, rest_text, start_name, total
+from kitplanner.ui.energy_line_text import (
+    StageText,
+    day_stages,
+    figure,
+    missing_text,
+    reserve_texts,
+    rest_text,
+    start_name,
+    total,
+)
 
 Measure = Callable[[str, str, bool], float]
 MARGIN = 18.0
@@ -233,7 +242,7 @@ class DayLayout:
             start, end = start + band.wh_per_day, end + after
         self._loss(0, stations, max(0.0, people - stations), self.pitch)
 
-    def _band(  # noqa: PLR0917 - the two ends of a ribbon belong together
+    def _band(
         self,
         number: int,
         band: FlowBand,
@@ -244,9 +253,7 @@ class DayLayout:
     ) -> None:
         fill = "flow" if number % 2 == 0 else "flow_alt"
         y0, y1 = self._y(start[0]), self._y(end[0])
-        ribbon = Ribbon(
-            band.key, x, bends, (y0, y0 + start[1] * self.scale), (y1, y1 + end[1] * self.scale), fill
-        )
+        ribbon = Ribbon(band.key, x, bends, (y0, y0 + start[1] * self.scale), (y1, y1 + end[1] * self.scale), fill)
         self.picture.ribbons.append(ribbon)
 
     def _stations_to_stores(self) -> None:
@@ -323,7 +330,7 @@ class DayLayout:
             self._gap_word(x0, have)
         self._loss(3, need, max(0.0, min(lost_between(flow, "O"), used - need)), self.pitch, at)
 
-    def _piece(  # noqa: PLR0917 - the two ends of a ribbon belong together
+    def _piece(
         self,
         fill: str,
         x: tuple[float, float],

@@ -20,7 +20,7 @@ def guarded(default: Any = None) -> Callable[[Callable[..., Any]], Callable[...,
         def call(*args: Any, **kwargs: Any) -> Any:
             try:
                 return method(*args, **kwargs)
-            except Exception:
+            except Exception:  # noqa: BLE001 - handed to the hook, which reports it
                 sys.excepthook(*sys.exc_info())  # type: ignore[arg-type]
                 return default
 

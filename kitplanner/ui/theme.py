@@ -230,7 +230,8 @@ def style_sheet(scheme: Colours, scale: float) -> str:
     """Return the few rules that the palette cannot say."""
     pad = round(4 * scale)
     return f"""
-QToolTip {{ background: {scheme.strip}; color: {scheme.strip_text}; border: 1px solid {scheme.edge}; padding: {pad}px; }}
+QToolTip {{ background: {scheme.strip}; color: {scheme.strip_text}; border: 1px solid {scheme.edge};
+    padding: {pad}px; }}
 QHeaderView::section {{ background: {scheme.panel}; color: {scheme.muted}; border: none;
     border-bottom: 1px solid {scheme.rule}; padding: {pad}px {pad + 3}px; }}
 QTableView {{ gridline-color: {scheme.rule}; border: 1px solid {scheme.rule}; }}

@@ -1,0 +1,1 @@
+"""Printing: one painter in millimetres for paper, PDF and preview."""
