@@ -11,11 +11,10 @@ from typing import Protocol, TypeVar
 import msgspec
 import numpy as np
 
-from kitplanner.plan.checks import Problem, check
+from kitplanner.plan.checks import Problem, check, has_errors
 from kitplanner.plan.codec import PlanFileError
 from kitplanner.plan.files import read_plan
 from kitplanner.plan.records import Plan
-from kitplanner.planners.pipeline import has_errors
 from kitplanner.report.wording import counted, plain
 
 EXIT_ANSWERED = 0
@@ -66,7 +65,8 @@ def read_sound_plan(path: Path) -> Plan:
 def problem_line(problem: Problem) -> str:
     """Return one problem with its place, reason and remedy on one line."""
     place = " / ".join(plain(str(part)) for part in problem.place) or "plan"
-    return f"{place}: {plain(problem.text)} {plain(problem.remedy)}".rstrip()
+    parts = [plain(text).rstrip(".") for text in (problem.text, problem.remedy)]
+    return f"{place}: {'; '.join(part for part in parts if part)}."
 
 
 def record_with_id(records: Sequence[RecordT], key: str, what: str) -> RecordT:

@@ -16,10 +16,9 @@ from kitplanner.app.cli_output import (
     show_json,
 )
 from kitplanner.plan.catalogue import new_plan
-from kitplanner.plan.checks import check
+from kitplanner.plan.checks import check, has_errors
 from kitplanner.plan.codec import PlanFileError
 from kitplanner.plan.files import write_plan
-from kitplanner.planners.pipeline import has_errors
 from kitplanner.report.wording import counted, plain
 
 KINDS = ("household", "camp", "shelter", "bench")

@@ -107,7 +107,7 @@ def kept_fraction(offered_min: FloatArray, available_min: FloatArray) -> FloatAr
     [0.5, 1.0]
     """
     total = offered_min.sum(axis=0)
-    return np.minimum(1.0, np.divide(available_min, total, out=np.ones_like(total), where=total > 0.0))
+    return np.divide(available_min, total, out=np.ones_like(total), where=total > available_min)
 
 
 def supply(plan: Plan) -> Supply:
@@ -153,10 +153,11 @@ def supply(plan: Plan) -> Supply:
 
 
 def _mean(arrays: list[FloatArray], weights: list[float]) -> FloatArray:
-    """Return the mean over the kinds of day; one kind is returned as it is."""
-    if len(arrays) == 1:
-        return arrays[0]
-    return np.asarray(sum(array * weight for array, weight in zip(arrays, weights, strict=True)))
+    """Return the mean over the kinds of day."""
+    mean = np.zeros_like(arrays[0])
+    for array, weight in zip(arrays, weights, strict=True):
+        mean += array * weight
+    return mean
 
 
 def _caps_by_day(plan: Plan) -> list[tuple[FloatArray, int]]:

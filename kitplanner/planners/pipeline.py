@@ -10,7 +10,7 @@ from collections.abc import Callable
 from msgspec import Struct
 from msgspec.structs import replace
 
-from kitplanner.plan.checks import Problem, check
+from kitplanner.plan.checks import Problem, check, has_errors
 from kitplanner.plan.records import Plan
 from kitplanner.planners.balance import balance
 from kitplanner.planners.effort import effort
@@ -49,22 +49,7 @@ class Results(Struct, frozen=True, kw_only=True):
     effort_plan: Plan | None = None
 
     @property
-    def has_errors(self) -> bool:
-        """True if problems stop the calculation."""
-        return has_errors(self.problems)
-
-    @property
-    def is_effort_current(self) -> bool:
-        """True if the effort belongs to the plan as it is now."""
-        return self.effort_plan is not None and same_inputs(self.effort_plan, self.plan, EFFORT_INPUTS)
-
-
-def has_errors(problems: tuple[Problem, ...]) -> bool:
-    """Return True if at least one problem stops the calculation."""
-    return any(problem.severity == "error" for problem in problems)
-
-
-def same_inputs(before: Plan, after: Plan, names: tuple[str, ...]) -> bool:
+    def same_inputs(before: Plan, after: Plan, names: tuple[str, ...]) -> bool:
     """Return True if the named parts of two plans are the same objects (scalars: the same value).
 
     Examples

@@ -121,11 +121,14 @@ def effort_of_day_sentence(result: BalanceResult) -> str:
         return "No station in service could make up what is needed."
     if result.needed_min_per_day <= 0.0:
         return "Stores and start charges meet the need without any turning."
-    needed = hours(result.needed_min_per_day)
-    return (
-        f"To meet the need, {needed} of turning a day by a reference adult would be enough; "
-        f"people turn {hours(offered)} a day, each with their own watts."
+    available = sum(row.available_min for row in result.stations)
+    text = (
+        f"to just meet the need, reference adults would turn {hours(result.needed_min_per_day)} a day in all; "
+        f"people now turn {hours(offered)} a day, each with their own watts"
     )
+    if result.needed_min_per_day > available:
+        text += f", and the stations have time for {hours(available)}"
+    return sentence(text)
 
 
 def hours_sentence(result: BalanceResult) -> str:
