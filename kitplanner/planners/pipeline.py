@@ -6,6 +6,7 @@ Records are shared between versions of a plan, so "changed" is a question of ide
 from __future__ import annotations
 
 from collections.abc import Callable
+from concurrent.futures import CancelledError
 
 from msgspec import Struct
 from msgspec.structs import replace
@@ -49,7 +50,17 @@ class Results(Struct, frozen=True, kw_only=True):
     effort_plan: Plan | None = None
 
     @property
-    def same_inputs(before: Plan, after: Plan, names: tuple[str, ...]) -> bool:
+    def has_errors(self) -> bool:
+        """True if problems stop the calculation."""
+        return has_errors(self.problems)
+
+    @property
+    def is_effort_current(self) -> bool:
+        """True if the effort belongs to the plan as it is now."""
+        return self.effort_plan is not None and same_inputs(self.effort_plan, self.plan, EFFORT_INPUTS)
+
+
+def same_inputs(before: Plan, after: Plan, names: tuple[str, ...]) -> bool:
     """Return True if the named parts of two plans are the same objects (scalars: the same value).
 
     Examples
@@ -121,8 +132,8 @@ def run_slow(plan: Plan, before: Results | None, cancelled: Cancelled | None = N
     quick = run_quick(plan, before)
     if quick.has_errors or quick.is_effort_current or (cancelled is not None and cancelled()):
         return quick
-    rows = effort(plan, cancelled=cancelled)
-    # A stopped run holds only some rows: never mistake it for the answer.
-    if cancelled is not None and cancelled():
+    try:
+        rows = effort(plan, cancelled=cancelled)
+    except CancelledError:
         return quick
     return replace(quick, effort=rows, effort_plan=plan)
