@@ -10,8 +10,6 @@ import math
 from collections.abc import Callable, Sequence
 from dataclasses import dataclass
 
-import numpy as np
-
 from kitplanner.domain.units import MINUTES_PER_HOUR
 from kitplanner.plan.records import Plan, Store
 from kitplanner.planners.effort_chain import chain_sources
@@ -59,6 +57,8 @@ def effort(
         When `cancelled` says so
     """
     rows = cases(plan, Chosen(station=station, device=device, person=person))
+    if not rows:
+        return EffortResult(rows=())
     sample = draws()
     sources = find_sources(plan, rows, sample, chain_sources, cancelled)
     timed, places = timed_charges(plan, rows, sources, sample)
@@ -82,7 +82,7 @@ class _Answer:
 
 
 def _answers(timed: Timed) -> list[_Answer]:
-    low, high = ordered_range(timed.sample_min, timed.central_min) if timed.fills else (np.empty(0), np.empty(0))
+    low, high = ordered_range(timed.sample_min, timed.central_min)
     return [_answer(timed, place, float(low[place]), float(high[place])) for place in range(len(timed.fills))]
 
 

@@ -72,17 +72,17 @@ def fill_of(device: Device, span: Span, air_degc: float, store_fraction: float |
 
 
 def time_all(fills: tuple[Fill, ...], sources: tuple[Source, ...], sample: Draws) -> Timed:
-    """Return the minutes of charges at central values and over the sample."""
+    """Return the minutes of charges, at least one, at central values and over the sample."""
     charges = charges_of(fills)
     source_w = np.array([source.output_w for source in sources])[:, None]
-    sample_w = np.array([source.sample_w for source in sources]).reshape(len(fills), -1)
+    sample_w = np.array([source.sample_w for source in sources])
     return Timed(
         fills=fills,
         sources=sources,
         charges=charges,
-        central_min=charge_minutes(charges, source_w)[:, 0] if fills else np.empty(0),
-        sample_min=charge_minutes(varied(charges, sample), sample_w) if fills else np.empty((0, 1)),
-        bound_fraction=source_bound_fraction(charges, source_w)[:, 0] if fills else np.empty(0),
+        central_min=charge_minutes(charges, source_w)[:, 0],
+        sample_min=charge_minutes(varied(charges, sample), sample_w),
+        bound_fraction=source_bound_fraction(charges, source_w)[:, 0],
     )
 
 
