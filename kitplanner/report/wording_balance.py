@@ -38,7 +38,7 @@ def limit_words(limit: BalanceLimit | None) -> str:
 def verdict_sentence(plan: Plan, result: BalanceResult) -> str:
     """Return verdict, amount, first empty day and limit in one sentence."""
     if result.coverage_fraction is None:
-        return sentence(_nothing_needed(plan))
+        return sentence(_nothing_needed(plan, result))
     words = verdict_words(result.verdict)
     parts = [_amount(plan, result)]
     if result.first_empty_day is not None:
@@ -51,11 +51,13 @@ def verdict_sentence(plan: Plan, result: BalanceResult) -> str:
     return sentence(f"{words}: {'; '.join(parts)}")
 
 
-def _nothing_needed(plan: Plan) -> str:
+def _nothing_needed(plan: Plan, result: BalanceResult) -> str:
     if not plan.devices:
         return "no device is in the plan, so nothing is needed"
     if not any(device.count for device in plan.devices):
         return "the plan counts no device, so nothing is needed"
+    if not any(row.use_wh for row in result.devices):
+        return "the devices in the plan use nothing, so nothing is needed"
     return "the devices' own start charge covers all their use"
 
 
