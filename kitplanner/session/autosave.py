@@ -186,3 +186,9 @@ def _sha256_or_none(path: Path) -> str | None:
         return file_sha256(path)
     except PlanFileError:
         return None
+
+
+def discard(recovered: Recovered) -> None:
+    """Remove a recovery file after the user restored or declined it."""
+    discard_recovery(recovered.file)
+    recovered.file.with_suffix(".lock").unlink(missing_ok=True)

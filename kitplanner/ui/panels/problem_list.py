@@ -4,11 +4,11 @@ from __future__ import annotations
 
 from collections.abc import Sequence
 
-from kitplanner.plan.checks import Problem
 from PySide6.QtCore import Qt, Signal, Slot
 from PySide6.QtWidgets import QListWidget, QListWidgetItem, QWidget
 
 from kitplanner.plan.edits import Path
+from kitplanner.plan.problem import Problem
 from kitplanner.ui.widgets.plain import as_tool_tip
 
 _PATH_ROLE = Qt.ItemDataRole.UserRole
@@ -67,5 +67,5 @@ class ProblemList(QListWidget):
 
 
 def sentence_of(problem: Problem) -> str:
-    """Write a problem with its remedy."""
-    return f"{problem.text} {problem.remedy}".strip()
+    """Write a problem with its remedy, without its place, which the reader sees."""
+    return f"{problem.text[:1].upper()}{problem.text[1:]}; {problem.remedy}."

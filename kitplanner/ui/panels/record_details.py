@@ -7,6 +7,7 @@ from typing import Any
 
 from PySide6.QtWidgets import QVBoxLayout, QWidget
 
+from kitplanner.plan.cautions import ShownCaution
 from kitplanner.plan.edits import Path
 from kitplanner.plan.fields import FIELDS
 from kitplanner.session.editing import Editing
@@ -33,6 +34,10 @@ class RecordDetails(QWidget):
     def show_record(self, path: Path, record: Any, problems: Mapping[Path, str]) -> None:
         """Show a record and what it holds."""
         self.form.show_record(path, record, problems)
+
+    def show_cautions(self, cautions: tuple[ShownCaution, ...]) -> None:
+        """Show the inline cautions of the section at their fields."""
+        self.form.show_cautions(cautions)
 
     def focus_field(self, path: Path) -> bool:
         """Put the keyboard into a field of the record or of a part of it."""
@@ -129,6 +134,10 @@ class ConditionsDetails(RecordDetails):
         super().show_record(path, record, problems)
         self.conditions.show_record(("conditions",), record.conditions, problems)
         self.temperatures.show_parts(("conditions",), record.conditions.temperatures, problems)
+
+    def show_cautions(self, cautions: tuple[ShownCaution, ...]) -> None:
+        """Show heat and cold at the temperature."""
+        self.conditions.show_cautions(cautions)
 
     def focus_field(self, path: Path) -> bool:
         """Put the keyboard into a field of the plan, of its conditions or of a temperature."""

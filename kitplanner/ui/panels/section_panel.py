@@ -5,7 +5,7 @@ from __future__ import annotations
 from collections.abc import Mapping
 from typing import Any
 
-from PySide6.QtCore import QItemSelectionModel, QModelIndex, Qt, QTimer, Signal, Slot
+from PySide6.QtCore import QItemSelectionModel, QModelIndex, Qt, Signal, Slot
 from PySide6.QtGui import QAction, QKeySequence
 from PySide6.QtWidgets import (
     QAbstractItemView,
@@ -19,6 +19,7 @@ from PySide6.QtWidgets import (
     QWidget,
 )
 
+from kitplanner.plan.cautions import ShownCaution
 from kitplanner.plan.edits import Path
 from kitplanner.plan.fields import FIELDS
 from kitplanner.plan.records import Plan
@@ -43,7 +44,7 @@ class SectionPanel(QWidget):
     Signals
     -------
     record_chosen(section: str, record_id: str)
-        Another record is current in the table; empty id for none.
+        The user chose another record in the table; empty id for none.
     """
 
     record_chosen = Signal(str, str)
@@ -54,6 +55,8 @@ class SectionPanel(QWidget):
         self._editing = editing
         self._plan: Plan = editing.plan
         self._problems: Mapping[Path, str] = {}
+        self._may_build = False
+        self._cautions: tuple[ShownCaution, ...] = ()
         self._details: RecordDetails | None = None
         self._buttons: dict[str, QPushButton] = {}
         self._layout = QVBoxLayout(self)
@@ -110,9 +113,16 @@ class SectionPanel(QWidget):
             self._show_details()
         self._hint.setVisible(not records)
 
-    def show_details_when_idle(self) -> None:
-        """Build the form after what is on the screen now; called once the window stands."""
-        QTimer.singleShot(0, self._show_details)
+    def show_cautions(self, cautions: tuple[ShownCaution, ...]) -> None:
+        """Show the section's inline cautions at their fields."""
+        self._cautions = cautions
+        if self._details is not None:
+            self._details.show_cautions(cautions)
+
+    def open_details(self) -> None:
+        """Build and show the form of the chosen record; the first picture of the window does not wait for it."""
+        self._may_build = True
+        self._show_details()
 
     def choose(self, record_id: str) -> bool:
         """Choose a record; False when it is not there."""
@@ -125,18 +135,29 @@ class SectionPanel(QWidget):
     def focus_field(self, path: Path) -> bool:
         """Choose the record of a field and put the keyboard into the field."""
         if self.table is None:
-            return self._show_details() and self.details.focus_field(path)
+            self.open_details()
+            return self.details.focus_field(path)
         if len(path) < 2 or not self.choose(path[1]):
             return False
-        self._show_details()
+        self.open_details()
         if len(path) > 2 and self.details.focus_field(path[2:]):
             return True
         self.table.setFocus(Qt.FocusReason.OtherFocusReason)
         return True
 
+    def focus_table(self) -> None:
+        """Put the keyboard into the table, or into the form of a section without one."""
+        if self.table is not None:
+            self.table.setFocus(Qt.FocusReason.ShortcutFocusReason)
+        else:
+            self.open_details()
+            self.details.form.focus_field(self.details.form.keys()[0])
+
     @Slot()
     def add_one(self) -> None:
         """Add a record and begin with its name."""
+        if self.table is None:
+            return
         self._chosen_after_adding(self._editing.add(self.section.key))
 
     @Slot()
@@ -202,7 +223,7 @@ class SectionPanel(QWidget):
         for name, text, help_, slot in (
             ("add", self.tr("Add"), self.tr("Add: {what}"), self.add_one),
             ("several", self.tr("Several…"), self.tr("Add several: {what}"), self._on_several),
-            ("duplicate", self.tr("Copy"), self.tr("Copy the chosen one: {what}"), self._on_duplicate),
+            ("duplicate", self.tr("Copy"), self.tr("Copy the chosen one: {what}"), self.duplicate_chosen),
             ("remove", self.tr("Remove"), self.tr("Remove the chosen ones: {what}"), self.remove_chosen),
             ("up", "↑", self.tr("Move up: {what}"), self._on_up),
             ("down", "↓", self.tr("Move down: {what}"), self._on_down),
@@ -235,14 +256,14 @@ class SectionPanel(QWidget):
 
     def _show_details(self) -> bool:
         record = self._record()
-        if self._details is None and not self.isVisible():
-            # The form is built when it can be seen; the first picture of the window does not wait for it.
+        if self._details is None and not self._may_build:
             return False
         has_record = record is not None
         self._scroll.setVisible(has_record)
         if has_record:
             path = () if self.table is None else (self.section.key, record.id)
             self.details.show_record(path, record, self._problems)
+            self.details.show_cautions(self._cautions)
         for name in ("duplicate", "remove", "up", "down"):
             if name in self._buttons:
                 self._buttons[name].setEnabled(has_record)
@@ -250,7 +271,7 @@ class SectionPanel(QWidget):
 
     def _chosen_after_adding(self, ids: tuple[str, ...]) -> None:
         if ids and self.choose(ids[0]):
-            self._show_details()
+            self.open_details()
             self.details.form.focus_field("name")
             editor = self.details.form.row("name").editor
             if hasattr(editor, "selectAll"):
@@ -259,7 +280,8 @@ class SectionPanel(QWidget):
     @Slot(QModelIndex, QModelIndex)
     def _on_current_row_changed(self, _current: QModelIndex, _previous: QModelIndex) -> None:
         self._show_details()
-        self.record_chosen.emit(self.section.key, self.current_id)
+        if self.table is not None and self.table.hasFocus():
+            self.record_chosen.emit(self.section.key, self.current_id)
 
     @Slot()
     def _on_rows_changed(self) -> None:
@@ -275,7 +297,8 @@ class SectionPanel(QWidget):
             self._chosen_after_adding(self._editing.add(self.section.key, count))
 
     @Slot()
-    def _on_duplicate(self) -> None:
+    def duplicate_chosen(self) -> None:
+        """Add a copy of the chosen record behind it."""
         if self.current_id:
             self._chosen_after_adding(self._editing.duplicate(self.section.key, self.current_id))
 

@@ -3,11 +3,13 @@
 from __future__ import annotations
 
 from collections.abc import Mapping
+from types import MappingProxyType
 from typing import Any
 
 from PySide6.QtCore import QEvent, Qt, Signal, Slot
 from PySide6.QtWidgets import QFormLayout, QHBoxLayout, QLabel, QSizePolicy, QVBoxLayout, QWidget
 
+from kitplanner.plan.cautions import ShownCaution
 from kitplanner.plan.edits import Path
 from kitplanner.plan.fields import FieldSpec, is_shown
 from kitplanner.session.editing import Editing
@@ -22,8 +24,23 @@ from kitplanner.session.field_text import (
 )
 from kitplanner.ui import theme
 from kitplanner.ui.guard import guarded
+from kitplanner.ui.widgets.caution_note import CautionNote
 from kitplanner.ui.widgets.editors import ChoiceEditor, FlagEditor, RefsEditor, make_editor
 from kitplanner.ui.widgets.plain import as_tool_tip, colour_label, plain_label
+
+# Fields an inline caution speaks of; the first that a form has is where it stands.
+_FIELD_OF_CAUTION: Mapping[str, tuple[str, ...]] = MappingProxyType(
+    {
+        "C2": ("chemistry",),
+        "C5": ("cap_min",),
+        "C7": ("air_degc",),
+        "C8": ("described_by",),
+        "C9": ("air_degc", "chemistry"),
+        "C11": ("guarded",),
+        "C12": ("outlets",),
+        "C13": ("evening",),
+    }
+)
 
 
 class FieldRow(QWidget):
@@ -112,6 +129,8 @@ class RecordForm(QWidget):
         self._problems: Mapping[Path, str] = {}
         self._rows = {spec.key: FieldRow(spec, self) for spec in specs}
         self._headings: dict[str, QLabel] = {}
+        self._cautions: tuple[ShownCaution, ...] = ()
+        self._notes: list[CautionNote] = []
         self._layout = QFormLayout(self)
         self._build()
         editing.draft_changed.connect(self._on_draft_changed)
@@ -135,6 +154,28 @@ class RecordForm(QWidget):
         for key in self._rows:
             self._show_field(key)
         self._show_groups()
+
+    def show_cautions(self, cautions: tuple[ShownCaution, ...]) -> None:
+        """Put inline cautions right behind the field they speak of."""
+        if cautions == self._cautions:
+            return
+        self._cautions = cautions
+        for note in self._notes:
+            self._layout.removeRow(note)
+        self._notes = []
+        for shown in cautions:
+            key = next((key for key in _FIELD_OF_CAUTION.get(shown.caution.id, ()) if key in self._rows), None)
+            if key is None:
+                continue
+            hazard, words = translate("Cautions", shown.caution.hazard), translate("Cautions", shown.text)
+            note = CautionNote(shown.caution.id, f"{hazard}. {words}", gate=False)
+            row, _ = self._layout.getWidgetPosition(self._rows[key])
+            self._layout.insertRow(row + 1, note)
+            self._notes.append(note)
+
+    def notes(self) -> tuple[CautionNote, ...]:
+        """The inline cautions shown."""
+        return tuple(self._notes)
 
     def focus_field(self, key: str) -> bool:
         """Put the keyboard into a field; False when it is not shown."""

@@ -1,0 +1,131 @@
+"""The answers on the right: one tab per page, built one after the other once the window has been painted."""
+
+from __future__ import annotations
+
+from collections.abc import Callable
+from dataclasses import dataclass
+from typing import Any
+
+from PySide6.QtCore import QTimer, Signal, Slot
+from PySide6.QtWidgets import QTabWidget, QVBoxLayout, QWidget
+
+from kitplanner.plan.fields import QT_TRANSLATE_NOOP
+from kitplanner.plan.records import Plan
+from kitplanner.planners.pipeline import Results
+from kitplanner.session.field_text import translate
+from kitplanner.session.gates import Gates
+
+
+def _effort_page() -> QWidget:
+    from kitplanner.ui.pages.effort_page import EffortPage  # draws charts: loads pyqtgraph when shown
+
+    return EffortPage()
+
+
+def _balance_page() -> QWidget:
+    from kitplanner.ui.pages.balance_page import BalancePage  # draws charts: loads pyqtgraph when shown
+
+    return BalancePage()
+
+
+def _bench_page() -> QWidget:
+    from kitplanner.ui.pages.bench_page import BenchPage  # draws charts: loads pyqtgraph when shown
+
+    return BenchPage()
+
+
+@dataclass(frozen=True)
+class PageEntry:
+    """One tab: its key, its title, and how its page is made."""
+
+    key: str
+    title: str
+    make: Callable[[], QWidget]
+
+
+PAGES: tuple[PageEntry, ...] = (
+    PageEntry("effort", QT_TRANSLATE_NOOP("Answers", "Effort"), _effort_page),
+    PageEntry("balance", QT_TRANSLATE_NOOP("Answers", "Balance"), _balance_page),
+    PageEntry("bench", QT_TRANSLATE_NOOP("Answers", "Bench"), _bench_page),
+)
+
+
+class Answers(QTabWidget):
+    """Tabs of answer pages.
+
+    Signals
+    -------
+    page_chosen(key: str)
+        The user chose a page.
+    page_loaded(key: str)
+        A page exists now.
+    pages_loaded()
+        All pages exist.
+    """
+
+    page_chosen = Signal(str)
+    page_loaded = Signal(str)
+    pages_loaded = Signal()
+
+    def __init__(self, gates: Gates, parent: QWidget | None = None) -> None:
+        super().__init__(parent)
+        self._plan = Plan()
+        self._results: Results | None = None
+        self._gates = gates
+        self._holders: dict[str, QWidget] = {}
+        self._pages: dict[str, Any] = {}
+        self._waiting: list[PageEntry] = []
+        self.setAccessibleName(self.tr("Answers"))
+        self.setDocumentMode(True)
+        for entry in PAGES:
+            holder = QWidget()
+            QVBoxLayout(holder).setContentsMargins(0, 0, 0, 0)
+            self._holders[entry.key] = holder
+            self.addTab(holder, translate("Answers", entry.title))
+        self.currentChanged.connect(self._on_current_changed)
+
+    @property
+    def current(self) -> str:
+        """Key of the page shown."""
+        return PAGES[max(0, self.currentIndex())].key
+
+    def page(self, key: str) -> Any:
+        """A page, None while it is not built."""
+        return self._pages.get(key)
+
+    def choose(self, key: str) -> None:
+        """Show a page."""
+        index = next((i for i, entry in enumerate(PAGES) if entry.key == key), -1)
+        if index >= 0:
+            self.setCurrentIndex(index)
+
+    def set_answers(self, plan: Plan, results: Results | None) -> None:
+        """Give plan and results to all pages; hidden ones only remember them."""
+        self._plan, self._results = plan, results
+        for page in self._pages.values():
+            page.set_answers(plan, results)
+
+    def load_pages(self) -> None:
+        """Build the pages one by one, the shown one first, leaving the window alive between them."""
+        self._waiting = sorted(PAGES, key=lambda entry: entry.key != self.current)
+        self._load_next()
+
+    @Slot()
+    def _load_next(self) -> None:
+        if not self._waiting:
+            self.pages_loaded.emit()
+            return
+        entry = self._waiting.pop(0)
+        page: Any = entry.make()
+        self._pages[entry.key] = page
+        layout = self._holders[entry.key].layout()
+        assert layout is not None
+        layout.addWidget(page)
+        page.set_gates(self._gates)
+        page.set_answers(self._plan, self._results)
+        self.page_loaded.emit(entry.key)
+        QTimer.singleShot(0, self._load_next)
+
+    @Slot(int)
+    def _on_current_changed(self, _index: int) -> None:
+        self.page_chosen.emit(self.current)
