@@ -18,9 +18,13 @@ from kitplanner import __version__
 from kitplanner.app.cli_balance import run_balance
 from kitplanner.app.cli_bench import run_bench
 from kitplanner.app.cli_effort import run_effort
-from kitplanner.app.cli_output import EXIT_ANSWERED, EXIT_WRONG_CALL, CommandError
-from kitplanner.app.cli_plan import KINDS, run_check, run_new
+from kitplanner.app.cli_output import EXIT_ANSWERED, EXIT_PROBLEMS, EXIT_WRONG_CALL, CommandError
+from kitplanner.app.cli_plan import run_check, run_new
 from kitplanner.app.main import open_window
+from kitplanner.plan.catalogue import PLAN_KINDS
+from kitplanner.planners.bench import BenchError
+from kitplanner.planners.effort_rows import EffortError
+from kitplanner.planners.stations import StationError
 from kitplanner.report.wording import plain
 
 COMMANDS = ("new", "check", "effort", "balance", "bench")
@@ -33,25 +37,21 @@ def main(argv: Sequence[str] | None = None) -> int:
     arguments = sys.argv[1:] if argv is None else list(argv)
     _keep_every_sign()
     try:
-        code = _run(arguments)
-        if sys.stdout is not None:
-            sys.stdout.flush()
+        return _run(arguments)
     except CommandError as error:
         _complain(str(error))
         return error.exit_code
+    except StationError as error:
+        _complain(plain(str(error)))
+        return EXIT_PROBLEMS
+    except (BenchError, EffortError) as error:
+        _complain(plain(str(error)))
+        return EXIT_WRONG_CALL
     except SystemExit as error:
+        # How the parser ends after --help (0) or a wrong call (2).
         return error.code if isinstance(error.code, int) else EXIT_ANSWERED
     except KeyboardInterrupt:
         return EXIT_INTERRUPTED
-    except BrokenPipeError:
-        # Whoever read the answer has seen enough, as with `| head`.
-        _drop_output()
-        return EXIT_ANSWERED
-    except OSError as error:
-        _drop_output()
-        _complain(f"The answer cannot be written ({error.strerror or 'unknown cause'}).")
-        return EXIT_WRONG_CALL
-    return code
 
 
 def _run(arguments: list[str]) -> int:
@@ -95,14 +95,6 @@ def _complain(text: str) -> None:
             sys.stderr.flush()
 
 
-def _drop_output() -> None:
-    """Send what is still buffered nowhere, so that the interpreter's last flush cannot fail."""
-    with suppress(OSError, ValueError, AttributeError):
-        nowhere = os.open(os.devnull, os.O_WRONLY)
-        os.dup2(nowhere, sys.stdout.fileno())
-        os.close(nowhere)
-
-
 def _parser() -> argparse.ArgumentParser:
     parser = argparse.ArgumentParser(
         prog="kitplanner",
@@ -130,7 +122,7 @@ def _add(commands: Commands[argparse.ArgumentParser], name: str, about: str, exa
 
 def _add_plan_commands(commands: Commands[argparse.ArgumentParser]) -> None:
     new = _add(commands, "new", "Write a first plan to a new file", "kitplanner new household home.kitplan")
-    new.add_argument("kind", choices=KINDS, help="which first plan")
+    new.add_argument("kind", choices=PLAN_KINDS, help="which first plan")
     new.add_argument("file", metavar="FILE", help="file to write; an existing one is refused")
     new.set_defaults(run=run_new)
     check = _add(commands, "check", "List every problem of a plan with its place", "kitplanner check home.kitplan")

@@ -3,8 +3,10 @@
 from __future__ import annotations
 
 import json
+import os
 import sys
 from collections.abc import Sequence
+from contextlib import suppress
 from pathlib import Path
 from typing import Protocol, TypeVar
 
@@ -64,9 +66,7 @@ def read_sound_plan(path: Path) -> Plan:
 
 def problem_line(problem: Problem) -> str:
     """Return one problem with its place, reason and remedy on one line."""
-    place = " / ".join(plain(str(part)) for part in problem.place) or "plan"
-    parts = [plain(text).rstrip(".") for text in (problem.text, problem.remedy)]
-    return f"{place}: {'; '.join(part for part in parts if part)}."
+    return plain(problem.sentence)
 
 
 def record_with_id(records: Sequence[RecordT], key: str, what: str) -> RecordT:
@@ -83,10 +83,27 @@ def record_with_id(records: Sequence[RecordT], key: str, what: str) -> RecordT:
 
 
 def show(text: str) -> None:
-    """Write an answer to stdout."""
-    if sys.stdout is None:
-        raise CommandError("The answer cannot be written: the standard output is closed.")
-    sys.stdout.write(text + "\n")
+    """Write an answer to stdout, all of it or say why not."""
+    try:
+        if sys.stdout is None:
+            raise CommandError("The answer cannot be written: the standard output is closed.")
+        sys.stdout.write(text + "\n")
+        sys.stdout.flush()
+    except BrokenPipeError:
+        # Whoever reads the answer has seen enough, as with `| head`.
+        _drop_output()
+    except (OSError, ValueError) as error:
+        _drop_output()
+        cause = getattr(error, "strerror", None) or str(error)
+        raise CommandError(f"The answer cannot be written ({cause}).") from error
+
+
+def _drop_output() -> None:
+    """Send what is still buffered nowhere, so that the interpreter's last flush cannot fail."""
+    with suppress(OSError, ValueError):
+        nowhere = os.open(os.devnull, os.O_WRONLY)
+        os.dup2(nowhere, sys.stdout.fileno())
+        os.close(nowhere)
 
 
 def show_json(answer: msgspec.Struct | dict[str, object]) -> None:

@@ -19,9 +19,8 @@ from kitplanner.plan.catalogue import new_plan
 from kitplanner.plan.checks import check, has_errors
 from kitplanner.plan.codec import PlanFileError
 from kitplanner.plan.files import write_plan
+from kitplanner.plan.shipped import MissingFileError
 from kitplanner.report.wording import counted, plain
-
-KINDS = ("household", "camp", "shelter", "bench")
 
 
 def run_new(arguments: argparse.Namespace) -> int:
@@ -35,7 +34,7 @@ def run_new(arguments: argparse.Namespace) -> int:
         raise CommandError(f"{plain(str(path))} exists already and is left as it is; choose another name.")
     try:
         write_plan(path, new_plan(arguments.kind))
-    except PlanFileError as error:
+    except (PlanFileError, MissingFileError) as error:
         raise CommandError(str(error)) from error
     show(f"Wrote {plain(str(path))}.")
     return EXIT_ANSWERED

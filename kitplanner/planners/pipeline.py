@@ -17,6 +17,7 @@ from kitplanner.planners.balance import balance
 from kitplanner.planners.effort import effort
 from kitplanner.planners.flow import energy_flow
 from kitplanner.planners.results import BalanceResult, EffortResult, EnergyFlow
+from kitplanner.planners.stations import StationError
 
 Cancelled = Callable[[], bool]
 
@@ -100,7 +101,10 @@ def run_quick(plan: Plan, before: Results | None) -> Results:
     if keep and before is not None:
         answers, flow = before.balance, before.flow
     else:
-        answers = balance(plan)
+        try:
+            answers = balance(plan)
+        except StationError as error:
+            return Results(plan=plan, problems=(*problems, _unsolvable(error)))
         flow = energy_flow(plan, answers)
     return Results(
         plan=plan,
@@ -110,6 +114,12 @@ def run_quick(plan: Plan, before: Results | None) -> Results:
         effort=before.effort if before is not None else None,
         effort_plan=before.effort_plan if before is not None else None,
     )
+
+
+def _unsolvable(error: StationError) -> Problem:
+    """Return a station whose chain the law refuses as a problem of the plan."""
+    text = str(error).rstrip(".")
+    return Problem(place=("stations",), severity="error", text=text, remedy="correct the station's parts")
 
 
 def run_slow(plan: Plan, before: Results | None, cancelled: Cancelled | None = None) -> Results:
