@@ -74,7 +74,7 @@ def bench_stages(point: OperatingPoint, load: TestLoad) -> tuple[BenchStage, ...
             in_a=_known(point.stage_in_a[place]),
             out_v=_known(point.stage_out_v[place]),
             out_a=_known(point.stage_out_a[place]),
-            loss_w=_known(point.stage_loss_w[place]),
+            loss_w=None if bool(point.failed) else _known(point.stage_loss_w[place]),
         )
         for place, name in enumerate(point.stage_names)
     ]
