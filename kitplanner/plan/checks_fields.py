@@ -9,22 +9,34 @@ from typing import Any
 
 from kitplanner.plan.fields import FIELDS, SECTION_KINDS, FieldSpec, kind_of
 from kitplanner.plan.places import short
-from kitplanner.plan.problem import Place, Problem, error
-from kitplanner.plan.records import Plan, Record, Window
+from kitplanner.plan.problem import Place, Problem, error, warning
+from kitplanner.plan.records import Note, Plan, Record, Window
 
 _CLOCK = re.compile(r"([01][0-9]|2[0-3]):[0-5][0-9]|24:00")
+WIDEST_SPREAD = 2.0
 # The kind of a device groups it in pictures only; a word of one's own does no harm there.
 _FREE_CHOICES = frozenset({("device", "kind")})
 
 
 def check_fields(plan: Plan) -> tuple[Problem, ...]:
     """Return a problem for every value outside what its FieldSpec allows."""
-    return tuple(
-        problem
-        for place, record in every_record(plan)
-        for spec in FIELDS[kind_of(record)]
-        for problem in _check_value((*place, spec.key), kind_of(record), spec, getattr(record, spec.key))
-    )
+    return tuple(problem for place, record in every_record(plan) for problem in _check_record(place, record))
+
+
+def _check_record(place: Place, record: Record) -> Iterator[Problem]:
+    kind = kind_of(record)
+    for spec in FIELDS[kind]:
+        yield from _check_value((*place, spec.key), kind, spec, getattr(record, spec.key))
+    notes: dict[str, Note] = getattr(record, "notes", {})
+    for key, note in notes.items():
+        if key not in record.__struct_fields__:
+            yield warning((*place, "notes", key), "this note is about a key the record does not have", "remove it")
+        if note.spread_fraction is not None and not 0 <= note.spread_fraction <= WIDEST_SPREAD:
+            yield error(
+                (*place, "notes", key),
+                f"the spread is {note.spread_fraction:g}",
+                f"enter a share from 0 to {WIDEST_SPREAD:g}",
+            )
 
 
 def every_record(plan: Plan) -> Iterator[tuple[Place, Record]]:

@@ -61,6 +61,36 @@ STORE = (
         heading=_STORE,
         column=True,
     ),
+    whole(
+        "outlets",
+        QT_TRANSLATE_NOOP("Fields", "Outlets"),
+        "",
+        (0, 100),
+        QT_TRANSLATE_NOOP("Fields", "Devices that can charge from one of them at the same time."),
+        mark="own",
+        heading=_STORE,
+    ),
+    above_zero(
+        "charge_limit_w",
+        QT_TRANSLATE_NOOP("Fields", "Greatest charging power"),
+        "W",
+        1e5,
+        QT_TRANSLATE_NOOP("Fields", "Watts it takes at its input at most."),
+        decimals=0,
+        optional=True,
+        default=QT_TRANSLATE_NOOP("Fields", "no limit of its own"),
+        mark="own",
+        heading=_STORE,
+    ),
+    text(
+        "connector",
+        QT_TRANSLATE_NOOP("Fields", "Connector"),
+        QT_TRANSLATE_NOOP("Fields", "Plug or socket; empty fits everything."),
+        heading=_STORE,
+    ),
+    text(
+        "place", QT_TRANSLATE_NOOP("Fields", "Place"), QT_TRANSLATE_NOOP("Fields", "Where it stands."), heading=_STORE
+    ),
     percent(
         "health_fraction",
         QT_TRANSLATE_NOOP("Fields", "Health"),
@@ -116,36 +146,6 @@ STORE = (
         decimals=1,
         source=PRACTICE,
         heading=_LOSSES,
-    ),
-    whole(
-        "outlets",
-        QT_TRANSLATE_NOOP("Fields", "Outlets"),
-        "",
-        (0, 100),
-        QT_TRANSLATE_NOOP("Fields", "Devices that can charge from one of them at the same time."),
-        mark="own",
-        heading=_STORE,
-    ),
-    above_zero(
-        "charge_limit_w",
-        QT_TRANSLATE_NOOP("Fields", "Greatest charging power"),
-        "W",
-        1e5,
-        QT_TRANSLATE_NOOP("Fields", "Watts it takes at its input at most."),
-        decimals=0,
-        optional=True,
-        default=QT_TRANSLATE_NOOP("Fields", "no limit of its own"),
-        mark="own",
-        heading=_STORE,
-    ),
-    text(
-        "connector",
-        QT_TRANSLATE_NOOP("Fields", "Connector"),
-        QT_TRANSLATE_NOOP("Fields", "Plug or socket; empty fits everything."),
-        heading=_STORE,
-    ),
-    text(
-        "place", QT_TRANSLATE_NOOP("Fields", "Place"), QT_TRANSLATE_NOOP("Fields", "Where it stands."), heading=_STORE
     ),
 )
 

@@ -80,7 +80,7 @@ def write_bytes(path: Path, data: bytes, *, backup: bool = False) -> None:
     try:
         target = Path(os.path.realpath(path))
         mode = _mode_of(target)
-        aside = target.with_name(f".{target.name[:80]}.{secrets.token_hex(6)}")
+        aside = _aside_path(target)
         try:
             _write_aside(aside, data, mode)
             if backup and mode is not None:
@@ -107,6 +107,11 @@ def backup_path(path: Path) -> Path:
     'camp.kitplan~'
     """
     return Path(path).with_name(Path(path).name + BACKUP_SUFFIX)
+
+
+def _aside_path(target: Path) -> Path:
+    """Return a free hidden name in the target's folder, short whatever the target is called."""
+    return target.with_name(f".kitplan-{secrets.token_hex(8)}")
 
 
 def _mode_of(target: Path) -> int | None:
@@ -140,7 +145,7 @@ def _write_aside(aside: Path, data: bytes, mode: int | None) -> None:
 
 def _keep_backup(target: Path) -> None:
     """Let the backup name point at the present file; a copy where the disk knows no hard links."""
-    spare = target.with_name(f".{target.name[:80]}.{secrets.token_hex(6)}")
+    spare = _aside_path(target)
     try:
         try:
             os.link(target, spare)
