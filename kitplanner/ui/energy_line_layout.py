@@ -290,7 +290,7 @@ class DayLayout:
         x, top, bottom = self.columns[index] - 2, self._y(above), self._y(above + wh)
         self.picture.hooks.append(Hook(f"join{index}", x, top, bottom, joins=True))
         reach = x - 8 - (bottom - top) - 4
-        texts = tuple(f"+{figure(wh)} Wh {name}" for name in names) + (f"+{figure(wh)} Wh", f"+{figure(wh)}")
+        texts = (*(f"+{figure(wh)} Wh {name}" for name in names), f"+{figure(wh)} Wh", f"+{figure(wh)}")
         room = max(0.0, reach - self.columns[index - 1] - 0.3 * self.pitch)
         beside = Word(QRectF(reach - room, bottom + 4, room, self.frame.small), "", align=RIGHT)
         # Below the flow, ending where the next column's own pieces begin.

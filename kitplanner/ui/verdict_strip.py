@@ -12,13 +12,13 @@ from PySide6.QtWidgets import QBoxLayout, QFrame, QSizePolicy, QVBoxLayout, QWid
 from kitplanner.plan.records import Device, Plan
 from kitplanner.planners.pipeline import Results
 from kitplanner.planners.results import BalanceResult, EffortRow, Verdict
-from kitplanner.report.wording import plain, sentence
+from kitplanner.report.papers.effort import typical_row
 from kitplanner.report.wording import minutes as minutes_words
+from kitplanner.report.wording import plain, sentence
 from kitplanner.report.wording_balance import evening_sentence, medical_sentence, verdict_sentence, verdict_words
 from kitplanner.report.wording_effort import range_words
 from kitplanner.ui.guard import guarded
 from kitplanner.ui.pages.chart_frame import plain_label, restyle_labels
-from kitplanner.ui.pages.effort_page import typical_row
 from kitplanner.ui.theme import colours, text_scale, type_font
 
 
@@ -181,7 +181,9 @@ class VerdictStrip(QFrame):
         device, row = found
         person = next((plain(one.name) for one in plan.people if one.id == row.person), "")
         text = self.tr("One full charge, {device}: {time} of turning {range}")
-        text = text.format(device=plain(device.name), time=minutes_words(row.minutes_p50), range=range_words(row)).strip()
+        text = text.format(
+            device=plain(device.name), time=minutes_words(row.minutes_p50), range=range_words(row)
+        ).strip()
         return f"{text}, {person}." if person else f"{text}."
 
     def _colour(self) -> None:

@@ -140,7 +140,10 @@ def minutes_axis(most_min: float, label: str) -> Axis:
     count = math.floor(hours / step_h + 1e-9)
     decimals = max(0, -math.floor(math.log10(step_h) + 1e-9))
     return Axis(
-        label, 0.0, most_min, tuple((n * step_h * 60, f"{n * step_h:.{decimals}f} h" if n else "0") for n in range(count + 1))
+        label,
+        0.0,
+        most_min,
+        tuple((n * step_h * 60, f"{n * step_h:.{decimals}f} h" if n else "0") for n in range(count + 1)),
     )
 
 

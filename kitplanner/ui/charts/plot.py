@@ -22,7 +22,9 @@ class PlainAxis(pg.AxisItem):
 
     def __init__(self, orientation: str) -> None:
         super().__init__(orientation, maxTickLength=0)
-        self.setStyle(tickTextOffset=6, autoExpandTextSpace=True, autoReduceTextSpace=False, hideOverlappingLabels=True)
+        self.setStyle(
+            tickTextOffset=6, autoExpandTextSpace=True, autoReduceTextSpace=False, hideOverlappingLabels=False
+        )
 
     @guarded()
     def paint(self, painter: QPainter, option: object, widget: QWidget | None) -> None:
@@ -49,27 +51,52 @@ class HatchedBars(pg.GraphicsObject):
     @guarded()
     def paint(self, painter: QPainter, _option: object, _widget: QWidget | None) -> None:
         """Draw in pixels, so that outline and hatch keep their width at any scale."""
-        scheme, to_px = colours(), painter.transform()
+        to_px = painter.transform()
         painter.save()
         painter.resetTransform()
-        painter.setRenderHint(QPainter.RenderHint.Antialiasing)
-        fill = scheme.color(self._bars.colour)
+        half = self._bars.width / 2
         for x, height in zip(self._bars.x, self._bars.height, strict=True):
-            if not np.isfinite(height) or height == 0:
-                continue
-            half = self._bars.width / 2
-            box = to_px.mapRect(QRectF(QPointF(x - half, 0), QPointF(x + half, float(height))).normalized())
-            path = QPainterPath()
-            path.addRect(box)
-            if self._bars.hollow:
-                draw_hatch(painter, path, "rising", fill, 6.0)
-                painter.setBrush(Qt.BrushStyle.NoBrush)
-                painter.setPen(QPen(fill, 1.3))
-            else:
-                painter.setBrush(fill)
-                painter.setPen(QPen(scheme.color("outline"), 0.8))
-            painter.drawRect(box)
+            if np.isfinite(height) and height != 0:
+                box = QRectF(QPointF(x - half, 0), QPointF(x + half, float(height))).normalized()
+                fill_box(painter, to_px.mapRect(box), self._bars)
         painter.restore()
+
+
+class Swatch(pg.GraphicsObject):
+    """A small sample of a kind of bar."""
+
+    def __init__(self, bars: Bars) -> None:
+        super().__init__()
+        self._bars = bars
+        side = QFontMetricsF(type_font("small")).height() * 0.72
+        self._box = QRectF(0, side * 0.1, side * 1.3, side)
+
+    @guarded(QRectF())
+    def boundingRect(self) -> QRectF:
+        """Return the sample's box."""
+        return self._box.adjusted(-1, -1, 1, 1)
+
+    @guarded()
+    def paint(self, painter: QPainter, _option: object, _widget: QWidget | None) -> None:
+        """Draw the sample."""
+        fill_box(painter, self._box, self._bars)
+
+
+def fill_box(painter: QPainter, box: QRectF, bars: Bars) -> None:
+    """Draw one bar: filled with a thin outline, or hollow with a hatch."""
+    scheme = colours()
+    fill = scheme.color(bars.colour)
+    painter.setRenderHint(QPainter.RenderHint.Antialiasing)
+    if bars.hollow:
+        path = QPainterPath()
+        path.addRect(box)
+        draw_hatch(painter, path, "rising", fill, 6.0)
+        painter.setBrush(Qt.BrushStyle.NoBrush)
+        painter.setPen(QPen(fill, 1.3))
+    else:
+        painter.setBrush(fill)
+        painter.setPen(QPen(scheme.color("outline"), 0.8))
+    painter.drawRect(box)
 
 
 class Plot(pg.PlotWidget):
@@ -77,12 +104,12 @@ class Plot(pg.PlotWidget):
 
     ready = False
 
-    def __init__(self, parent: QWidget | None = None, *, height_lines: float = 13.0) -> None:
+    def __init__(self, parent: QWidget | None = None) -> None:
         super().__init__(parent, axisItems={"left": PlainAxis("left"), "bottom": PlainAxis("bottom")})
         self._data: ChartData | None = None
-        self._height_lines = height_lines
         self._cursor: pg.InfiniteLine | None = None
         self._cursor_at: float | None = None
+        self._title_items: list[pg.QtWidgets.QGraphicsItem] = []
         self.setAntialiasing(True)
         item = self.getPlotItem()
         item.setMenuEnabled(False)
@@ -128,15 +155,13 @@ class Plot(pg.PlotWidget):
 
     @guarded(QSize(320, 200))
     def sizeHint(self) -> QSize:
-        """Return a height that follows the text size."""
-        line = QFontMetricsF(type_font("small")).height()
-        return QSize(round(24 * line), round(self._height_lines * line))
+        """Return a small size: the frame around the plot sets its height."""
+        return QSize(320, 120)
 
-    @guarded(QSize(200, 150))
+    @guarded(QSize(120, 80))
     def minimumSizeHint(self) -> QSize:
-        """Return the least size at which ticks and words stay apart."""
-        line = QFontMetricsF(type_font("small")).height()
-        return QSize(round(13 * line), round(self._height_lines * line * 0.8))
+        """Return the least size."""
+        return QSize(120, 80)
 
     def _style(self) -> None:
         scheme, font = colours(), type_font("small")
@@ -161,7 +186,7 @@ class Plot(pg.PlotWidget):
         if data is None:
             return
         self.setXRange(data.x.low, data.x.high, padding=0)
-        self.setYRange(data.y.low, data.y.high, padding=0.03)
+        self.setYRange(data.y.low, data.y.high + self._head_room(data), padding=0.02)
         self.getAxis("bottom").setTicks([list(data.x.ticks)])
         self.getAxis("left").setTicks([list(data.y.ticks)])
         for shade in data.shades:
@@ -174,13 +199,24 @@ class Plot(pg.PlotWidget):
             self._bar_words(bars)
         for line in data.lines:
             self._line(line)
-        for mark in data.marks:
-            self._mark(mark, data)
+        self._marks(data)
         self._titles(data)
         self._names(data)
         if self._cursor_at is not None:
-            self._cursor = pg.InfiniteLine(pos=self._cursor_at, angle=90, pen=QPen(colours().color("ink"), 1.2))
+            pen = QPen(colours().color("ink"), 1.4)
+            pen.setCosmetic(True)
+            self._cursor = pg.InfiniteLine(pos=self._cursor_at, angle=90, pen=pen)
             item.addItem(self._cursor)
+
+    @staticmethod
+    def _head_room(data: ChartData) -> float:
+        """Return the room above the figures that words at the top need."""
+        has_words = any(line.name for line in data.lines) or any(bar.texts for bar in data.bars)
+        has_words = has_words or any(shade.text for shade in data.shades) or any(mark.text for mark in data.marks)
+        return 0.16 * (data.y.high - data.y.low) if has_words else 0.0
+
+    def _top(self, data: ChartData) -> float:
+        return data.y.high + self._head_room(data)
 
     def _rules(self, data: ChartData) -> None:
         pen = QPen(colours().color("rule"), 1)
@@ -191,15 +227,16 @@ class Plot(pg.PlotWidget):
             self.getPlotItem().addItem(rule)
 
     def _shade(self, shade: Shade, data: ChartData) -> None:
-        colour = colours().color(shade.colour)
+        colour = colours().color("edge" if shade.hatched else shade.colour)
+        if shade.hatched:
+            colour.setAlpha(110)
         brush = QBrush(colour, Qt.BrushStyle.BDiagPattern) if shade.hatched else QBrush(colour)
-        edge = QPen(colours().color("rule"), 1)
-        edge.setCosmetic(True)
+        edge = QPen(Qt.PenStyle.NoPen)
         region = pg.LinearRegionItem((shade.low, shade.high), movable=False, brush=brush, pen=edge)
         region.setZValue(-10)
         self.getPlotItem().addItem(region)
         if shade.text:
-            self._word(shade.text, (shade.low + shade.high) / 2, data.y.high, (0.5, 0.0), "muted")
+            self._word(shade.text, (shade.low + shade.high) / 2, self._top(data), (0.5, 0.0), "muted")
 
     def _band(self, band: Band) -> None:
         colour = colours().color(band.colour)
@@ -221,6 +258,7 @@ class Plot(pg.PlotWidget):
         self.getPlotItem().addItem(curve)
         if line.dots:
             brush, outline = QBrush(colours().color(line.colour)), QPen(colours().color("field"), 1)
+            outline.setCosmetic(True)
             self.getPlotItem().addItem(pg.ScatterPlotItem(line.x, line.y, size=9, brush=brush, pen=outline))
 
     def _bar_words(self, bars: Bars) -> None:
@@ -228,18 +266,28 @@ class Plot(pg.PlotWidget):
             if text and np.isfinite(height):
                 self._word(text, float(x), float(max(height, 0.0)), (0.5, 1.0), "ink")
 
-    def _mark(self, mark: Mark, data: ChartData) -> None:
+    def _marks(self, data: ChartData) -> None:
+        """Draw lines across; words of neighbours keep apart: side by side, or one above and one below."""
+        levels = sorted((mark for mark in data.marks if mark.level), key=lambda mark: mark.at)
+        for place, mark in enumerate(levels):
+            below = place == 0 and len(levels) > 1
+            self._mark_line(mark, 0)
+            if mark.text:
+                self._word(mark.text, data.x.high, mark.at, (1.0, 0.0 if below else 1.0), mark.colour)
+        drop, before = 0.0, None
+        for mark in sorted((mark for mark in data.marks if not mark.level), key=lambda mark: mark.at):
+            self._mark_line(mark, 90)
+            if mark.text:
+                near = before is not None and mark.at - before < 0.6 * (data.x.high - data.x.low)
+                drop, before = (drop + 0.14 if near else 0.0), mark.at
+                right = mark.at > (data.x.low + data.x.high) / 2
+                high = self._top(data) - drop * (data.y.high - data.y.low)
+                self._word(mark.text, mark.at, high, (1.0 if right else 0.0, 0.0), mark.colour)
+
+    def _mark_line(self, mark: Mark, angle: int) -> None:
         pen = QPen(colours().color(mark.colour), 1.3, Qt.PenStyle.DashLine)
         pen.setCosmetic(True)
-        item = self.getPlotItem()
-        item.addItem(pg.InfiniteLine(pos=mark.at, angle=0 if mark.level else 90, pen=pen))
-        if not mark.text:
-            return
-        if mark.level:
-            self._word(mark.text, data.x.high, mark.at, (1.0, 1.0), mark.colour)
-            return
-        right = mark.at > (data.x.low + data.x.high) / 2
-        self._word(mark.text, mark.at, data.y.high, (1.0 if right else 0.0, 0.0), mark.colour)
+        self.getPlotItem().addItem(pg.InfiniteLine(pos=mark.at, angle=angle, pen=pen))
 
     def _word(self, text: str, x: float, y: float, anchor: tuple[float, float], colour: str) -> None:
         word = pg.TextItem(color=colours().color(colour), anchor=anchor)
@@ -249,18 +297,28 @@ class Plot(pg.PlotWidget):
         self.getPlotItem().addItem(word, ignoreBounds=True)
 
     def _titles(self, data: ChartData) -> None:
-        """Write what the chart counts above its figures."""
-        scheme, font = colours(), type_font("small")
-        scene = self.getPlotItem()
-        for old in getattr(self, "_title_items", ()):
-            old.setParentItem(None)
+        """Write what the chart counts above its figures, and beside it what each kind of bar means."""
+        for old in self._title_items:
             if old.scene() is not None:
                 old.scene().removeItem(old)
-        title = pg.QtWidgets.QGraphicsSimpleTextItem(data.y.label, scene)
-        title.setFont(font)
-        title.setBrush(scheme.color("muted"))
-        title.setPos(4, 2)
-        self._title_items = [title]
+        self._title_items = []
+        at = self._title(data.y.label, 4.0)
+        for bars in data.bars:
+            if bars.name:
+                swatch = Swatch(bars)
+                swatch.setParentItem(self.getPlotItem())
+                swatch.setPos(at + 10, 4)
+                self._title_items.append(swatch)
+                at = self._title(bars.name, at + 14 + swatch.boundingRect().width())
+
+    def _title(self, text: str, left: float) -> float:
+        """Write a word into the line above the chart; return where it ends."""
+        word = pg.QtWidgets.QGraphicsSimpleTextItem(text, self.getPlotItem())
+        word.setFont(type_font("small"))
+        word.setBrush(colours().color("muted"))
+        word.setPos(left, 2)
+        self._title_items.append(word)
+        return left + word.boundingRect().width()
 
     def _names(self, data: ChartData) -> None:
         """Write each curve's name at its end, moved apart where two would meet."""
@@ -275,4 +333,3 @@ class Plot(pg.PlotWidget):
             at = y if last is None else max(y, last + gap)
             last = at
             self._word(line.name, x, at, (1.0, 1.0), line.colour)
-

@@ -10,13 +10,31 @@ from PySide6.QtCore import QEvent, QSize, Qt, QTimer, Signal, Slot
 from PySide6.QtGui import QPaintEvent, QShowEvent
 from PySide6.QtWidgets import QFrame, QScrollArea, QVBoxLayout, QWidget
 
-from kitplanner.plan.cautions import cautions_for
 from kitplanner.plan.records import Plan
 from kitplanner.planners.pipeline import Results
-from kitplanner.session.gates import Gates
 from kitplanner.ui.guard import guarded
-from kitplanner.ui.pages.caution_list import CautionList
 from kitplanner.ui.pages.chart_frame import ChartFrame, restyle_labels
+
+
+class PageColumn(QWidget):
+    """The column that scrolls; tells when it was painted for the first time.
+
+    Signals
+    -------
+    first_painted()
+        The column stands on the screen.
+    """
+
+    first_painted = Signal()
+    _was_painted = False
+
+    @guarded()
+    def paintEvent(self, event: QPaintEvent) -> None:
+        """Tell the first time, once the event loop is back."""
+        super().paintEvent(event)
+        if not self._was_painted:
+            self._was_painted = True
+            QTimer.singleShot(0, self.first_painted.emit)
 
 
 class AnswerPage(QWidget):
@@ -30,7 +48,6 @@ class AnswerPage(QWidget):
 
     charts_loaded = Signal()
     ready = False
-    place = ""
 
     def __init__(self, name: str, parent: QWidget | None = None) -> None:
         super().__init__(parent)
@@ -38,30 +55,17 @@ class AnswerPage(QWidget):
         self.plan: Plan | None = None
         self.results: Results | None = None
         self._is_stale = False
-        self._is_loading = False
         self.is_loaded = False
-        self._gates: Gates | None = None
-        self._gate_box = CautionList()
-        self._note_box = CautionList()
-        self.content = QWidget()
-        self.content.setBackgroundRole(self.backgroundRole())
-        self.column = QVBoxLayout(self.content)
+        content = PageColumn()
+        content.first_painted.connect(self.load_charts)
+        self.column = QVBoxLayout(content)
         self.column.setContentsMargins(14, 10, 14, 14)
-        self.column.setSpacing(10)
+        self.column.setSpacing(12)
         area = QScrollArea()
         area.setWidgetResizable(True)
         area.setFrameShape(QFrame.Shape.NoFrame)
-        area.setHorizontalScrollBarPolicy(Qt.ScrollBarPolicy.ScrollBarAsNeeded)
-        whole = QWidget()
-        stacked = QVBoxLayout(whole)
-        stacked.setContentsMargins(0, 0, 0, 0)
-        stacked.setSpacing(0)
-        for part in (self._gate_box, self.content):
-            stacked.addWidget(part)
-        stacked.addStretch(1)
-        stacked.addWidget(self._note_box)
-        area.setWidget(whole)
         area.setFocusPolicy(Qt.FocusPolicy.NoFocus)
+        area.setWidget(content)
         outer = QVBoxLayout(self)
         outer.setContentsMargins(0, 0, 0, 0)
         outer.addWidget(area)
@@ -75,28 +79,8 @@ class AnswerPage(QWidget):
         else:
             self._is_stale = True
 
-    def set_gates(self, gates: Gates) -> None:
-        """Take the record of acknowledged cautions; without it every gate stays open to be ticked."""
-        self._gates = gates
-        gates.changed.connect(self._show_cautions)
-        for box in (self._gate_box, self._note_box):
-            box.acknowledged.connect(gates.acknowledge)
-        self._show_cautions()
-
-    @Slot()
-    def _show_cautions(self) -> None:
-        """Show the page's cautions: gates above the answers until they are ticked, the rest below."""
-        if self.plan is None or not self.place:
-            return
-        shown = cautions_for(self.plan, self.place)
-        gates = self._gates
-        done = frozenset(one.caution.id for one in shown if gates is not None and gates.is_acknowledged(one.caution.id))
-        above = tuple(one for one in shown if one.how == "gate" and one.caution.id not in done)
-        self._gate_box.set_cautions(above, done)
-        self._note_box.set_cautions(tuple(one for one in shown if one not in above), done)
-
     def refresh(self) -> None:
-        """Draw plan and results; pages fill this in."""
+        """Draw plan and results; every page has its own."""
 
     def frames(self) -> list[ChartFrame]:
         """Return the page's charts."""
@@ -105,7 +89,6 @@ class AnswerPage(QWidget):
     def _refresh_now(self) -> None:
         self._is_stale = False
         if self.plan is not None:
-            self._show_cautions()
             self.refresh()
 
     @Slot()
@@ -126,21 +109,13 @@ class AnswerPage(QWidget):
             self._refresh_now()
 
     @guarded()
-    def paintEvent(self, event: QPaintEvent) -> None:
-        """Ask for the charts once the page itself has been painted."""
-        super().paintEvent(event)
-        if not self._is_loading:
-            self._is_loading = True
-            QTimer.singleShot(0, self.load_charts)
-
-    @guarded()
     def changeEvent(self, event: QEvent) -> None:
         """Take a new text size."""
         super().changeEvent(event)
         if self.ready and event.type() == QEvent.Type.FontChange:
             restyle_labels(self)
 
-    @guarded(QSize(520, 420))
+    @guarded(QSize(320, 200))
     def minimumSizeHint(self) -> QSize:
         """Return a small size: the column scrolls."""
         return QSize(320, 200)

@@ -42,11 +42,13 @@ def days_chart(plan: Plan, result: BalanceResult, words: tuple[str, str, str]) -
     x = np.array([0.0, *(float(row.day) for row in result.days)])
     y = np.array([start, *end])
     step = max(1, round(plan.days / 8))
-    ticks = tuple((float(day), f"{words[2]} {day}" if day == step else str(day)) for day in range(step, plan.days + 1, step))
+    ticks = tuple(
+        (float(day), f"{words[2]} {day}" if day == step else str(day)) for day in range(step, plan.days + 1, step)
+    )
     marks, shades = [Mark(0.0, words[1], "warning" if float(end.min()) < 0 else "muted", level=True)], []
     if result.first_empty_day is not None:
         first = float(result.first_empty_day)
-        shades.append(Shade(first - 1, first, f"{words[1]}: {words[2]} {result.first_empty_day}", "panel"))
+        shades.append(Shade(first - 1, first, f"{words[1]}: {words[2]} {result.first_empty_day}", hatched=True))
     x_axis = Axis("", 0.0, float(plan.days), ticks)
     line = Line(thinned(x), thinned(y), "", "line", dots=len(x) <= 16)
     return ChartData(x_axis, axis_over(y, words[0]), (line,), marks=tuple(marks), shades=tuple(shades))
@@ -68,7 +70,15 @@ def cuts_chart(result: BalanceResult, words: tuple[str, str, str, str]) -> Chart
     other = np.array([row.covered_fraction for row in shared])
     bars = (
         Bars(at - 0.2, one, 0.36, words[0], "flow", texts=tuple(percent(row.covered_fraction) for row in strict)),
-        Bars(at + 0.2, other, 0.36, words[1], "second", hollow=True, texts=tuple(percent(r.covered_fraction) for r in shared)),
+        Bars(
+            at + 0.2,
+            other,
+            0.36,
+            words[1],
+            "second",
+            hollow=True,
+            texts=tuple(percent(r.covered_fraction) for r in shared),
+        ),
     )
     ticks = tuple((float(n), f"{words[3]} {row.priority}") for n, row in enumerate(strict))
     y = Axis(words[2], 0.0, 1.18, tuple((value, percent(value)) for value in (0.0, 0.5, 1.0)))

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from PySide6.QtWidgets import QWidget
+from PySide6.QtWidgets import QVBoxLayout, QWidget
 
 from kitplanner.plan.records import Plan
 from kitplanner.planners.results import BalanceResult
@@ -10,10 +10,12 @@ from kitplanner.report.wording_balance import (
     cuts_sentence,
     days_sentence,
     effort_of_day_sentence,
+    evening_sentence,
     hours_sentence,
+    medical_sentence,
     people_sentence,
     stores_sentence,
-    verdict_lines,
+    verdict_sentence,
 )
 from kitplanner.ui.pages import balance_charts
 from kitplanner.ui.pages.answer_page import AnswerPage
@@ -25,11 +27,11 @@ from kitplanner.ui.pages.plain_table import PlainTable, TableData
 class BalancePage(AnswerPage):
     """Energy made and stored against energy used."""
 
-    place = "balance"
-
     def __init__(self, parent: QWidget | None = None) -> None:
         super().__init__(self.tr("Balance"), parent)
+        self.evening = plain_label(bold=True)
         self.verdict = plain_label(size="title", bold=True)
+        self.medical = plain_label()
         self.effort = plain_label()
         self.hours = ChartFrame(self.tr("An average day, hour by hour"))
         self.days = ChartFrame(self.tr("What is left in stores and devices"))
@@ -49,18 +51,17 @@ class BalancePage(AnswerPage):
         self._parts = [
             self.effort,
             Columns([self.hours, self.days]),
-            Columns([self.cuts, cuts]),
-            Columns([devices, stations], 380),
+            Columns([self.cuts, cuts], 430),
+            Columns([devices, stations], 600),
         ]
-        self.column.addWidget(self.verdict)
+        for label in (self.evening, self.verdict, self.medical):
+            self.column.addWidget(label)
         for part in self._parts:
             self.column.addWidget(part)
         self.column.addStretch(1)
 
     @staticmethod
     def _titled(title: str, table: PlainTable, below: QWidget | None) -> QWidget:
-        from PySide6.QtWidgets import QVBoxLayout
-
         box = QWidget()
         layout = QVBoxLayout(box)
         layout.setContentsMargins(0, 0, 0, 0)
@@ -81,8 +82,16 @@ class BalancePage(AnswerPage):
             part.setVisible(balance is not None)
         if balance is None:
             self.verdict.setText(self._why_none())
+            self.evening.hide()
+            self.medical.hide()
             return
-        self.verdict.setText("\n".join(verdict_lines(plan, balance)))
+        self.verdict.setText(verdict_sentence(plan, balance))
+        for label, words in (
+            (self.evening, evening_sentence(plan, balance)),
+            (self.medical, medical_sentence(plan)),
+        ):
+            label.setText(words)
+            label.setVisible(bool(words))
         self.effort.setText(effort_of_day_sentence(balance))
         self.stores.setText(stores_sentence(balance))
         self.people.setText(people_sentence(balance))

@@ -66,7 +66,9 @@ def failure_spans(sweep: BenchSweep) -> tuple[tuple[float, float, tuple[BenchSta
     return tuple(span for span in spans if span[2])
 
 
-def small_chart(sweep: BenchSweep, curves: tuple[Curve, ...], label: str, look: BenchLook, *, marks: tuple[Mark, ...] = ()) -> ChartData:
+def small_chart(
+    sweep: BenchSweep, curves: tuple[Curve, ...], label: str, look: BenchLook, *, marks: tuple[Mark, ...] = ()
+) -> ChartData:
     """Return one small chart over cadence, comfort band and failing stretches shaded."""
     rpm = thinned(sweep.rpm)
     lines = tuple(

@@ -43,7 +43,9 @@ class BenchControls(QWidget):
         self.best = QPushButton(self.tr("&Best cadence"))
         self.best.setCheckable(True)
         self.best.setChecked(True)
-        self.best.setToolTip(self.tr("The cadence in the comfort band that brings most of the turning into the battery"))
+        self.best.setToolTip(
+            self.tr("The cadence in the comfort band that brings most of the turning into the battery")
+        )
         self.fixed = QCheckBox(self.tr("&Fixed current at the plug"))
         self.fixed.setToolTip(self.tr("Without it the device takes what keeps its input voltage up"))
         self.amps = QuietSpinBox()

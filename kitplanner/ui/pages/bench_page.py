@@ -4,10 +4,10 @@ from __future__ import annotations
 
 import numpy as np
 from PySide6.QtCore import QTimer, Signal, Slot
-from PySide6.QtWidgets import QGridLayout, QHBoxLayout, QVBoxLayout, QWidget
+from PySide6.QtWidgets import QHBoxLayout, QVBoxLayout, QWidget
 
 from kitplanner.plan.records import Plan, Station
-from kitplanner.planners.bench import bench_point, bench_sweep
+from kitplanner.planners.bench import BenchError, bench_point, bench_sweep
 from kitplanner.planners.results import BenchPoint, BenchSweep
 from kitplanner.planners.stations import StationError, comfort_of
 from kitplanner.report.wording import number
@@ -26,7 +26,7 @@ from kitplanner.ui.pages.bench_charts import (
 from kitplanner.ui.pages.bench_controls import BenchControls
 from kitplanner.ui.pages.chart_frame import ChartFrame, plain_label
 from kitplanner.ui.pages.columns import Columns
-from kitplanner.ui.pages.plain_table import PlainTable, TableData
+from kitplanner.ui.pages.plain_table import PlainTable
 
 _SMALL_LINES = 9.0
 
@@ -41,15 +41,14 @@ class BenchPage(AnswerPage):
     """
 
     point_changed = Signal(object, str)
-    place = "bench"
 
     def __init__(self, parent: QWidget | None = None) -> None:
         super().__init__(self.tr("Bench"), parent)
         self.controls = BenchControls()
-        self.answer = plain_label(size="title", bold=True)
+        self.answer = plain_label(bold=True)
         self.meter_words = plain_label()
         self.gauge = MeterGauge()
-        self.states = plain_label()
+        self.states = plain_label(size="small")
         self.stages = PlainTable(self.tr("Stages of the chain"), most_rows=14)
         self.watts = self._frame(self.tr("Watts"))
         self.volts = self._frame(self.tr("Volts at the plug"))
@@ -120,7 +119,9 @@ class BenchPage(AnswerPage):
             return
         station = self._station(plan)
         if station is None:
-            self._say(self.tr("No station of the plan is described by its parts; the bench needs its machine and stages."))
+            self._say(
+                self.tr("No station of the plan is described by its parts; the bench needs its machine and stages.")
+            )
             return
         amps = self.controls.asked_amps()
         try:
@@ -129,7 +130,7 @@ class BenchPage(AnswerPage):
                 self._swept = (station, amps)
                 self._show_sweep(plan, station, self._sweep)
             point = bench_point(plan, station.id, self.controls.asked_rpm(), amps)
-        except StationError as error:
+        except (BenchError, StationError) as error:
             self._sweep = None
             self._say(str(error))
             return
@@ -171,21 +172,22 @@ class BenchPage(AnswerPage):
             Mark(level, f"{number(level, 2)} V", "second", level=True) for level in look.meter if level is not None
         )
         both = (Curve(sweep.human_w, self.tr("turning")), Curve(sweep.stored_w, self.tr("stored"), "second", "dashed"))
-        self.watts.set_content(small_chart(sweep, both, self.tr("W"), look), sweep_sentence(sweep), table)
-        self._fill(self.volts, sweep, sweep.plug_v, self.tr("V"), look, plug, table)
-        self._fill(self.amps, sweep, sweep.plug_a, self.tr("A"), look, (), table)
-        self._fill(self.torque, sweep, sweep.torque_nm, self.tr("Nm"), look, (), table)
-        self._fill(self.meter, sweep, sweep.meter_v, self.tr("V"), look, meter, table)
-        self._fill(self.heat, sweep, sweep.regulator_w, self.tr("W"), look, (), table)
+        self.watts.set_content(
+            small_chart(sweep, both, self.tr("W over turns a minute"), look), sweep_sentence(sweep), table
+        )
+        for frame, values, unit, marks in (
+            (self.volts, sweep.plug_v, self.tr("V over turns a minute"), plug),
+            (self.amps, sweep.plug_a, self.tr("A over turns a minute"), ()),
+            (self.torque, sweep.torque_nm, self.tr("Nm over turns a minute"), ()),
+            (self.meter, sweep.meter_v, self.tr("V over turns a minute"), meter),
+            (self.heat, sweep.regulator_w, self.tr("W over turns a minute"), ()),
+        ):
+            has_values = bool(np.isfinite(values).any())
+            frame.setVisible(has_values)
+            if has_values:
+                frame.set_content(small_chart(sweep, (Curve(values),), unit, look, marks=marks), "", table)
         lines = states_lines(sweep, self.tr("{low} to {high} turns a minute: {states}."))
         self.states.setText("\n".join(lines))
-
-    @staticmethod
-    def _fill(frame: ChartFrame, sweep: BenchSweep, values, label: str, look: BenchLook, marks, table: TableData) -> None:  # noqa: ANN001, PLR0917
-        has_values = bool(np.isfinite(values).any())
-        frame.setVisible(has_values)
-        if has_values:
-            frame.set_content(small_chart(sweep, (Curve(values),), label, look, marks=marks), "", table)
 
     def _show_point(self, station: Station, point: BenchPoint, sweep: BenchSweep) -> None:
         self._answers.show()

@@ -2,10 +2,12 @@
 
 from __future__ import annotations
 
-from PySide6.QtCore import Qt, Slot
+from PySide6.QtCore import QSize, Qt, Slot
+from PySide6.QtGui import QFontMetricsF
 from PySide6.QtWidgets import QHBoxLayout, QLabel, QSizePolicy, QStackedWidget, QToolButton, QVBoxLayout, QWidget
 
 from kitplanner.ui.charts.chart_data import ChartData
+from kitplanner.ui.guard import guarded
 from kitplanner.ui.pages.plain_table import PlainTable, TableData
 from kitplanner.ui.theme import type_font
 
@@ -29,12 +31,31 @@ def restyle_labels(root: QWidget) -> None:
             label.setFont(type_font(str(size), bold=bool(label.property("type_bold"))))  # type: ignore[arg-type]
 
 
+class PlotStack(QStackedWidget):
+    """Plot and table, one shown; as high as the plot wants to be, so the table scrolls inside."""
+
+    def __init__(self, height_lines: float) -> None:
+        super().__init__()
+        self._height_lines = height_lines
+        self.setSizePolicy(QSizePolicy.Policy.Expanding, QSizePolicy.Policy.Preferred)
+
+    @guarded(QSize(300, 180))
+    def sizeHint(self) -> QSize:
+        """Return a size that follows the text."""
+        line = QFontMetricsF(type_font("small")).height()
+        return QSize(round(20 * line), round(self._height_lines * line))
+
+    @guarded(QSize(200, 150))
+    def minimumSizeHint(self) -> QSize:
+        """Return the same height: a chart is never squeezed, the page scrolls."""
+        return QSize(round(12 * QFontMetricsF(type_font("small")).height()), self.sizeHint().height())
+
+
 class ChartFrame(QWidget):
     """One chart of a page: title, plot or table, sentence."""
 
     def __init__(self, title: str, parent: QWidget | None = None, *, height_lines: float = 13.0) -> None:
         super().__init__(parent)
-        self._height_lines = height_lines
         self._plot: QWidget | None = None
         self._data: ChartData | None = None
         self._cursor: float | None = None
@@ -49,7 +70,7 @@ class ChartFrame(QWidget):
         self.toggle.setToolTip(self.tr("Show the same figures as a table"))
         self.toggle.toggled.connect(self._on_toggled)
         self.table = PlainTable(self.tr("{title}, table").format(title=title))
-        self.stack = QStackedWidget()
+        self.stack = PlotStack(height_lines)
         self._empty = QWidget()
         self.stack.addWidget(self._empty)
         self.stack.addWidget(self.table)
@@ -76,7 +97,7 @@ class ChartFrame(QWidget):
             return
         from kitplanner.ui.charts.plot import Plot
 
-        plot = Plot(height_lines=self._height_lines)
+        plot = Plot()
         plot.setAccessibleName(self.title.text())
         plot.setAccessibleDescription(self.sentence.text())
         self._plot = plot

@@ -11,16 +11,21 @@ from kitplanner.ui.theme import text_scale
 
 
 class Columns(QWidget):
-    """Lays widgets side by side from `least_px` (at 100 % text) for each on, else one below the other."""
+    """Lays widgets side by side from `least_px` (at 100 % text) for each on, else one below the other.
 
-    def __init__(self, widgets: list[QWidget], least_px: int = 330, parent: QWidget | None = None) -> None:
+    The first takes `first` times the width of each other.
+    """
+
+    def __init__(
+        self, widgets: list[QWidget], least_px: int = 330, parent: QWidget | None = None, *, first: int = 1
+    ) -> None:
         super().__init__(parent)
         self._least_px = least_px
         self._row = QBoxLayout(QBoxLayout.Direction.TopToBottom, self)
         self._row.setContentsMargins(0, 0, 0, 0)
         self._row.setSpacing(18)
-        for widget in widgets:
-            self._row.addWidget(widget, 1)
+        for place, widget in enumerate(widgets):
+            self._row.addWidget(widget, first if place == 0 else 1)
         self.setSizePolicy(QSizePolicy.Policy.Expanding, QSizePolicy.Policy.Preferred)
 
     @property

@@ -276,6 +276,7 @@ class EffortMatrix(QTableView):
         """Share the width between names and cells."""
         super().resizeEvent(event)
         self._fit_columns()
+        self.updateGeometry()
 
     @guarded()
     def keyPressEvent(self, event: QKeyEvent) -> None:
@@ -289,7 +290,9 @@ class EffortMatrix(QTableView):
     def sizeHint(self) -> QSize:
         """Return the height of all rows up to ten."""
         rows = max(1, min(self._model.rowCount(), 10))
-        head, bar = self.horizontalHeader().sizeHint().height(), self.horizontalScrollBar().sizeHint().height()
+        head, header = self.horizontalHeader().sizeHint().height(), self.horizontalHeader()
+        narrow = header.minimumSectionSize() * header.count() > self.viewport().width()
+        bar = self.horizontalScrollBar().sizeHint().height() if narrow else 0
         return QSize(360, head + rows * row_height() + bar + 4)
 
     @guarded(QSize(200, 160))

@@ -11,6 +11,7 @@ from PySide6.QtWidgets import QComboBox, QFormLayout, QHBoxLayout, QLabel, QWidg
 from kitplanner.plan.records import Plan
 from kitplanner.planners.effort import charge_curve
 from kitplanner.planners.results import Charge, ChargeCurve, EffortResult, EffortRow, Route
+from kitplanner.report.papers.effort import typical_row
 from kitplanner.report.wording import minutes, percent, plain
 from kitplanner.report.wording_effort import curve_sentence, effort_limit_words, effort_sentence, matrix_sentence
 from kitplanner.ui.charts.chart_data import Axis, Band, ChartData, Line, Mark, minutes_axis, thinned
@@ -32,14 +33,6 @@ def rows_by_key(result: EffortResult | None) -> dict[RowKey, EffortRow]:
     return {(row.device, row.station, row.person, row.route, row.charge): row for row in rows}
 
 
-def typical_row(rows: list[EffortRow]) -> EffortRow | None:
-    """Return the row in the middle of all persons, those without an answer last."""
-    if not rows:
-        return None
-    ordered = sorted(rows, key=lambda row: math.inf if row.minutes_p50 is None else row.minutes_p50)
-    return ordered[(len(ordered) - 1) // 2]
-
-
 def build_matrix(plan: Plan, rows: dict[RowKey, EffortRow], person: str, route: Route, charge: Charge) -> Matrix:
     """Return the table of one person (or the typical one) for one way and one charge; empty lines left out."""
     found: dict[tuple[str, str], list[EffortRow]] = {}
@@ -55,7 +48,7 @@ def build_matrix(plan: Plan, rows: dict[RowKey, EffortRow], person: str, route: 
     )
 
 
-def curve_chart(direct: ChargeCurve | None, store: ChargeCurve | None, names: tuple[str, str]) -> ChartData | None:
+def curve_chart(direct: ChargeCurve | None, store: ChargeCurve | None, names: tuple[str, str, str]) -> ChartData | None:
     """Return state of charge over minutes: direct with its range, through a store dashed."""
     curves = [curve for curve in (direct, store) if curve is not None and len(curve.minutes) > 1]
     if not curves:
@@ -66,19 +59,17 @@ def curve_chart(direct: ChargeCurve | None, store: ChargeCurve | None, names: tu
         if curve is None or len(curve.minutes) < 2:
             continue
         time = thinned(curve.minutes)
-        lines.append(Line(time, thinned(curve.soc_p50_fraction), name, colour, dash))  # type: ignore[arg-type]
+        lines.append(Line(time, thinned(curve.soc_p50_fraction), "", colour, dash))  # type: ignore[arg-type]
         if curve is curves[0]:
             bands.append(Band(time, thinned(curve.soc_p10_fraction), thinned(curve.soc_p90_fraction), colour))
-        marks.append(Mark(float(curve.minutes[-1]), minutes(float(curve.minutes[-1])), colour))
+        marks.append(Mark(float(curve.minutes[-1]), f"{name} {minutes(float(curve.minutes[-1]))}", colour))
     ticks = tuple((value, percent(value)) for value in (0.0, 0.25, 0.5, 0.75, 1.0))
-    y = Axis(names[2] if len(names) > 2 else "", 0.0, 1.0, ticks)
+    y = Axis(names[2], 0.0, 1.0, ticks)
     return ChartData(minutes_axis(most * 1.02, ""), y, tuple(lines), tuple(bands), marks=tuple(marks))
 
 
 class EffortPage(AnswerPage):
     """Minutes of turning for each device and station."""
-
-    place = "effort"
 
     def __init__(self, parent: QWidget | None = None) -> None:
         super().__init__(self.tr("Effort"), parent)
@@ -128,7 +119,7 @@ class EffortPage(AnswerPage):
         self.column.addWidget(self.summary)
         self.column.addWidget(self.matrix)
         self.column.addWidget(self.chosen)
-        self.column.addWidget(Columns([self.curve, self.one_charge], 320))
+        self.column.addWidget(Columns([self.curve, self.one_charge], 320, first=2))
         self.column.addStretch(1)
 
     def refresh(self) -> None:
@@ -162,7 +153,11 @@ class EffortPage(AnswerPage):
 
     def _show_matrix(self) -> None:
         assert self.plan is not None
-        person, route, charge = self.person.currentData() or TYPICAL, self.route.currentData(), self.charge.currentData()
+        person, route, charge = (
+            self.person.currentData() or TYPICAL,
+            self.route.currentData(),
+            self.charge.currentData(),
+        )
         matrix = build_matrix(self.plan, self._rows, person, route, charge)
         rows = [row for line in matrix.cells for row in line if row is not None]
         self.matrix.setVisible(bool(rows))
@@ -195,7 +190,7 @@ class EffortPage(AnswerPage):
         pair = (self._sibling(row, "direct"), self._sibling(row, "store"))
         direct, store = (charge_curve(plan, one) if one is not None and one.minutes_p50 else None for one in pair)
         names = (self.tr("direct"), self.tr("through a store"), self.tr("state of charge"))
-        chart = curve_chart(direct, store, names)  # type: ignore[arg-type]
+        chart = curve_chart(direct, store, names)
         self.curve.set_content(chart, self._curve_words(row, direct, store), curve_table(direct, store, self.tr))
 
     def _sibling(self, row: EffortRow, route: Route) -> EffortRow | None:

@@ -2,12 +2,11 @@
 
 from __future__ import annotations
 
-from collections.abc import Sequence
 from dataclasses import dataclass
 from typing import Any
 
 from PySide6.QtCore import QAbstractTableModel, QModelIndex, QPersistentModelIndex, QSize, Qt
-from PySide6.QtGui import QFontMetricsF, QGuiApplication, QKeyEvent, QKeySequence
+from PySide6.QtGui import QFontMetricsF, QGuiApplication, QKeyEvent, QKeySequence, QResizeEvent
 from PySide6.QtWidgets import QAbstractItemView, QHeaderView, QSizePolicy, QTableView, QWidget
 
 from kitplanner.ui.guard import guarded
@@ -93,6 +92,7 @@ class PlainTable(QTableView):
     def __init__(self, name: str, parent: QWidget | None = None, *, most_rows: int = 12) -> None:
         super().__init__(parent)
         self._most_rows = most_rows
+        self._fits = True
         self._model = PlainTableModel(self)
         self.setModel(self._model)
         self.setAccessibleName(name)
@@ -111,8 +111,29 @@ class PlainTable(QTableView):
         self._model.set_data(data)
         line = QFontMetricsF(type_font()).height()
         self.verticalHeader().setDefaultSectionSize(round(line * 1.5))
-        if data.headers:
-            self.horizontalHeader().setStretchLastSection(True)
+        self._share_width()
+        self.updateGeometry()
+
+    def _share_width(self) -> None:
+        """Give the names what the figures leave, unless that is too little to read."""
+        header, columns = self.horizontalHeader(), self._model.columnCount()
+        if not columns:
+            return
+        figures = sum(max(header.sectionSizeHint(n), self.sizeHintForColumn(n)) for n in range(1, columns))
+        self._fits = self.viewport().width() - figures >= min(self.sizeHintForColumn(0), self._least_name_px())
+        mode = QHeaderView.ResizeMode.Stretch if self._fits else QHeaderView.ResizeMode.ResizeToContents
+        if header.sectionResizeMode(0) != mode:
+            header.setSectionResizeMode(0, mode)
+
+    @staticmethod
+    def _least_name_px() -> float:
+        return QFontMetricsF(type_font()).averageCharWidth() * 18
+
+    @guarded()
+    def resizeEvent(self, event: QResizeEvent) -> None:
+        """Share the new width, and make room for a scroll bar where the columns do not fit."""
+        super().resizeEvent(event)
+        self._share_width()
         self.updateGeometry()
 
     @guarded(QSize(300, 120))
@@ -120,7 +141,7 @@ class PlainTable(QTableView):
         """Return the height of the rows."""
         rows = max(1, min(self._model.rowCount(), self._most_rows))
         head = self.horizontalHeader().sizeHint().height()
-        bar = self.horizontalScrollBar().sizeHint().height()
+        bar = 0 if self._fits else self.horizontalScrollBar().sizeHint().height()
         return QSize(300, head + rows * self.verticalHeader().defaultSectionSize() + bar + 4)
 
     @guarded(QSize(160, 120))
