@@ -107,7 +107,8 @@ def kept_fraction(offered_min: FloatArray, available_min: FloatArray) -> FloatAr
     [0.5, 1.0]
     """
     total = offered_min.sum(axis=0)
-    return np.divide(available_min, total, out=np.ones_like(total), where=total > available_min)
+    kept: FloatArray = np.divide(available_min, total, out=np.ones_like(total), where=total > available_min)
+    return kept
 
 
 def supply(plan: Plan) -> Supply:

@@ -6,7 +6,7 @@ from collections.abc import Sequence
 
 from kitplanner.plan.records import Device, Plan
 from kitplanner.planners.results import BalanceLimit, BalanceResult, CutClass, EnergyFlow, Verdict
-from kitplanner.report.wording import counted, energy, hours, listed, minutes, number, percent, plain, sentence
+from kitplanner.report.wording import counted, energy, listed, minutes, number, percent, plain, sentence
 
 _COVERED = 1.0 - 1e-9
 
@@ -125,11 +125,11 @@ def effort_of_day_sentence(result: BalanceResult) -> str:
         return "Stores and start charges meet the need without any turning."
     available = sum(row.available_min for row in result.stations)
     text = (
-        f"to just meet the need, reference adults would turn {hours(result.needed_min_per_day)} a day in all; "
-        f"people now turn {hours(offered)} a day, each with their own watts"
+        f"to just meet the need, reference adults would turn {minutes(result.needed_min_per_day)} a day in all; "
+        f"people now turn {minutes(offered)} a day, each with their own watts"
     )
     if result.needed_min_per_day > available:
-        text += f", and the stations have time for {hours(available)}"
+        text += f", and the stations have time for {minutes(available)}"
     return sentence(text)
 
 
