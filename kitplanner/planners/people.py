@@ -94,7 +94,7 @@ def person_limits(
     day : int, optional
         Day of the plan from 1, for the ramp-up in the heat; None leaves it out.
     limb : str, optional
-        "legs" or "arms" for the heat rule and Murrell's rest; None takes the stricter of where the person may turn.
+        "legs" or "arms"; None takes the longer Murrell rest and the wider heat rule of the limbs the age may use.
     heat : HeatRule, optional
         Rule of a part of the day; None takes the plan's air temperature where its heat limits are on.
 
@@ -121,11 +121,11 @@ def person_limits(
     hours = _hours(plan, person, by_age)
     if bout_min <= 0:
         return Limits(0, rest_min, 0, hours)
-    for each in (limb,) if limb is not None else _open_limbs(by_age):
-        rule = heat_of(plan, person, each, bout_min, cap_min) if heat is None else heat
-        if rule is not None:
-            bout_min, rest_min = min(bout_min, rule.on_min), max(rest_min, rule.off_min)
-        rest_min = max(rest_min, murrell_min(person, each, bout_min, cap_min))
+    limbs = (limb,) if limb is not None else _open_limbs(by_age)
+    rule = heat if heat is not None else _heat_of(plan, person, limbs, (bout_min, cap_min))
+    if rule is not None:
+        bout_min, rest_min = min(bout_min, rule.on_min), max(rest_min, rule.off_min)
+    rest_min = max(rest_min, *(murrell_min(person, each, bout_min, cap_min) for each in limbs))
     return Limits(bout_min, rest_min, cap_min if bout_min > 0 else 0, hours)
 
 
@@ -166,14 +166,15 @@ def _common(first: tuple[Part, ...], second: tuple[Part, ...]) -> tuple[Part, ..
     return merged(part for part in both if part[0] < part[1])
 
 
-def heat_of(plan: Plan, person: Person, limb: Limb, bout_min: float, cap_min: float) -> HeatRule | None:
-    """Return the heat rule at the plan's own air temperature, None where heat limits are off.
+def _heat_of(plan: Plan, person: Person, limbs: tuple[Limb, ...], minutes: tuple[int, int]) -> HeatRule | None:
+    """Return the widest heat rule of some limbs at the plan's own air temperature, None where heat limits are off.
 
     Parts of days with their own temperature are the callers': they pass a rule for their time to `person_limits`.
     """
     if not plan.conditions.heat_limits:
         return None
-    return heat_rule_at(person, limb, plan.conditions.air_degc, None, (bout_min, cap_min))
+    rules = (heat_rule_at(person, limb, plan.conditions.air_degc, None, minutes) for limb in limbs)
+    return max(rules, key=lambda rule: rule.on_min)
 
 
 def heat_rule_at(
