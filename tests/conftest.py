@@ -15,6 +15,11 @@ from collections.abc import Iterator
 from pathlib import Path
 
 import pytest
+from hypothesis import settings
+
+# No time limit per example: the speed of a shared machine is no property of the code.
+settings.register_profile("kitplanner", deadline=None)
+settings.load_profile("kitplanner")
 
 os.environ.setdefault("QT_QPA_PLATFORM", "offscreen")
 os.environ["QT_SCALE_FACTOR"] = "1"
