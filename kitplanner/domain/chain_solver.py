@@ -29,6 +29,7 @@ _STEPS = 16
 # Points per batch, so that its arrays stay in the processor's second-level cache.
 _BATCH = 4096
 _BEHIND_PEAK = 1e-7
+_ROUNDING = 1e-9
 _CURRENT, _HOLD, _ACCEPTANCE, _HUMAN, _TORQUE, _NOTHING = range(len(BINDINGS))
 ANY_SINK = UsbSink()
 _Scalar = TypeVar("_Scalar", bound=np.generic)
@@ -221,14 +222,15 @@ def _solve(chain: Chain, flat: list[FloatArray], bounded: list[bool], *, held: b
     binding = keys[np.argmax(np.stack(list(terms.values())), axis=0)]
 
     unfed = (plug_a < 0.0) & ~collapsed & (np.abs(plug_a) > 1e-12 * np.maximum(np.abs(current), 1e-3))
-    dead = (net_v <= 0.0) | (unfed & (binding == _HUMAN))
+    dead = net_v <= 0.0
     idle = np.flatnonzero(unfed & ~dead)
     if idle.size:
         current, collapsed = current.copy(), collapsed.copy()
         current[idle], collapsed[idle] = _first_limit(chain, _idle_limits(limits.take(idle)))
         plug_v, plug_a = march(chain, net_v, current)
-        if cap_a is not None:
-            dead[idle] |= current[idle] > limits.cap_a[idle] * (1 + 1e-12)  # type: ignore[index]
+    if cap_a is not None:
+        # The person cannot even turn the empty station at this cadence.
+        dead |= (current > cap_a + _ROUNDING * np.abs(cap_a)) & ~collapsed
     dead |= (plug_v <= 0.0) & ~collapsed
     if not held:
         dead |= (binding == _HOLD) & ~collapsed

@@ -113,11 +113,12 @@ class OperatingPoint:
         amps = self.generator_a
         shaft_w = np.asarray(shaft_torque_nm(machine, shaft_rad_s, amps), np.float64) * shaft_rad_s
         gear_w = shaft_w * (1.0 / gear.eta - 1.0) + gear.drag_nm * crank_rad_s
+        friction_w = np.where(self.failed, np.nan, drag_nm * shaft_rad_s)
         armature_w = self.emf_v * amps
         copper = self.electric[0]
         rows = [
             (self.human_w, shaft_w, gear_w),
-            (shaft_w, armature_w, drag_nm * shaft_rad_s),
+            (shaft_w, armature_w, friction_w),
             (armature_w, _array(copper.out_v * amps), machine.ra_ohm * amps * amps + machine.vb_v * amps),
         ]
         for stage, flow in zip(self.chain.stages, self.electric[1:], strict=True):
