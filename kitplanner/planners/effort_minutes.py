@@ -110,7 +110,7 @@ def varied(charges: Charges, sample: Draws) -> Charges:
     return replace(
         charges,
         capacity_wh=charges.capacity_wh * lognormal_factors(charges.capacity_spread, sample.capacity),
-        acceptance=replace(charges.acceptance, rate_per_h=charges.acceptance.rate_per_h * pace),
+        acceptance=replace(charges.acceptance, rate_per_h=np.asarray(charges.acceptance.rate_per_h) * pace),
         eta=lossy_fraction(charges.eta, charges.eta_spread, sample.device),
         store=lossy_fraction(charges.store, np.full_like(charges.store, STORE_SPREAD), sample.store),
     )
