@@ -9,11 +9,13 @@ from typing import Any
 from PySide6.QtCore import QTimer, Signal, Slot
 from PySide6.QtWidgets import QTabWidget, QVBoxLayout, QWidget
 
+from kitplanner.plan.cautions import cautions_for
 from kitplanner.plan.fields import QT_TRANSLATE_NOOP
 from kitplanner.plan.records import Plan
 from kitplanner.planners.pipeline import Results
 from kitplanner.session.field_text import translate
 from kitplanner.session.gates import Gates
+from kitplanner.ui.widgets.caution_band import CautionBand
 
 
 def _effort_page() -> QWidget:
@@ -74,6 +76,7 @@ class Answers(QTabWidget):
         self._gates = gates
         self._holders: dict[str, QWidget] = {}
         self._pages: dict[str, Any] = {}
+        self._bands: dict[str, CautionBand] = {}
         self._waiting: list[PageEntry] = []
         self.setAccessibleName(self.tr("Answers"))
         self.setDocumentMode(True)
@@ -93,6 +96,10 @@ class Answers(QTabWidget):
         """A page, None while it is not built."""
         return self._pages.get(key)
 
+    def band(self, key: str) -> CautionBand:
+        """The cautions at the head of a page that exists."""
+        return self._bands[key]
+
     def choose(self, key: str) -> None:
         """Show a page."""
         index = next((i for i, entry in enumerate(PAGES) if entry.key == key), -1)
@@ -102,6 +109,8 @@ class Answers(QTabWidget):
     def set_answers(self, plan: Plan, results: Results | None) -> None:
         """Give plan and results to all pages; hidden ones only remember them."""
         self._plan, self._results = plan, results
+        for key, band in self._bands.items():
+            band.show_cautions(cautions_for(plan, key))
         for page in self._pages.values():
             page.set_answers(plan, results)
 
@@ -121,7 +130,10 @@ class Answers(QTabWidget):
         layout = self._holders[entry.key].layout()
         assert layout is not None
         layout.addWidget(page)
-        page.set_gates(self._gates)
+        band = CautionBand(self._gates)
+        page.column.insertWidget(0, band)
+        band.show_cautions(cautions_for(self._plan, entry.key))
+        self._bands[entry.key] = band
         page.set_answers(self._plan, self._results)
         self.page_loaded.emit(entry.key)
         QTimer.singleShot(0, self._load_next)

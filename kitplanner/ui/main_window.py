@@ -27,6 +27,7 @@ from kitplanner.ui.panels.sections_pane import SectionsPane
 from kitplanner.ui.station_chain import StationChain
 from kitplanner.ui.verdict_strip import VerdictStrip
 from kitplanner.ui.view_settings import ViewSettings
+from kitplanner.ui.widgets.plain import restyle_labels
 from kitplanner.ui.widgets.recovery_band import RecoveryBand
 
 _FIRST_SIZE = (1280, 800)
@@ -102,7 +103,7 @@ class MainWindow(QMainWindow):
         self.resize(*_FIRST_SIZE)
         self.restoreGeometry(self._settings.state("window"))
         if not self._splitter.restoreState(self._settings.state("split")):
-            self._splitter.setSizes([540, 740])
+            self._splitter.setSizes([610, 670])
 
     def _connect(self) -> None:
         document = self.document
@@ -144,6 +145,7 @@ class MainWindow(QMainWindow):
     @Slot()
     def _after_first_paint(self) -> None:
         """Build what the first picture did not need: forms, then pages and their charts."""
+        self.sections.panel.focus_table()
         self.answers.load_pages()
         self.sections.open_details()
         self.recovery.offer(find_recovered(recovery_folder()))
@@ -214,6 +216,7 @@ class MainWindow(QMainWindow):
     @Slot()
     def _on_view_changed(self) -> None:
         self.menus.show_view(self._settings.scheme, self._settings.text_percent)
+        restyle_labels(self)
         self.sections.restyle()
         self._fit()
 

@@ -49,7 +49,7 @@ class NestedList(QWidget):
         self._parts: tuple[Any, ...] = ()
         self._problems: Mapping[Path, str] = {}
         self._forms: dict[str, RecordForm] = {}
-        self._title = plain_label(title)
+        self._title = plain_label(title, bold=True)
         self._list = QListWidget(self)
         self._buttons: dict[str, QPushButton] = {}
         self._build(title)
@@ -94,9 +94,6 @@ class NestedList(QWidget):
         return row >= 0
 
     def _build(self, title: str) -> None:
-        font = self._title.font()
-        font.setBold(True)
-        self._title.setFont(font)
         self._list.setAccessibleName(title)
         self._list.setSelectionMode(QAbstractItemView.SelectionMode.SingleSelection)
         self._title.setBuddy(self._list)

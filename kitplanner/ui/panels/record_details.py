@@ -97,11 +97,8 @@ class StationDetails(RecordDetails):
         layout = QVBoxLayout(box)
         layout.setContentsMargins(0, 8, 0, 0)
         layout.setSpacing(0)
-        label = plain_label(title)
+        label = plain_label(title, bold=True)
         label.setContentsMargins(10, 0, 10, 0)
-        font = label.font()
-        font.setBold(True)
-        label.setFont(font)
         form = RecordForm(FIELDS[key], self._editing, box)
         layout.addWidget(label)
         layout.addWidget(form)
@@ -113,10 +110,7 @@ class ConditionsDetails(RecordDetails):
     """The plan's own fields, its conditions and the temperatures of single days."""
 
     def _build_more(self) -> None:
-        title = plain_label(self.tr("Conditions"))
-        font = title.font()
-        font.setBold(True)
-        title.setFont(font)
+        title = plain_label(self.tr("Conditions"), bold=True)
         title.setContentsMargins(10, 10, 10, 0)
         self.conditions = RecordForm(FIELDS["conditions"], self._editing, self)
         self.temperatures = NestedList(

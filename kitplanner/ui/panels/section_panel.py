@@ -26,7 +26,6 @@ from kitplanner.plan.records import Plan
 from kitplanner.session.editing import Editing
 from kitplanner.session.field_text import translate
 from kitplanner.session.new_records import singular
-from kitplanner.ui import theme
 from kitplanner.ui.dialogs.ask import ask_how_many
 from kitplanner.ui.models.field_delegate import FieldDelegate
 from kitplanner.ui.models.records_model import RecordsModel
@@ -66,6 +65,7 @@ class SectionPanel(QWidget):
         self._scroll.setWidgetResizable(True)
         self._scroll.setFrameShape(QScrollArea.Shape.NoFrame)
         self._scroll.setFocusPolicy(Qt.FocusPolicy.NoFocus)
+        self._scroll.setMinimumHeight(120)
         self._scroll.setAccessibleName(self.tr("Details"))
         self._scroll.setHorizontalScrollBarPolicy(Qt.ScrollBarPolicy.ScrollBarAsNeeded)
         self.table: QTableView | None = None
@@ -233,8 +233,6 @@ class SectionPanel(QWidget):
             button.setAutoDefault(False)
             button.setAccessibleName(help_.format(what=word))
             button.setToolTip(help_.format(what=word))
-            if name in ("up", "down"):
-                button.setMaximumWidth(button.fontMetrics().horizontalAdvance("MMM") + 10)
             button.clicked.connect(slot)
             self._buttons[name] = button
             row.addWidget(button)
@@ -245,6 +243,9 @@ class SectionPanel(QWidget):
         if self.table is not None:
             height = max(24, self.table.fontMetrics().height() + 8)
             self.table.verticalHeader().setDefaultSectionSize(height)
+            for button in self._buttons.values():
+                words = button.fontMetrics().horizontalAdvance(button.text())
+                button.setFixedWidth(max(28, words + 2 * button.fontMetrics().averageCharWidth() + 6))
             self.table.setMinimumHeight(height * _LEAST_TABLE_ROWS)
             colour_label(self._hint, "muted")
 
@@ -322,5 +323,3 @@ class SectionPanel(QWidget):
         self._fit_rows()
         if self.table is not None:
             self.table.viewport().update()
-            theme_font = theme.type_font()
-            self.table.setFont(theme_font)

@@ -4,14 +4,33 @@ from __future__ import annotations
 
 from collections.abc import Mapping
 
-from PySide6.QtCore import QSize, Qt, Signal, Slot
-from PySide6.QtWidgets import QComboBox, QListWidget, QListWidgetItem, QSizePolicy, QWidget
+from PySide6.QtCore import QModelIndex, QPersistentModelIndex, QSize, Qt, Signal, Slot
+from PySide6.QtWidgets import (
+    QComboBox,
+    QListWidget,
+    QListWidgetItem,
+    QSizePolicy,
+    QStyledItemDelegate,
+    QStyleOptionViewItem,
+    QWidget,
+)
 
 from kitplanner.plan.records import Plan
 from kitplanner.session.field_text import translate
+from kitplanner.ui.guard import guarded
 from kitplanner.ui.panels.sections import PLAN_SECTION, SECTIONS
 
 _KEY_ROLE = Qt.ItemDataRole.UserRole
+
+
+class _Indented(QStyledItemDelegate):
+    """Leaves a little room before the text of an entry."""
+
+    @guarded()
+    def initStyleOption(self, option: QStyleOptionViewItem, index: QModelIndex | QPersistentModelIndex) -> None:
+        """Indent the text."""
+        super().initStyleOption(option, index)
+        option.text = f"  {option.text}"
 
 
 class SectionSwitch(QWidget):
@@ -30,6 +49,8 @@ class SectionSwitch(QWidget):
         self.hide()
         self.list = QListWidget(parent)
         self.list.setAccessibleName(self.tr("Sections"))
+        self.list.setItemDelegate(_Indented(self.list))
+        self.list.setFrameShape(QListWidget.Shape.NoFrame)
         self.list.setHorizontalScrollBarPolicy(Qt.ScrollBarPolicy.ScrollBarAlwaysOff)
         self.list.setSizePolicy(QSizePolicy.Policy.Fixed, QSizePolicy.Policy.Expanding)
         self.box = QComboBox(parent)
@@ -85,7 +106,7 @@ class SectionSwitch(QWidget):
             item = self.list.item(row)
             item.setSizeHint(QSize(0, height))
             widest = max(widest, metrics.horizontalAdvance(item.text()))
-        self.list.setFixedWidth(widest + metrics.averageCharWidth() * 3 + 12)
+        self.list.setFixedWidth(widest + metrics.averageCharWidth() * 5 + 12)
 
     @Slot(int)
     def _on_row_changed(self, row: int) -> None:

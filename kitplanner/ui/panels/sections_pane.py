@@ -5,8 +5,8 @@ from __future__ import annotations
 from collections import Counter
 from collections.abc import Mapping
 
-from PySide6.QtCore import Signal, Slot
-from PySide6.QtWidgets import QHBoxLayout, QSizePolicy, QStackedWidget, QVBoxLayout, QWidget
+from PySide6.QtCore import Qt, Signal, Slot
+from PySide6.QtWidgets import QHBoxLayout, QScrollArea, QSizePolicy, QStackedWidget, QVBoxLayout, QWidget
 
 from kitplanner.plan.cautions import ShownCaution, cautions_for
 from kitplanner.plan.edits import Path
@@ -16,7 +16,6 @@ from kitplanner.plan.records import Plan
 from kitplanner.session.editing import Editing
 from kitplanner.session.field_text import translate
 from kitplanner.session.gates import Gates
-from kitplanner.ui import theme
 from kitplanner.ui.panels.problem_list import ProblemList, sentence_of
 from kitplanner.ui.panels.section_panel import SectionPanel
 from kitplanner.ui.panels.section_switch import SectionSwitch
@@ -53,8 +52,8 @@ class SectionsPane(QWidget):
         self.switch = SectionSwitch(self)
         self.band = CautionBand(gates, self)
         self.problems = ProblemList(self)
-        self._title = plain_label()
-        self._count = plain_label()
+        self._title = plain_label(size="title", bold=True)
+        self._count = plain_label(size="small")
         self._stack = QStackedWidget(self)
         self._build()
         self.switch.section_chosen.connect(self._on_section_chosen)
@@ -113,8 +112,6 @@ class SectionsPane(QWidget):
 
     def restyle(self) -> None:
         """Follow the theme and the text size."""
-        self._title.setFont(theme.type_font("title", bold=True))
-        self._count.setFont(theme.type_font("small"))
         self.switch.fit()
         for panel in self._panels.values():
             panel.recolour()
@@ -140,7 +137,7 @@ class SectionsPane(QWidget):
         layout.setContentsMargins(0, 0, 0, 0)
         layout.setSpacing(8)
         layout.addWidget(self.switch.list)
-        layout.addLayout(column, 1)
+        layout.addWidget(scrolling(column), 1)
 
     def _panel_of(self, key: str) -> SectionPanel:
         if key not in self._panels:
@@ -192,10 +189,22 @@ class SectionsPane(QWidget):
             if resting:
                 return self.tr("{count} people, {resting} at 0 min").format(count=len(records), resting=resting)
         if key in ("stations", "stores", "devices", "medical_needs"):
-            return self.tr("{count} pieces in {lines} lines").format(
-                count=sum(record.count for record in records), lines=len(records)
-            )
+            return self.tr("{count} in all").format(count=sum(record.count for record in records)) if records else ""
         return str(len(records)) if records else ""
+
+
+def scrolling(column: QVBoxLayout) -> QScrollArea:
+    """Put a column into an area that scrolls when a low window or large text leaves too little room."""
+    content = QWidget()
+    content.setLayout(column)
+    area = QScrollArea()
+    area.setWidgetResizable(True)
+    area.setFrameShape(QScrollArea.Shape.NoFrame)
+    area.setFocusPolicy(Qt.FocusPolicy.NoFocus)
+    area.setHorizontalScrollBarPolicy(Qt.ScrollBarPolicy.ScrollBarAsNeeded)
+    area.setMinimumSize(280, 160)
+    area.setWidget(content)
+    return area
 
 
 def _section_key(path: Path) -> str:

@@ -2,8 +2,8 @@
 
 from __future__ import annotations
 
-from PySide6.QtCore import QCoreApplication, QEvent, Qt, Slot
-from PySide6.QtWidgets import QSizePolicy, QToolButton, QVBoxLayout, QWidget
+from PySide6.QtCore import QCoreApplication, QEvent, Slot
+from PySide6.QtWidgets import QPushButton, QSizePolicy, QVBoxLayout, QWidget
 
 from kitplanner.plan.cautions import ShownCaution
 from kitplanner.session.gates import Gates
@@ -22,11 +22,12 @@ class CautionBand(QWidget):
         self._shown: tuple[ShownCaution, ...] = ()
         self._notes: list[CautionNote] = []
         self._is_open = False
-        self._button = QToolButton(self)
+        self._button = QPushButton(self)
         self._button.setCheckable(True)
-        self._button.setAutoRaise(True)
+        self._button.setFlat(True)
+        self._button.setAutoDefault(False)
+        self._button.setStyleSheet("text-align: left; padding: 2px 6px;")
         self._button.setMinimumHeight(24)
-        self._button.setToolButtonStyle(Qt.ToolButtonStyle.ToolButtonTextBesideIcon)
         self._button.setSizePolicy(QSizePolicy.Policy.Ignored, QSizePolicy.Policy.Fixed)
         self._button.clicked.connect(self._on_clicked)
         self._layout = QVBoxLayout(self)
@@ -47,7 +48,7 @@ class CautionBand(QWidget):
         """The cautions shown in full now."""
         return tuple(self._notes)
 
-    def button(self) -> QToolButton:
+    def button(self) -> QPushButton:
         """The line that names the other cautions and opens them."""
         return self._button
 

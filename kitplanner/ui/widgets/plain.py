@@ -9,12 +9,31 @@ from PySide6.QtWidgets import QLabel, QWidget
 from kitplanner.ui import theme
 
 
-def plain_label(text: str = "", parent: QWidget | None = None, *, wrap: bool = False) -> QLabel:
-    """Make a label that shows its text literally."""
+def plain_label(
+    text: str = "",
+    parent: QWidget | None = None,
+    *,
+    wrap: bool = False,
+    size: theme.TypeSize = "text",
+    bold: bool = False,
+) -> QLabel:
+    """Make a label that shows its text literally, in one of the type sizes."""
     label = QLabel(text, parent)
     label.setTextFormat(Qt.TextFormat.PlainText)
     label.setWordWrap(wrap)
+    if size != "text" or bold:
+        label.setProperty("type_size", size)
+        label.setProperty("type_bold", bold)
+        label.setFont(theme.type_font(size, bold=bold))
     return label
+
+
+def restyle_labels(root: QWidget) -> None:
+    """Give labels of their own size or weight the present text size; a new style sheet puts their old fonts back."""
+    for label in root.findChildren(QLabel):
+        size = label.property("type_size")
+        if size:
+            label.setFont(theme.type_font(size, bold=bool(label.property("type_bold"))))
 
 
 def colour_label(label: QLabel, name: str) -> None:

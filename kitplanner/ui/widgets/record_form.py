@@ -22,7 +22,6 @@ from kitplanner.session.field_text import (
     translate,
     unit_of,
 )
-from kitplanner.ui import theme
 from kitplanner.ui.guard import guarded
 from kitplanner.ui.widgets.caution_note import CautionNote
 from kitplanner.ui.widgets.editors import ChoiceEditor, FlagEditor, RefsEditor, make_editor
@@ -88,6 +87,14 @@ class FieldRow(QWidget):
         """The problem shown beside the field, empty when there is none."""
         return self._problem.text().removeprefix("⚠ ")
 
+    def unit_width(self) -> int:
+        """Width the unit needs."""
+        return self._unit.fontMetrics().horizontalAdvance(self._unit.text())
+
+    def set_unit_width(self, width: int) -> None:
+        """Give the unit the room that all fields of a form share, so that their editors end at one line."""
+        self._unit.setMinimumWidth(width)
+
     def recolour(self) -> None:
         """Take over the theme's colours."""
         colour_label(self._unit, "muted")
@@ -100,8 +107,8 @@ class FieldRow(QWidget):
         line = QHBoxLayout()
         line.setContentsMargins(0, 0, 0, 0)
         line.addWidget(self.editor, 0 if isinstance(self.editor, FlagEditor) else 1)
-        if self._unit.text():
-            line.addWidget(self._unit)
+        line.setSpacing(5)
+        line.addWidget(self._unit)
         line.addWidget(self._origin)
         if isinstance(self.editor, FlagEditor):
             line.addStretch(1)
@@ -195,13 +202,18 @@ class RecordForm(QWidget):
         for row in self._rows.values():
             heading = row.spec.heading
             if heading and heading not in self._headings:
-                label = plain_label(translate("Fields", heading))
-                label.setFont(theme.type_font("text", bold=True))
+                label = plain_label(translate("Fields", heading), bold=True)
                 label.setContentsMargins(0, 8, 0, 0)
                 self._headings[heading] = label
                 self._layout.addRow(label)
             self._layout.addRow(row.label, row)
             row.entered.connect(self._on_entered)
+        self._align_units()
+
+    def _align_units(self) -> None:
+        width = max((row.unit_width() for row in self._rows.values()), default=0)
+        for row in self._rows.values():
+            row.set_unit_width(width)
 
     def _show_field(self, key: str) -> None:
         row = self._rows[key]
@@ -235,7 +247,6 @@ class RecordForm(QWidget):
         """Follow the theme and the text size."""
         super().changeEvent(event)
         if event.type() in (QEvent.Type.PaletteChange, QEvent.Type.FontChange) and hasattr(self, "_headings"):
-            for label in self._headings.values():
-                label.setFont(theme.type_font("text", bold=True))
             for row in self._rows.values():
                 row.recolour()
+            self._align_units()
