@@ -238,67 +238,6 @@ def soc_after(
     return np.asarray(np.minimum(1.0, np.where(hours <= h_x, steady, tapered)))
 
 
-@dataclass(frozen=True, slots=True)
-class ChargeTrajectory:
-    """One charge over time; arrays of one length.
-
-    Attributes
-    ----------
-    minutes : ndarray
-        Time since the start [min].
-    soc : ndarray
-        State of charge [-].
-    power_w : ndarray
-        Power into the battery [W].
-    """
-
-    minutes: FloatArray
-    soc: FloatArray
-    power_w: FloatArray
-
-
-def charge_trajectory(
-    soc_from: float,
-    soc_to: float,
-    source_rate_per_h: float,
-    capacity_wh: float,
-    acceptance: Acceptance = DEFAULT_ACCEPTANCE,
-    points: int = 121,
-) -> ChargeTrajectory:
-    """State of charge and power over even minutes under a source of constant rate.
-
-    Parameters
-    ----------
-    soc_from, soc_to : float
-        States of charge [-].
-    source_rate_per_h : float
-        What the source can deliver into the battery [1/h], above 0.
-    capacity_wh : float
-        Capacity of the battery [Wh].
-    acceptance : Acceptance
-        The battery's acceptance.
-    points : int
-        Number of points.
-
-    Returns
-    -------
-    ChargeTrajectory
-        Minutes, state of charge and power.
-
-    Examples
-    --------
-    >>> run = charge_trajectory(0.0, 1.0, 6.0 * 0.85 / 15.4, 15.4)
-    >>> round(float(run.minutes[-1]), 1), round(float(run.soc[-1]), 6), round(float(run.power_w[0]), 2)
-    (199.9, 1.0, 5.1)
-    """
-    total = float(minutes_to_charge(soc_from, soc_to, source_rate_per_h, acceptance))
-    if not np.isfinite(total):
-        raise ValueError("a source without power never charges: give it a rate above 0")
-    minutes = np.linspace(0.0, total, points)
-    soc = soc_after(minutes, soc_from, source_rate_per_h, acceptance)
-    return ChargeTrajectory(minutes, soc, capacity_wh * charge_rate_per_h(soc, source_rate_per_h, acceptance))
-
-
 def charge_rate_per_h(
     soc: npt.ArrayLike, source_rate_per_h: npt.ArrayLike, acceptance: Acceptance = DEFAULT_ACCEPTANCE
 ) -> FloatArray:

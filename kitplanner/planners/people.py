@@ -249,7 +249,8 @@ def person_output(plan: Plan, person: Person, station: Station) -> PersonOutput:
     """Return what a person gives at a station over the bouts and the day that hold for them there.
 
     Measured: S = rated (P - P0)/(P_ref - P0), kept between 0 and rated, P0 the station's drag; a given share replaces
-    it: S = rated share. By label: S = min(label, eta P). M = S/eta at both. By parts: M only.
+    it: S = rated share. By label: S = min(label, eta P). M = S/eta at both, at a hand crank never above the force
+    limit. By parts: M only.
 
     Parameters
     ----------
@@ -279,44 +280,50 @@ def person_output(plan: Plan, person: Person, station: Station) -> PersonOutput:
     limb = limb_of(station.kind)
     limits = person_limits(plan, person, limb=limb)
     duration = (float(limits.bout_min), float(limits.cap_min))
-    cap_w, torque_nm = _force_caps(station, limits.cap_min)
-    free_w = person_watts(person, limb, *duration) if limits.cap_min > 0 else 0.0
-    watts = min(free_w, cap_w) * DEVICE_FACTOR[station.kind]
+    factor = DEVICE_FACTOR[station.kind]
+    force_w, torque_nm = _force_caps(station, limits.cap_min)
+    free_w = factor * person_watts(person, limb, *duration) if limits.cap_min > 0 else 0.0
+    output_w: float | None = None
+    power_w, capped = free_w, False
+    if station.described_by == "label":
+        power_w = min(free_w, (station.label_w or 0.0) / station.eta_fraction)
+        capped = power_w < min(free_w, force_w)
+    elif station.described_by == "measured":
+        full_w = factor * reference_w(limb, *duration)
+        share = _share_of_rating(station, limb, free_w / full_w, _given_share(person, limb, limits))
+        power_w = (station.output_w or 0.0) * min(max(share, 0.0), 1.0) / station.eta_fraction
+        capped = share > 1.0 and power_w <= force_w
+    held_w = min(power_w, force_w)
+    if station.described_by != "parts":
+        output_w = held_w * station.eta_fraction
     own, rated = person_spread(person, limb, *duration), _station_spread(station)
-    share = given_for(person, limb) if person.watts_by == "share" and limits.cap_min > 0 else None
-    output_w: float | None
-    if station.described_by == "parts":
-        output_w, power_w, capped = None, watts, False
-    else:
-        full_w = reference_w(limb, *duration) * DEVICE_FACTOR[station.kind]
-        output_w, capped = _station_output(station, limb, watts, full_w, share)
-        power_w = output_w / station.eta_fraction
     return PersonOutput(
         station_output_w=output_w,
-        person_power_w=power_w,
+        person_power_w=held_w,
         capped=capped,
         spread_fraction=combined_spread(own, rated),
         person_spread_fraction=own,
         station_spread_fraction=rated,
-        force_capped=free_w > cap_w and not (share is not None and station.described_by == "measured"),
+        force_capped=power_w > force_w,
         torque_cap_nm=torque_nm,
     )
 
 
-def _station_output(
-    station: Station, limb: Limb, watts: float, full_w: float, share: float | None
-) -> tuple[float, bool]:
-    """Return a measured or labelled station's output for a person, and whether its rating holds it down."""
-    if station.described_by == "label":
-        label_w = station.label_w or 0.0
-        return min(label_w, watts * station.eta_fraction), watts * station.eta_fraction > label_w
-    rated_w = station.output_w or 0.0
-    if share is None:
-        drag = station.drag_fraction
-        if drag is None:
-            drag = DRAG_FRACTION_ARMS if limb == "arms" else DRAG_FRACTION_LEGS
-        share = (watts / full_w - drag) / (1.0 - drag) if drag < 1.0 else 0.0
-    return rated_w * min(max(share, 0.0), 1.0), share > 1.0
+def _given_share(person: Person, limb: Limb, limits: Limits) -> float | None:
+    """Return the share a person gave for a limb, 0 without minutes, None where they gave none."""
+    if person.watts_by != "share":
+        return None
+    return given_for(person, limb) if limits.cap_min > 0 else 0.0
+
+
+def _share_of_rating(station: Station, limb: Limb, power_ratio: float, given: float | None) -> float:
+    """Return which share of a measured station's rating comes out, before its limits, by the drag law or as given."""
+    if given is not None:
+        return given
+    drag = station.drag_fraction
+    if drag is None:
+        drag = DRAG_FRACTION_ARMS if limb == "arms" else DRAG_FRACTION_LEGS
+    return (power_ratio - drag) / (1.0 - drag) if drag < 1.0 else 0.0
 
 
 def _force_caps(station: Station, cap_min: int) -> tuple[float, float | None]:
@@ -329,7 +336,7 @@ def _force_caps(station: Station, cap_min: int) -> tuple[float, float | None]:
     if station.described_by != "parts" and station.comfort_low_rpm and station.comfort_high_rpm:
         rpm = (station.comfort_low_rpm + station.comfort_high_rpm) / 2.0
     torque_nm = float(handle_torque_nm(radius_m)) * DEVICE_FACTOR[station.kind]
-    return float(p_crank_cap_w(radius_m, rpm)), torque_nm
+    return float(p_crank_cap_w(radius_m, rpm)) * DEVICE_FACTOR[station.kind], torque_nm
 
 
 def _station_spread(station: Station) -> float:

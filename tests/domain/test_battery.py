@@ -16,7 +16,6 @@ from kitplanner.domain.battery import (
     acceptance_rate_per_h,
     charge_ceiling_rate_per_h,
     charge_rate_per_h,
-    charge_trajectory,
     crossover_soc,
     minutes_by_energy,
     minutes_to_charge,
@@ -197,8 +196,6 @@ def test_no_power_and_no_way_to_go():
     assert np.isinf(minutes_by_energy(1.0, 0.0))
     assert soc_after(1e9, 0.0, 0.0) == 0.0
     assert soc_after(1e9, 0.0, 0.3) == 1.0
-    with pytest.raises(ValueError, match="never charges"):
-        charge_trajectory(0.0, 1.0, 0.0, 15.4)
 
 
 def test_arrays_broadcast_over_starts_sources_and_acceptances():
@@ -206,15 +203,6 @@ def test_arrays_broadcast_over_starts_sources_and_acceptances():
     minutes = minutes_to_charge(np.array([0.0, 0.5])[:, None], 1.0, np.array([0.1, 0.2, 0.4, 0.8]), acceptance)
     assert minutes.shape == (3, 2, 4)
     assert minutes[1, 1, 2] == pytest.approx(float(minutes_to_charge(0.5, 1.0, 0.4)))
-
-
-def test_trajectory_ends_full_and_holds_its_energy():
-    run = charge_trajectory(0.2, 1.0, PHONE_SOURCE_PER_H, PHONE_WH, points=4001)
-    assert run.minutes[-1] == pytest.approx(float(minutes_to_charge(0.2, 1.0, PHONE_SOURCE_PER_H)))
-    assert run.soc[0] == 0.2
-    assert run.soc[-1] == pytest.approx(1.0)
-    assert np.all(np.diff(run.soc) > 0.0)
-    assert np.trapezoid(run.power_w, run.minutes) / 60.0 == pytest.approx(0.8 * PHONE_WH, rel=1e-6)
 
 
 def test_ceilings_of_a_pack_data_sheet():

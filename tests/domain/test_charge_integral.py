@@ -8,8 +8,8 @@ from hypothesis import given, settings
 from hypothesis import strategies as st
 from scipy.integrate import quad
 
-from kitplanner.domain.battery import Acceptance, charge_rate_per_h, charge_trajectory, minutes_to_charge
-from kitplanner.domain.charge_integral import charge_trajectory_varying, minutes_to_charge_varying
+from kitplanner.domain.battery import Acceptance, charge_rate_per_h, minutes_to_charge
+from kitplanner.domain.charge_integral import charge_trajectory, charge_trajectory_varying, minutes_to_charge_varying
 
 
 def test_constant_sources_give_the_closed_form():
@@ -80,3 +80,14 @@ def test_trajectories_agree_on_a_constant_source():
     assert np.interp(varying.minutes, even.minutes, even.soc) == pytest.approx(varying.soc, abs=1e-5)
     assert varying.power_w[0] == pytest.approx(even.power_w[0])
     assert varying.power_w[-1] == pytest.approx(even.power_w[-1])
+
+
+def test_trajectory_ends_full_and_holds_its_energy():
+    run = charge_trajectory(0.2, 1.0, 0.33, 15.4, points=4001)
+    assert run.minutes[-1] == pytest.approx(float(minutes_to_charge(0.2, 1.0, 0.33)))
+    assert run.soc[0] == 0.2
+    assert run.soc[-1] == pytest.approx(1.0)
+    assert np.all(np.diff(run.soc) > 0.0)
+    assert np.trapezoid(run.power_w, run.minutes) / 60.0 == pytest.approx(0.8 * 15.4, rel=1e-6)
+    with pytest.raises(ValueError, match="never charges"):
+        charge_trajectory(0.0, 1.0, 0.0, 15.4)

@@ -250,6 +250,17 @@ class TestOutput:
         small = msgspec.structs.replace(crank, crank_radius_m=0.10)
         assert person_output(PLAN, strong, small).station_output_w == pytest.approx(18.85, rel=1e-3)
 
+    def test_hand_force_holds_a_measured_crank_down(self):
+        """A rating that would take 40 W at the handle is held to 28.27 W there, also for a given share."""
+        crank = msgspec.structs.replace(CRANK, output_w=20.0)
+        for adult in (person(age=40), person(watts_by="share", share_arms_fraction=1.0)):
+            held = person_output(PLAN, adult, crank)
+            assert held.force_capped
+            assert not held.capped
+            assert held.person_power_w == pytest.approx(28.27, rel=1e-3)
+            assert held.station_output_w == pytest.approx(0.5 * 28.27, rel=1e-3)
+        assert not person_output(PLAN, person(age=40), CRANK).force_capped
+
     def test_hand_torque_of_a_crank_by_parts(self):
         parts = Station(
             id="s", name="s", kind="crank", described_by="parts", comfort_low_rpm=40.0, comfort_high_rpm=80.0
