@@ -78,7 +78,7 @@ def _screen() -> Iterator[str]:
     """An X11 screen of our own, ended afterwards."""
     read, write = os.pipe()
     server = subprocess.Popen(
-        ["Xvfb", "-displayfd", str(write), "-screen", "0", "1400x1000x24", "-nolisten", "tcp"],
+        ["Xvfb", "-displayfd", str(write), "-screen", "0", "1600x1200x24", "-nolisten", "tcp"],
         pass_fds=(write,),
         stderr=subprocess.DEVNULL,
     )

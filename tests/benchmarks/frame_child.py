@@ -13,6 +13,7 @@ from PySide6.QtCore import QEvent, QObject, QTimer
 from PySide6.QtWidgets import QApplication, QLabel, QMainWindow, QWidget
 
 GIVE_UP_MS = 20_000
+SIZE = (1500, 1100)  # tall enough for the first chart to be in sight; the same for every kind
 
 
 class FirstFrame(QObject):
@@ -51,9 +52,7 @@ def shows_verdict(strip: QWidget) -> bool:
 
 
 def bare() -> QMainWindow:
-    window = QMainWindow()
-    window.resize(1200, 800)
-    return window
+    return QMainWindow()
 
 
 def plot() -> QMainWindow:
@@ -82,6 +81,7 @@ def main() -> int:
         app, window = desk.app, desk.window
         app.installEventFilter(watcher)
     QTimer.singleShot(GIVE_UP_MS, lambda: QApplication.exit(3))
+    window.resize(*SIZE)
     window.show()
     return app.exec()
 
