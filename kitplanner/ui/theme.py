@@ -121,8 +121,8 @@ CONTRAST = Colours(
     paper="#ffffff",
     panel="#ffffff",
     field="#ffffff",
-    stripe="#ffffff",
-    rule="#000000",
+    stripe="#ececec",
+    rule="#6b6b6b",
     edge="#000000",
     flow="#ffbf1f",
     flow_alt="#ffdc80",
@@ -228,7 +228,8 @@ def palette_of(scheme: Colours) -> QPalette:
 
 def style_sheet(scheme: Colours, scale: float) -> str:
     """Return the few rules that the palette cannot say."""
-    pad = round(4 * scale)
+    pad, box = round(4 * scale), round(15 * scale)
+    tick = resource("icons/check-light.svg" if scheme is DARK else "icons/check-dark.svg").as_posix()
     return f"""
 QToolTip {{ background: {scheme.strip}; color: {scheme.strip_text}; border: 1px solid {scheme.edge};
     padding: {pad}px; }}
@@ -241,6 +242,10 @@ QTabBar::tab {{ background: transparent; color: {scheme.muted}; padding: {pad + 
 QTabBar::tab:selected {{ color: {scheme.ink}; border-bottom: 3px solid {scheme.flow}; }}
 QTabBar::tab:hover {{ color: {scheme.ink}; }}
 QTabBar::tab:focus {{ border-bottom: 3px solid {scheme.accent}; }}
+QCheckBox::indicator, QAbstractItemView::indicator {{ width: {box}px; height: {box}px; border: 1px solid {scheme.edge};
+    border-radius: 3px; background: {scheme.field}; }}
+QCheckBox::indicator:checked, QAbstractItemView::indicator:checked {{ image: url("{tick}"); }}
+QCheckBox::indicator:focus {{ border: 2px solid {scheme.accent}; }}
 QSplitter::handle {{ background: {scheme.rule}; }}
 """
 

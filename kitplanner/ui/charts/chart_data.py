@@ -75,12 +75,16 @@ class Shade:
 
 @dataclass(frozen=True)
 class Mark:
-    """A line across the chart with its words: `at` on the x axis, or on the y axis if `level`."""
+    """A line across the chart with its words: `at` on the x axis, or on the y axis if `level`.
+
+    Words stand at the top, or at the foot of the chart if `foot`.
+    """
 
     at: float
     text: str = ""
     colour: str = "muted"
     level: bool = False
+    foot: bool = False
 
 
 @dataclass(frozen=True)

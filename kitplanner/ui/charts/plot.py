@@ -5,7 +5,7 @@ from __future__ import annotations
 import numpy as np
 import pyqtgraph as pg
 from PySide6.QtCore import QEvent, QPointF, QRectF, QSize, Qt
-from PySide6.QtGui import QBrush, QFontMetricsF, QPainter, QPainterPath, QPen
+from PySide6.QtGui import QBrush, QFontMetricsF, QPainter, QPainterPath, QPen, QResizeEvent
 from PySide6.QtWidgets import QWidget
 
 from kitplanner.ui.charts.chart_data import Band, Bars, ChartData, Line, Mark, Shade
@@ -153,6 +153,13 @@ class Plot(pg.PlotWidget):
             self._draw()
             self.updateGeometry()
 
+    @guarded()
+    def resizeEvent(self, event: QResizeEvent) -> None:
+        """Choose again which words have room."""
+        super().resizeEvent(event)
+        if self.ready and self._data is not None and any(bars.texts for bars in self._data.bars):
+            self._draw()
+
     @guarded(QSize(320, 200))
     def sizeHint(self) -> QSize:
         """Return a small size: the frame around the plot sets its height."""
@@ -174,7 +181,7 @@ class Plot(pg.PlotWidget):
             axis.setPen(QPen(scheme.color("rule"), 1))
             axis.setTextPen(QPen(scheme.color("muted")))
             axis.setStyle(tickTextOffset=round(line * 0.35))
-        self.getAxis("left").setGrid(False)
+        self.getAxis("bottom").setHeight(round(line * 1.55))
 
     def _draw(self) -> None:
         item = self.getPlotItem()
@@ -212,7 +219,11 @@ class Plot(pg.PlotWidget):
     def _head_room(data: ChartData) -> float:
         """Return the room above the figures that words at the top need."""
         has_words = any(line.name for line in data.lines) or any(bar.texts for bar in data.bars)
-        has_words = has_words or any(shade.text for shade in data.shades) or any(mark.text for mark in data.marks)
+        has_words = (
+            has_words
+            or any(shade.text for shade in data.shades)
+            or any(mark.text and not mark.foot for mark in data.marks)
+        )
         return 0.16 * (data.y.high - data.y.low) if has_words else 0.0
 
     def _top(self, data: ChartData) -> float:
@@ -262,9 +273,16 @@ class Plot(pg.PlotWidget):
             self.getPlotItem().addItem(pg.ScatterPlotItem(line.x, line.y, size=9, brush=brush, pen=outline))
 
     def _bar_words(self, bars: Bars) -> None:
+        metrics = QFontMetricsF(type_font("small"))
+        room = bars.width * self._px_per_x() * 1.1
         for x, height, text in zip(bars.x, bars.height, bars.texts, strict=False):
-            if text and np.isfinite(height):
+            if text and metrics.horizontalAdvance(text) <= room and np.isfinite(height):
                 self._word(text, float(x), float(max(height, 0.0)), (0.5, 1.0), "ink")
+
+    def _px_per_x(self) -> float:
+        """Return how many pixels one unit of the x axis takes."""
+        (low, high), _y = self.viewRange()
+        return self.getViewBox().width() / max(1e-9, high - low)
 
     def _marks(self, data: ChartData) -> None:
         """Draw lines across; words of neighbours keep apart: side by side, or one above and one below."""
@@ -274,15 +292,15 @@ class Plot(pg.PlotWidget):
             self._mark_line(mark, 0)
             if mark.text:
                 self._word(mark.text, data.x.high, mark.at, (1.0, 0.0 if below else 1.0), mark.colour)
-        drop, before = 0.0, None
+        drop, before, span = 0.0, None, data.y.high - data.y.low
         for mark in sorted((mark for mark in data.marks if not mark.level), key=lambda mark: mark.at):
             self._mark_line(mark, 90)
             if mark.text:
                 near = before is not None and mark.at - before < 0.6 * (data.x.high - data.x.low)
                 drop, before = (drop + 0.14 if near else 0.0), mark.at
                 right = mark.at > (data.x.low + data.x.high) / 2
-                high = self._top(data) - drop * (data.y.high - data.y.low)
-                self._word(mark.text, mark.at, high, (1.0 if right else 0.0, 0.0), mark.colour)
+                y = data.y.low + drop * span if mark.foot else self._top(data) - drop * span
+                self._word(mark.text, mark.at, y, (1.0 if right else 0.0, 1.0 if mark.foot else 0.0), mark.colour)
 
     def _mark_line(self, mark: Mark, angle: int) -> None:
         pen = QPen(colours().color(mark.colour), 1.3, Qt.PenStyle.DashLine)

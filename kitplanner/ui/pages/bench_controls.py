@@ -38,7 +38,7 @@ class BenchControls(QWidget):
         self.rpm = QuietSpinBox()
         self.rpm.setDecimals(1)
         self.rpm.setRange(10, 120)
-        self.rpm.setSuffix(self.tr(" turns a minute"))
+        self.rpm.setSuffix(self.tr(" a minute"))
         self.rpm.setAccessibleName(self.tr("Cadence, turns a minute"))
         self.best = QPushButton(self.tr("&Best cadence"))
         self.best.setCheckable(True)
@@ -68,21 +68,15 @@ class BenchControls(QWidget):
         grid = QGridLayout(self)
         grid.setContentsMargins(0, 0, 0, 0)
         grid.setHorizontalSpacing(10)
-        for row, (words, buddy, second) in enumerate(
-            (
-                (self.tr("&Station"), self.station, None),
-                (self.tr("&Cadence"), self.slider, self.rpm),
-            )
-        ):
+        for row, (words, buddy) in enumerate(((self.tr("&Station"), self.station), (self.tr("&Cadence"), self.slider))):
             label = QLabel(words)
             label.setBuddy(buddy)
             grid.addWidget(label, row, 0)
-            grid.addWidget(buddy, row, 1, 1, 1 if second is not None else 2)
-            if second is not None:
-                grid.addWidget(second, row, 2)
-        grid.addWidget(self.best, 1, 3)
-        grid.addWidget(self.fixed, 2, 1)
-        grid.addWidget(self.amps, 2, 2)
+            grid.addWidget(buddy, row, 1, 1, 2)
+        grid.addWidget(self.rpm, 2, 1)
+        grid.addWidget(self.best, 2, 2)
+        grid.addWidget(self.fixed, 3, 1)
+        grid.addWidget(self.amps, 3, 2)
         grid.setColumnStretch(1, 1)
 
     def asked_rpm(self) -> float | None:

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 import numpy as np
 from PySide6.QtCore import QTimer, Signal, Slot
-from PySide6.QtWidgets import QHBoxLayout, QVBoxLayout, QWidget
+from PySide6.QtWidgets import QVBoxLayout, QWidget
 
 from kitplanner.plan.records import Plan, Station
 from kitplanner.planners.bench import BenchError, bench_point, bench_sweep
@@ -82,14 +82,13 @@ class BenchPage(AnswerPage):
         layout = QVBoxLayout(self._answers)
         layout.setContentsMargins(0, 0, 0, 0)
         layout.setSpacing(10)
-        top = QHBoxLayout()
-        words = QVBoxLayout()
-        words.addWidget(self.meter_words)
-        words.addWidget(self.states)
-        words.addStretch(1)
-        top.addWidget(self.gauge)
-        top.addLayout(words, 1)
-        layout.addLayout(top)
+        words = QWidget()
+        column = QVBoxLayout(words)
+        column.setContentsMargins(0, 0, 0, 0)
+        column.addWidget(self.meter_words)
+        column.addWidget(self.states)
+        column.addStretch(1)
+        layout.addWidget(Columns([self.gauge, words], 290))
         layout.addWidget(plain_label(self.tr("Stage by stage, at this cadence"), bold=True))
         layout.addWidget(self.stages)
         frames = self.small_frames()

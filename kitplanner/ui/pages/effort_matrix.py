@@ -27,10 +27,12 @@ from kitplanner.ui.hatches import draw_hatch
 from kitplanner.ui.heat_colours import cividis
 from kitplanner.ui.pages.plain_table import copied_text
 from kitplanner.ui.theme import colours, text_on, type_font
+from kitplanner.ui.widgets.plain import as_tool_tip
 
 Index = QModelIndex | QPersistentModelIndex
 ROW_ROLE = Qt.ItemDataRole.UserRole + 1
 SHADE_ROLE = Qt.ItemDataRole.UserRole + 2
+SHADE_LOW_MIN, SHADE_HIGH_MIN = 30.0, 600.0
 
 
 @dataclass(frozen=True)
@@ -40,11 +42,6 @@ class Matrix:
     devices: tuple[str, ...] = ()
     stations: tuple[str, ...] = ()
     cells: tuple[tuple[EffortRow | None, ...], ...] = ()
-
-    def extent(self) -> tuple[float, float]:
-        """Return the least and most minutes in the table."""
-        known = [row.minutes_p50 for line in self.cells for row in line if row is not None and row.minutes_p50]
-        return (min(known), max(known)) if known else (1.0, 1.0)
 
 
 def cell_text(row: EffortRow | None) -> str:
@@ -71,7 +68,6 @@ class EffortModel(QAbstractTableModel):
     def __init__(self, parent: QWidget | None = None) -> None:
         super().__init__(parent)
         self._matrix = Matrix()
-        self._extent = (1.0, 1.0)
 
     @property
     def matrix(self) -> Matrix:
@@ -83,7 +79,7 @@ class EffortModel(QAbstractTableModel):
         same = (matrix.devices, matrix.stations) == (self._matrix.devices, self._matrix.stations)
         if not same:
             self.beginResetModel()
-        self._matrix, self._extent = matrix, matrix.extent()
+        self._matrix = matrix
         if not same:
             self.endResetModel()
         elif matrix.devices and matrix.stations:
@@ -96,14 +92,16 @@ class EffortModel(QAbstractTableModel):
             return None
         return self._matrix.cells[index.row()][index.column()]
 
-    def shade(self, row: EffortRow | None) -> float | None:
-        """Return where a cell's minutes lie between least (1, yellow) and most (0, dark blue), by ratio."""
+    @staticmethod
+    def shade(row: EffortRow | None) -> float | None:
+        """Return where a cell's minutes lie between half an hour (1, yellow) and ten hours (0, dark blue), by ratio.
+
+        The scale is the same for every plan and person, so that two tables can be compared.
+        """
         if row is None or not row.minutes_p50:
             return None
-        low, high = self._extent
-        if high <= low * 1.001:
-            return 0.75
-        return 1.0 - math.log(row.minutes_p50 / low) / math.log(high / low)
+        share = math.log(row.minutes_p50 / SHADE_LOW_MIN) / math.log(SHADE_HIGH_MIN / SHADE_LOW_MIN)
+        return 1.0 - min(1.0, max(0.0, share))
 
     @guarded(0)
     def rowCount(self, parent: Index = QModelIndex()) -> int:  # noqa: B008 - Qt's own default
@@ -140,6 +138,8 @@ class EffortModel(QAbstractTableModel):
         names = self._matrix.stations if orientation == Qt.Orientation.Horizontal else self._matrix.devices
         if section >= len(names):
             return None
+        if role == Qt.ItemDataRole.ToolTipRole:
+            return as_tool_tip(names[section])
         return names[section] if role == Qt.ItemDataRole.DisplayRole else None
 
 
@@ -231,8 +231,9 @@ class EffortMatrix(QTableView):
         self.verticalHeader().setDefaultAlignment(Qt.AlignmentFlag.AlignLeft | Qt.AlignmentFlag.AlignVCenter)
         self.verticalHeader().setSectionResizeMode(QHeaderView.ResizeMode.Fixed)
         self.horizontalHeader().setSectionResizeMode(QHeaderView.ResizeMode.Stretch)
-        self.horizontalHeader().setHighlightSections(False)
-        self.verticalHeader().setHighlightSections(False)
+        for header in (self.horizontalHeader(), self.verticalHeader()):
+            header.setHighlightSections(False)
+            header.setTextElideMode(Qt.TextElideMode.ElideRight)
         self.setSizePolicy(QSizePolicy.Policy.Expanding, QSizePolicy.Policy.Fixed)
         self.selectionModel().currentChanged.connect(self._on_current_changed)
 
@@ -260,9 +261,8 @@ class EffortMatrix(QTableView):
 
     def _fit_columns(self) -> None:
         """Give the names a third of the width at most, and scroll when the cells would get too narrow."""
-        header, small = self.horizontalHeader(), QFontMetricsF(type_font("small"))
-        least = round(small.horizontalAdvance("00 h 00 min – 00 h 00 min") + 18)
-        header.setMinimumSectionSize(least)
+        header, bold = self.horizontalHeader(), QFontMetricsF(type_font("text", bold=True))
+        header.setMinimumSectionSize(round(bold.horizontalAdvance("00 h 00 min") + 14))
         names = QFontMetricsF(self.verticalHeader().font())
         widest = max((names.horizontalAdvance(name) for name in self._model.matrix.devices), default=0.0) + 24
         self.verticalHeader().setFixedWidth(round(min(widest, max(0.34 * self.width(), 120.0))))

@@ -6,7 +6,7 @@ import math
 
 import numpy as np
 from PySide6.QtCore import QTimer, Slot
-from PySide6.QtWidgets import QComboBox, QFormLayout, QHBoxLayout, QLabel, QWidget
+from PySide6.QtWidgets import QComboBox, QLabel, QVBoxLayout, QWidget
 
 from kitplanner.plan.records import Plan
 from kitplanner.planners.effort import charge_curve
@@ -62,7 +62,7 @@ def curve_chart(direct: ChargeCurve | None, store: ChargeCurve | None, names: tu
         lines.append(Line(time, thinned(curve.soc_p50_fraction), "", colour, dash))  # type: ignore[arg-type]
         if curve is curves[0]:
             bands.append(Band(time, thinned(curve.soc_p10_fraction), thinned(curve.soc_p90_fraction), colour))
-        marks.append(Mark(float(curve.minutes[-1]), f"{name} {minutes(float(curve.minutes[-1]))}", colour))
+        marks.append(Mark(float(curve.minutes[-1]), f"{name} {minutes(float(curve.minutes[-1]))}", colour, foot=True))
     ticks = tuple((value, percent(value)) for value in (0.0, 0.25, 0.5, 0.75, 1.0))
     y = Axis(names[2], 0.0, 1.0, ticks)
     return ChartData(minutes_axis(most * 1.02, ""), y, tuple(lines), tuple(bands), marks=tuple(marks))
@@ -98,24 +98,25 @@ class EffortPage(AnswerPage):
         self.matrix.row_chosen.connect(self._on_row_chosen)
 
     def _build(self) -> None:
-        choices = QHBoxLayout()
-        choices.setSpacing(14)
+        choices = []
         for words, box in (
             (self.tr("&Who"), self.person),
             (self.tr("W&ay"), self.route),
             (self.tr("&Charge"), self.charge),
         ):
-            form = QFormLayout()
-            form.setContentsMargins(0, 0, 0, 0)
-            form.setRowWrapPolicy(QFormLayout.RowWrapPolicy.WrapAllRows)
+            holder = QWidget()
+            column = QVBoxLayout(holder)
+            column.setContentsMargins(0, 0, 0, 0)
+            column.setSpacing(2)
             label = QLabel(words)
             label.setBuddy(box)
             box.setAccessibleName(words.replace("&", ""))
             box.setMinimumContentsLength(8)
             box.setSizeAdjustPolicy(QComboBox.SizeAdjustPolicy.AdjustToMinimumContentsLengthWithIcon)
-            form.addRow(label, box)
-            choices.addLayout(form, 1)
-        self.column.addLayout(choices)
+            column.addWidget(label)
+            column.addWidget(box)
+            choices.append(holder)
+        self.column.addWidget(Columns(choices, 175))
         self.column.addWidget(self.summary)
         self.column.addWidget(self.matrix)
         self.column.addWidget(self.chosen)
@@ -133,7 +134,7 @@ class EffortPage(AnswerPage):
         self._show_matrix()
 
     def _fill_people(self, plan: Plan) -> None:
-        wanted = [(self.tr("typical (the middle of all)"), TYPICAL)]
+        wanted = [(self.tr("typical (middle of all)"), TYPICAL)]
         wanted += [(plain(person.name) or person.id, person.id) for person in plan.people]
         now = [(self.person.itemText(n), self.person.itemData(n)) for n in range(self.person.count())]
         if wanted == now:

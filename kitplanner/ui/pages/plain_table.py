@@ -11,6 +11,7 @@ from PySide6.QtWidgets import QAbstractItemView, QHeaderView, QSizePolicy, QTabl
 
 from kitplanner.ui.guard import guarded
 from kitplanner.ui.theme import type_font
+from kitplanner.ui.widgets.plain import as_tool_tip
 
 Index = QModelIndex | QPersistentModelIndex
 
@@ -59,6 +60,8 @@ class PlainTableModel(QAbstractTableModel):
         if role == Qt.ItemDataRole.DisplayRole:
             row = self._data.rows[index.row()]
             return row[index.column()] if index.column() < len(row) else ""
+        if role == Qt.ItemDataRole.ToolTipRole and index.column() == 0:
+            return as_tool_tip(self._data.rows[index.row()][0])
         if role == Qt.ItemDataRole.TextAlignmentRole:
             side = Qt.AlignmentFlag.AlignLeading if index.column() == 0 else Qt.AlignmentFlag.AlignTrailing
             return int(side | Qt.AlignmentFlag.AlignVCenter)
@@ -103,6 +106,7 @@ class PlainTable(QTableView):
         self.setHorizontalScrollMode(QAbstractItemView.ScrollMode.ScrollPerPixel)
         self.verticalHeader().hide()
         self.horizontalHeader().setHighlightSections(False)
+        self.horizontalHeader().setTextElideMode(Qt.TextElideMode.ElideRight)
         self.horizontalHeader().setSectionResizeMode(QHeaderView.ResizeMode.ResizeToContents)
         self.setSizePolicy(QSizePolicy.Policy.Expanding, QSizePolicy.Policy.Fixed)
 

@@ -141,8 +141,8 @@ class Cutter:
 
     def _table(self, table: Table) -> Iterator[Piece]:
         ruler = self._ruler
-        if table.title:
-            yield self._heading(Heading(text=table.title, level=2))
+        title = (self._heading(Heading(text=table.title, level=2)),) if table.title else ()
+        yield from title
         widths = self._widths(table)
         head = tuple(self._row(table, row, widths, is_head=True) for row in table.header)
         for piece in head:
@@ -150,20 +150,47 @@ class Cutter:
             yield piece
         for row in table.rows:
             piece = self._row(table, row, widths, is_head=False)
-            piece.repeat = head
+            piece.repeat = (*title, *head)
             yield piece
         font = ruler.font(PT_SMALL)
+        if table.footnotes:
+            yield Piece(0.0, lambda _painter, _y: None, after_mm=1.2)
         for note in table.footnotes:
             for line in ruler.wrapped(note, font, ruler.width_mm):
                 yield Piece(ruler.line_mm(font), self._line(line, font, GREY))
         yield Piece(0.0, lambda _painter, _y: None, after_mm=4.0)
 
     def _widths(self, table: Table) -> tuple[float, ...]:
-        """Return column widths in millimetres: as the table says, but never too narrow for its longest word."""
+        """Return column widths in millimetres: room for every line where there is, else the names wrap first."""
         count = max(1, table.column_count)
         relative = table.widths if len(table.widths) == count else (1.0,) * count
-        whole = sum(relative)
-        return tuple(self._ruler.width_mm * part / whole for part in relative)
+        natural, least = self._measured(table, count)
+        spare = self._ruler.width_mm - sum(natural)
+        if spare >= 0:
+            return tuple(wide + spare * part / sum(relative) for wide, part in zip(natural, relative, strict=True))
+        heads = range(min(table.head_columns, count))
+        give = [max(0.0, natural[n] - max(least[n], 0.45 * natural[n])) if n in heads else 0.0 for n in range(count)]
+        if sum(give) < -spare:
+            give = [max(0.0, wide - narrow) for wide, narrow in zip(natural, least, strict=True)]
+        share = min(1.0, -spare / sum(give)) if sum(give) > 0 else 0.0
+        widths = [wide - part * share for wide, part in zip(natural, give, strict=True)]
+        return tuple(wide * self._ruler.width_mm / sum(widths) for wide in widths)
+
+    def _measured(self, table: Table, count: int) -> tuple[list[float], list[float]]:
+        """Return for each column the width of its longest line and of its longest word."""
+        natural, least = [8.0] * count, [6.0] * count
+        for is_head, row in [*((True, row) for row in table.header), *((False, row) for row in table.rows)]:
+            column = 0
+            for item in row:
+                if item.span == 1:
+                    for number, line in enumerate(item.lines):
+                        metrics = self._ruler.metrics(self._cell_font(item.strong or is_head, number))
+                        words = max((metrics.horizontalAdvance(word) for word in line.split(" ")), default=0.0)
+                        wide = words if is_head else metrics.horizontalAdvance(line)
+                        natural[column] = max(natural[column], wide / self._ruler.per_mm + 2 * PAD_MM + 0.3)
+                        least[column] = max(least[column], words / self._ruler.per_mm + 2 * PAD_MM + 0.3)
+                column += item.span
+        return natural, least
 
     def _row(self, table: Table, row: tuple[Cell, ...], widths: tuple[float, ...], *, is_head: bool) -> Piece:
         ruler, column, x = self._ruler, 0, 0.0
@@ -229,7 +256,7 @@ def paginate(pieces: Iterator[Piece], room_mm: float) -> list[Sheet]:
         top = 0.0
         for head in repeat:
             sheets[-1].pieces.append((top, head))
-            top += head.height_mm
+            top += head.height_mm + head.after_mm
         return top
 
     for piece in pieces:
