@@ -30,6 +30,7 @@ class Reference:
 
 def diode_v(diode: Diode, amps: float) -> float:
     """Forward voltage of all diodes."""
+    amps = max(amps, 0.0)
     return diode.series * (diode.ideality * VT * math.log1p(amps / diode.saturation_a) + diode.series_ohm * amps)
 
 
@@ -105,7 +106,7 @@ def with_regulator(chain: Chain, rpm: float, amps: float) -> Reference:
             before = emf - resistance * drawn - diode_v(diode, drawn)
             return before - regulator.dropout_v - regulator.dropout_ohm * drawn - out
 
-        out_v = float(brentq(excess, 0.0, set_v, xtol=1e-15, rtol=8.9e-16))
+        out_v = float(brentq(excess, -100.0, set_v, xtol=1e-15, rtol=8.9e-16))
         current = amps + out_v / divider_ohm
         in_v = emf - resistance * current - diode_v(diode, current)
     torque, human = effort(chain, rpm, current)
