@@ -154,6 +154,4 @@ def plans(draw: st.DrawFn, most: int = 3) -> Plan:
     parts = tuple(draw(records("temperature", f"T{number}")) for number in range(draw(st.integers(0, 2))))
     top: Plan = draw(records("plan"))
     rota = draw(st.none() | records("rota", "rota-1"))
-    return structs.replace(
-        top, conditions=structs.replace(conditions, temperatures=parts), rota=rota, **sections
-    )
+    return structs.replace(top, conditions=structs.replace(conditions, temperatures=parts), rota=rota, **sections)

@@ -12,7 +12,7 @@ from typing import Any
 import msgspec
 
 from kitplanner.plan.places import Part, short
-from kitplanner.plan.records import Plan
+from kitplanner.plan.records import Note, Plan
 
 _AT = re.compile(r"^(?P<what>.*?)(?: - at `(?P<path>\$.*)`)?$", re.DOTALL)
 _STEP = re.compile(r"\.([^.\[\]]+)|\[(\d+|\.\.\.)\]")
@@ -38,7 +38,7 @@ def explain_refusal(message: str, raw: object) -> tuple[list[Part], str, str]:
     """
     match = _AT.match(message)
     what = match["what"] if match else message
-    parts = _parts(match["path"] if match and match["path"] else "")
+    parts = _parts(match["path"] if match and match["path"] else "", raw)
     if found := re.search(r"unknown field `(.*)`", what, re.DOTALL):
         return [*parts, found[1]], "this key is unknown", _unknown_remedy(parts, found[1], raw)
     if found := re.search(r"missing required field `(.*)`", what):
@@ -57,15 +57,26 @@ def explain_refusal(message: str, raw: object) -> tuple[list[Part], str, str]:
     return parts, f"{what[0].lower()}{what[1:]}", "correct this value"
 
 
-def _parts(path: str) -> list[Part]:
-    """Return the steps of a path such as `$.people[2].age`."""
+def _parts(path: str, raw: object) -> list[Part]:
+    """Return the steps of a path such as `$.people[2].notes[...].mark`, finding the note that was refused."""
     steps: list[Part] = []
+    here = raw
     for key, index in _STEP.findall(path):
-        if key:
-            steps.append(key)
-        elif index != "...":
-            steps.append(int(index))
+        part: Part | None = key or (int(index) if index != "..." else _refused_note(here))
+        if part is not None:
+            steps.append(part)
+            here = _child(here, part)
     return steps
+
+
+def _refused_note(notes: object) -> str | None:
+    """Return the key of the first entry that is no note; the builder's message does not name it."""
+    for key, raw_note in notes.items() if isinstance(notes, dict) else ():
+        try:
+            msgspec.convert(raw_note, Note, strict=True)
+        except msgspec.ValidationError:
+            return str(key)
+    return None
 
 
 def _type_words(names: str) -> str:

@@ -20,5 +20,7 @@ def test_a_new_plan_is_the_demo_of_its_kind(kind):
 
 @pytest.mark.parametrize("kind", ["", "Camp", "../camp", "x" * 500])
 def test_other_kinds_are_refused_in_one_sentence(kind):
-    with pytest.raises(PlanFileError, match="there is no such kind of plan; use one of household, camp, shelter, bench"):
+    with pytest.raises(
+        PlanFileError, match="there is no such kind of plan; use one of household, camp, shelter, bench"
+    ):
         new_plan(kind)

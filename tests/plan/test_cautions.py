@@ -66,9 +66,11 @@ def test_one_hot_part_of_one_day_is_enough():
 
 def test_beside_limits_the_words_speak_to_the_planner():
     (shown,) = [one for one in cautions_for(HOUSEHOLD, "people") if one.caution.id == "C5"]
-    assert shown.text == AT_PERSON_LIMITS and shown.how == "inline"
+    assert shown.text == AT_PERSON_LIMITS
+    assert shown.how == "inline"
     (at_test,) = cautions_for(HOUSEHOLD, "self_test")
-    assert at_test.text == CAUTIONS["C5"].text and at_test.how == "gate"
+    assert at_test.text == CAUTIONS["C5"].text
+    assert at_test.how == "gate"
 
 
 def test_every_section_has_its_place_and_a_mistyped_one_is_an_error():

@@ -24,8 +24,19 @@ def refusal(data: bytes) -> str:
     sentence = str(caught.value)
     error = caught.value
     assert sentence == f"{error.place}: {error.reason}; {error.remedy}."
-    assert "\n" not in sentence and len(sentence) < 400 and sentence.endswith(".") and "Traceback" not in sentence
+    assert "\n" not in sentence
+    assert len(sentence) < 400
+    assert sentence.endswith(".")
+    assert "Traceback" not in sentence
     return sentence
+
+
+def one_answer(data: bytes) -> Plan | str:
+    """Return the plan or the one-line sentence that refuses it; anything else is an error of the codec."""
+    try:
+        return decode(data)
+    except PlanFileError as error:
+        return "" if "\n" in str(error) else str(error)
 
 
 @given(plans())
@@ -35,7 +46,8 @@ def test_a_plan_comes_back_equal_and_its_text_is_stable(plan):
     back = decode(data)
     assert back == plan
     assert encode(back) == data
-    assert data.endswith(b"\n") and json.loads(data)["format"] == "kitplanner-plan"
+    assert data.endswith(b"\n")
+    assert json.loads(data)["format"] == "kitplanner-plan"
 
 
 @pytest.mark.parametrize("name", DEMOS)
@@ -46,15 +58,20 @@ def test_demos_are_written_as_the_program_writes(name):
 
 def test_what_is_left_out_and_what_is_spelled_out():
     raw = json.loads(encode(Plan(stores=(Store(id="B", name="Bank"),))))
-    assert "people" not in raw and "rota" not in raw and "notes" not in raw
-    assert raw["stores"][0]["eta_in"] == 0.9 and raw["seed"] == 1 and raw["conditions"]["heat_limits"] is False
+    assert "people" not in raw
+    assert "rota" not in raw
+    assert "notes" not in raw
+    assert raw["stores"][0]["eta_in"] == 0.9
+    assert raw["seed"] == 1
+    assert raw["conditions"]["heat_limits"] is False
     assert "charge_limit_w" not in raw["stores"][0]
     assert list(raw)[:6] == ["format", "version", "title", "place", "start", "days"]
 
 
 def test_text_of_any_script_stays_readable():
     data = encode(Plan(title='Zoë "X" \\ 村 🏕'))
-    assert "Zoë" in data.decode() and "村 🏕" in data.decode()
+    assert "Zoë" in data.decode()
+    assert "村 🏕" in data.decode()
     assert decode(data).title == 'Zoë "X" \\ 村 🏕'
 
 
@@ -178,10 +195,7 @@ def test_stages_are_told_apart_by_their_kind(position):
 def test_any_one_damaged_byte_is_a_plan_or_one_sentence(position, byte):
     data = bytearray(CAMP)
     data[min(position, len(data) - 1)] = byte
-    try:
-        assert isinstance(decode(bytes(data)), Plan)
-    except PlanFileError as error:
-        assert "\n" not in str(error)
+    assert one_answer(bytes(data))
 
 
 @given(st.integers(1, len(CAMP) - 2))
@@ -207,10 +221,7 @@ JSON = st.recursive(
 @settings(max_examples=150, deadline=None)
 def test_any_value_at_any_key_is_a_plan_or_one_sentence(key, value):
     raw = {**json.loads(CAMP), key: value}
-    try:
-        assert isinstance(decode(json.dumps(raw).encode()), Plan)
-    except PlanFileError as error:
-        assert "\n" not in str(error)
+    assert one_answer(json.dumps(raw).encode())
 
 
 def test_a_later_default_cannot_change_an_old_file():

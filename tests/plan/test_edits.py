@@ -66,7 +66,8 @@ def test_an_edit_marks_the_value_as_the_users_own_where_the_usual_mark_differs()
     after = set_value(("stores", "B-B1", "eta_in"), 0.8)(CAMP)
     assert after.stores[0].notes == {"eta_in": Note(mark="own")}
     measured = set_value(("stations", "B-S1", "output_w"), 38)(CAMP).stations[0]
-    assert measured.notes["output_w"] == Note(mark="own") and measured.notes["eta_fraction"].mark == "demo"
+    assert measured.notes["output_w"] == Note(mark="own")
+    assert measured.notes["eta_fraction"].mark == "demo"
     assert type(measured.output_w) is float
     named = set_value(("stores", "B-B1", "name"), "Box")(CAMP).stores[0]
     assert named.notes == {}, "a name is the user's own anyway"
@@ -116,19 +117,22 @@ def test_notes_can_be_set_and_dropped():
 def test_values_no_file_could_hold_are_refused_in_one_sentence(path, value, words):
     with pytest.raises(EditError, match=words) as caught:
         set_value(path, value)(CAMP)
-    assert str(caught.value).endswith(".") and "\n" not in str(caught.value)
+    assert str(caught.value).endswith(".")
+    assert "\n" not in str(caught.value)
 
 
 def test_records_are_added_moved_replaced_and_removed():
     store = Store(id="B-B9", name="Spare")
     added = add_record(("stores",), store, 1)(CAMP)
     assert [one.id for one in added.stores] == ["B-B1", "B-B9", "B-B2", "B-B3"]
-    assert added.stores[1] is store and added.people is CAMP.people
+    assert added.stores[1] is store
+    assert added.people is CAMP.people
     moved = move_record(("stores", "B-B9"), 3)(added)
     assert [one.id for one in moved.stores] == ["B-B1", "B-B2", "B-B3", "B-B9"]
     assert remove_record(("stores", "B-B9"))(moved) == CAMP
     changed = replace_record(("stores", "B-B1"), structs.replace(CAMP.stores[0], count=2))(CAMP)
-    assert changed.stores[0].count == 2 and changed.stores[1] is CAMP.stores[1]
+    assert changed.stores[0].count == 2
+    assert changed.stores[1] is CAMP.stores[1]
 
 
 def test_stages_are_records_too():
@@ -172,7 +176,8 @@ def test_single_parts_of_a_station_come_and_go():
 def test_impossible_changes_are_refused_in_one_sentence(edit, words):
     with pytest.raises(EditError, match=words) as caught:
         edit(CAMP)
-    assert str(caught.value).endswith(".") and "\n" not in str(caught.value)
+    assert str(caught.value).endswith(".")
+    assert "\n" not in str(caught.value)
 
 
 def test_removing_a_record_takes_its_references_along():
@@ -197,8 +202,10 @@ def test_removing_a_record_takes_its_references_along():
     )
     without_group = remove_record(("groups", "G1"))(plan)
     assert [one.id for one in without_group.blocks] == ["Q2", "Q3"], "a block for nobody must not become one for all"
-    assert without_group.blocks[0].groups == ("G2",) and without_group.people[0].group is None
-    assert without_group.people[1] is plan.people[1] and without_group.stations is plan.stations
+    assert without_group.blocks[0].groups == ("G2",)
+    assert without_group.people[0].group is None
+    assert without_group.people[1] is plan.people[1]
+    assert without_group.stations is plan.stations
 
     without_station = remove_record(("stations", "S1"))(plan)
     assert (without_station.people[0].stations, without_station.people[0].cap_min) == ((), 0)

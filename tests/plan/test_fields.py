@@ -86,8 +86,12 @@ def test_every_record_type_is_named():
 
 @each_field
 def test_words_are_there_and_each_help_is_one_sentence(kind, spec):
-    assert spec.label and spec.label[0].isupper() and not spec.label.endswith(".")
-    assert spec.help.endswith(".") and (spec.help[0].isupper() or spec.help[0].isdigit()) and len(spec.help) <= 130
+    assert spec.label
+    assert spec.label[0].isupper()
+    assert not spec.label.endswith(".")
+    assert spec.help.endswith(".")
+    assert spec.help[0].isupper() or spec.help[0].isdigit()
+    assert len(spec.help) <= 130
     assert not re.search(r"[.!?] [A-Z]", spec.help) or spec.key == "battery_wh"
 
 
@@ -122,8 +126,11 @@ def test_numbers_have_a_sane_range_and_a_default_inside(kind, spec):
     if spec.kind not in ("number", "integer"):
         assert spec.unit == ""
         return
-    assert spec.low is not None and spec.high is not None and spec.low < spec.high
-    assert math.isfinite(spec.low) and math.isfinite(spec.high)
+    assert spec.low is not None
+    assert spec.high is not None
+    assert spec.low < spec.high
+    assert math.isfinite(spec.low)
+    assert math.isfinite(spec.high)
     if isinstance(spec.default, (int, float)):
         assert spec.low <= spec.default <= spec.high
         assert not (spec.low_open and spec.default == spec.low)
@@ -170,13 +177,15 @@ def test_headings_stand_together(kind):
 @pytest.mark.parametrize("section", SECTION_KINDS)
 def test_every_table_shows_the_name_first_and_few_columns(section):
     columns = [spec.key for spec in FIELDS[SECTION_KINDS[section]] if spec.column]
-    assert columns[0] == "name" and len(columns) <= 8
+    assert columns[0] == "name"
+    assert len(columns) <= 8
 
 
 def test_stage_specs_are_found_by_kind_and_shown_by_description():
     station = records.Station(id="S", name="Crank", described_by="label")
     assert kind_of(records.LossStage(id="l", name="Loss")) == "loss"
-    assert is_shown(field("station", "label_w"), station) and not is_shown(field("station", "output_w"), station)
+    assert is_shown(field("station", "label_w"), station)
+    assert not is_shown(field("station", "output_w"), station)
     with pytest.raises(KeyError):
         field("station", "colour")
 

@@ -72,8 +72,10 @@ def test_links_survive(kept, tmp_path):
     link = folder / "link.kitplan"
     link.symlink_to(kept)
     write_plan(link, NEW)
-    assert link.is_symlink() and read_plan(kept) == NEW
-    assert names(link) == ["link.kitplan"] and "hut.kitplan~" in names(kept)
+    assert link.is_symlink()
+    assert read_plan(kept) == NEW
+    assert names(link) == ["link.kitplan"]
+    assert "hut.kitplan~" in names(kept)
 
 
 @pytest.mark.parametrize("step", ["fsync", "replace", "write"])
@@ -105,7 +107,8 @@ def test_a_really_full_disk_is_told(kept):
 def test_a_plan_no_file_can_hold_is_refused_before_the_disk_is_touched(kept):
     with pytest.raises(PlanFileError, match=r"^hut\.kitplan: a number is not finite"):
         write_plan(kept, Plan(margin_fraction=float("nan")))
-    assert read_plan(kept) == OLD and names(kept) == ["hut.kitplan"]
+    assert read_plan(kept) == OLD
+    assert names(kept) == ["hut.kitplan"]
 
 
 def test_a_write_protected_file_is_not_replaced(kept, monkeypatch):
@@ -121,7 +124,8 @@ def test_only_regular_files_in_existing_folders_are_written(tmp_path, name):
     os.mkfifo(tmp_path / "pipe")
     with pytest.raises(PlanFileError) as caught:
         write_plan(tmp_path / name, NEW)
-    assert str(caught.value).endswith(".") and "\n" not in str(caught.value)
+    assert str(caught.value).endswith(".")
+    assert "\n" not in str(caught.value)
     assert sorted(one.name for one in tmp_path.iterdir()) == ["folder", "pipe"]
 
 
@@ -167,7 +171,7 @@ def test_the_limit_is_checked_before_reading(tmp_path, monkeypatch):
 
 def test_recovery_files_hold_plan_and_origin(kept, tmp_path):
     path = tmp_path / "recovery.json"
-    moment = dt.datetime(2026, 1, 2, 3, 4, 5, tzinfo=dt.timezone.utc)
+    moment = dt.datetime(2026, 1, 2, 3, 4, 5, tzinfo=dt.UTC)
     given = Recovery(plan=NEW, original=str(kept), original_sha256=file_sha256(kept), saved_at=moment)
     write_recovery(path, given)
     assert read_recovery(path) == given
@@ -176,7 +180,8 @@ def test_recovery_files_hold_plan_and_origin(kept, tmp_path):
     assert file_sha256(kept) != given.original_sha256
     discard_recovery(path)
     discard_recovery(path)
-    assert not path.exists() and file_sha256(path) is None
+    assert not path.exists()
+    assert file_sha256(path) is None
 
 
 @pytest.mark.parametrize("text", [b"{}", b"", encode(OLD), b'{"format": "kitplanner-recovery", "plan": {}}', b"[[["])

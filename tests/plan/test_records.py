@@ -26,7 +26,8 @@ def test_leaving_out_none_and_empty_collections_loses_nothing(made):
 
 @pytest.mark.parametrize("made", [*RECORD_TYPES.values(), records.Note, records.Window])
 def test_records_are_frozen_and_refuse_unknown_keys(made):
-    assert made.__struct_config__.frozen and made.__struct_config__.forbid_unknown_fields
+    assert made.__struct_config__.frozen
+    assert made.__struct_config__.forbid_unknown_fields
 
 
 def test_a_record_cannot_be_changed_in_place():
