@@ -249,8 +249,8 @@ def person_output(plan: Plan, person: Person, station: Station) -> PersonOutput:
     """Return what a person gives at a station over the bouts and the day that hold for them there.
 
     Measured: S = rated (P - P0)/(P_ref - P0), kept between 0 and rated, P0 the station's drag; a given share replaces
-    it: S = rated share. By label: S = min(label, eta P). M = S/eta at both, at a hand crank never above the force
-    limit. By parts: M only.
+    it: S = rated share. By label: S = min(label, eta P). M = S/eta at both. By parts: M only. At a hand crank the
+    hand's force limits P.
 
     Parameters
     ----------
@@ -283,28 +283,29 @@ def person_output(plan: Plan, person: Person, station: Station) -> PersonOutput:
     factor = DEVICE_FACTOR[station.kind]
     force_w, torque_nm = _force_caps(station, limits.cap_min)
     free_w = factor * person_watts(person, limb, *duration) if limits.cap_min > 0 else 0.0
+    watts = min(free_w, force_w)
+    given = _given_share(person, limb, limits) if station.described_by == "measured" else None
     output_w: float | None = None
-    power_w, capped = free_w, False
+    power_w, capped = watts, False
     if station.described_by == "label":
-        power_w = min(free_w, (station.label_w or 0.0) / station.eta_fraction)
-        capped = power_w < min(free_w, force_w)
+        output_w = min(watts * station.eta_fraction, station.label_w or 0.0)
+        capped = output_w < watts * station.eta_fraction
     elif station.described_by == "measured":
-        full_w = factor * reference_w(limb, *duration)
-        share = _share_of_rating(station, limb, free_w / full_w, _given_share(person, limb, limits))
-        power_w = (station.output_w or 0.0) * min(max(share, 0.0), 1.0) / station.eta_fraction
-        capped = share > 1.0 and power_w <= force_w
-    held_w = min(power_w, force_w)
-    if station.described_by != "parts":
-        output_w = held_w * station.eta_fraction
+        # The hand's force holds the reference adult too: what was measured at this crank stands.
+        full_w = min(factor * reference_w(limb, *duration), force_w)
+        share = _share_of_rating(station, limb, watts / full_w, given)
+        output_w, capped = (station.output_w or 0.0) * min(max(share, 0.0), 1.0), share > 1.0
+    if output_w is not None:
+        power_w = output_w / station.eta_fraction
     own, rated = person_spread(person, limb, *duration), _station_spread(station)
     return PersonOutput(
         station_output_w=output_w,
-        person_power_w=held_w,
+        person_power_w=power_w,
         capped=capped,
         spread_fraction=combined_spread(own, rated),
         person_spread_fraction=own,
         station_spread_fraction=rated,
-        force_capped=power_w > force_w,
+        force_capped=given is None and watts < free_w,
         torque_cap_nm=torque_nm,
     )
 

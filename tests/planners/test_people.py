@@ -250,16 +250,21 @@ class TestOutput:
         small = msgspec.structs.replace(crank, crank_radius_m=0.10)
         assert person_output(PLAN, strong, small).station_output_w == pytest.approx(18.85, rel=1e-3)
 
-    def test_hand_force_holds_a_measured_crank_down(self):
-        """A rating that would take 40 W at the handle is held to 28.27 W there, also for a given share."""
+    def test_a_measured_output_stands_whatever_the_hand_would_feel(self):
+        """Scaling a station's rating scales its output, also where the default efficiency puts 40 W at the handle."""
         crank = msgspec.structs.replace(CRANK, output_w=20.0)
         for adult in (person(age=40), person(watts_by="share", share_arms_fraction=1.0)):
-            held = person_output(PLAN, adult, crank)
-            assert held.force_capped
-            assert not held.capped
-            assert held.person_power_w == pytest.approx(28.27, rel=1e-3)
-            assert held.station_output_w == pytest.approx(0.5 * 28.27, rel=1e-3)
-        assert not person_output(PLAN, person(age=40), CRANK).force_capped
+            assert person_output(PLAN, adult, crank).station_output_w == pytest.approx(20.0)
+            assert not person_output(PLAN, adult, crank).force_capped
+
+    def test_hand_force_counts_for_both_sides_of_the_drag_law(self):
+        """At 0.05 m 30 N are 9.42 W: strong and reference adult alike; 6 W give (6/9.42 - 0.1)/0.9 of the rating."""
+        short = msgspec.structs.replace(CRANK, crank_radius_m=0.05)
+        strong = person_output(PLAN, person(watts_by="own", own_arms_w=60.0), short)
+        assert (strong.station_output_w, strong.force_capped, strong.capped) == (6.0, True, False)
+        weak = person_output(PLAN, person(watts_by="own", own_arms_w=6.0), short)
+        assert weak.station_output_w == pytest.approx(6.0 * (6.0 / 9.4248 - 0.1) / 0.9, rel=1e-4)
+        assert not weak.force_capped
 
     def test_hand_torque_of_a_crank_by_parts(self):
         parts = Station(
