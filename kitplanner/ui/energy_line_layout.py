@@ -130,7 +130,7 @@ class Frame:
 
 def heading(picture: Picture, frame: Frame, stage: StageText, x: float, room: float) -> None:
     """Add the title of a stage and below it the level letter and the value."""
-    top, badge = 8.0, frame.small * 1.1
+    top, badge = 8.0, frame.small * 1.3
     title = frame.fit(stage.titles, room, "text", bold=True)
     picture.words.append(Word(QRectF(x, top, room, frame.line), title, "text", bold=True))
     at, below = x, top + frame.line + 1

@@ -5,7 +5,7 @@ from __future__ import annotations
 from PySide6.QtCore import QObject, Slot
 
 from kitplanner.plan.records import Plan
-from kitplanner.planners.bench import bench_point
+from kitplanner.planners.bench import BenchError, bench_point
 from kitplanner.planners.results import BenchPoint
 from kitplanner.planners.stations import StationError
 from kitplanner.ui.energy_line import EnergyLine
@@ -44,7 +44,7 @@ class StationChain(QObject):
         self._shown = station
         try:
             point = bench_point(plan, station.id)
-        except StationError:
+        except (BenchError, StationError):
             # The form says what is missing; the line cannot draw a chain that is not described.
             self._line.set_station_point(None)
             return

@@ -6,7 +6,7 @@ An unmet evening guarantee is its first line.
 from __future__ import annotations
 
 from PySide6.QtCore import QEvent, QPointF, QRectF, QSize, Qt
-from PySide6.QtGui import QColor, QPainter, QPainterPath, QPaintEvent, QPalette, QPen
+from PySide6.QtGui import QColor, QPainter, QPainterPath, QPaintEvent, QPalette, QPen, QResizeEvent
 from PySide6.QtWidgets import QBoxLayout, QFrame, QSizePolicy, QVBoxLayout, QWidget
 
 from kitplanner.plan.records import Device, Plan
@@ -213,7 +213,7 @@ class VerdictStrip(QFrame):
             self._colour()
 
     @guarded()
-    def resizeEvent(self, event: QEvent) -> None:
+    def resizeEvent(self, event: QResizeEvent) -> None:
         """Stand the parts below each other where they would be squeezed."""
         super().resizeEvent(event)
         need = 820 * type_font().pointSizeF() / 10.0

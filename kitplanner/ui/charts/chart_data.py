@@ -104,7 +104,8 @@ def thinned(values: FloatArray, most: int = MOST_POINTS) -> FloatArray:
     """Return at most `most` of the values, first and last included."""
     if len(values) <= most:
         return values
-    return values[np.linspace(0, len(values) - 1, most).round().astype(int)]
+    kept: FloatArray = values[np.linspace(0, len(values) - 1, most).round().astype(int)]
+    return kept
 
 
 def nice_step(span: float, parts: int) -> float:

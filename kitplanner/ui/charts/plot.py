@@ -282,7 +282,7 @@ class Plot(pg.PlotWidget):
     def _px_per_x(self) -> float:
         """Return how many pixels one unit of the x axis takes."""
         (low, high), _y = self.viewRange()
-        return self.getViewBox().width() / max(1e-9, high - low)
+        return float(self.getViewBox().width()) / max(1e-9, high - low)
 
     def _marks(self, data: ChartData) -> None:
         """Draw lines across; words of neighbours keep apart: side by side, or one above and one below."""
@@ -336,7 +336,7 @@ class Plot(pg.PlotWidget):
         word.setBrush(colours().color("muted"))
         word.setPos(left, 2)
         self._title_items.append(word)
-        return left + word.boundingRect().width()
+        return left + float(word.boundingRect().width())
 
     def _names(self, data: ChartData) -> None:
         """Write each curve's name at its end, moved apart where two would meet."""

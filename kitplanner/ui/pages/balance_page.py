@@ -50,7 +50,7 @@ class BalancePage(AnswerPage):
         stations = self._titled(self.tr("Stations, a day"), self.stations, self.people)
         self._parts = [
             self.effort,
-            Columns([self.hours, self.days]),
+            Columns([self.hours, self.days], 300),
             Columns([self.cuts, cuts], 430),
             Columns([devices, stations], 600),
         ]
@@ -137,13 +137,13 @@ class BalancePage(AnswerPage):
             self.tr("shared cut"),
         )
         self.devices.set_data(balance_charts.devices_table(plan, balance, heads))
-        heads = (
+        station_heads = (
             self.tr("station"),
             self.tr("room, min"),
             self.tr("offered, min"),
             self.tr("turned, min"),
             self.tr("made, Wh (S)"),
         )
-        self.stations.set_data(balance_charts.stations_table(plan, balance, heads))
+        self.stations.set_data(balance_charts.stations_table(plan, balance, station_heads))
         if not balance.stations:
-            self.stations.set_data(TableData(heads, ()))
+            self.stations.set_data(TableData(station_heads, ()))

@@ -65,7 +65,6 @@ class ChartFrame(QWidget):
         self.toggle = QToolButton()
         self.toggle.setText(self.tr("Table"))
         self.toggle.setCheckable(True)
-        self.toggle.setAutoRaise(True)
         self.toggle.setAccessibleName(self.tr("{title}: show as table").format(title=title))
         self.toggle.setToolTip(self.tr("Show the same figures as a table"))
         self.toggle.toggled.connect(self._on_toggled)

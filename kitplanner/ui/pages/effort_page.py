@@ -192,7 +192,7 @@ class EffortPage(AnswerPage):
         direct, store = (charge_curve(plan, one) if one is not None and one.minutes_p50 else None for one in pair)
         names = (self.tr("direct"), self.tr("through a store"), self.tr("state of charge"))
         chart = curve_chart(direct, store, names)
-        self.curve.set_content(chart, self._curve_words(row, direct, store), curve_table(direct, store, self.tr))
+        self.curve.set_content(chart, self._curve_words(row, direct, store), curve_table(direct, store, names))
 
     def _sibling(self, row: EffortRow, route: Route) -> EffortRow | None:
         return self._rows.get((row.device, row.station, row.person, route, row.charge))
@@ -212,11 +212,11 @@ class EffortPage(AnswerPage):
         return words
 
 
-def curve_table(direct: ChargeCurve | None, store: ChargeCurve | None, tr) -> TableData:  # noqa: ANN001 - Qt's tr
+def curve_table(direct: ChargeCurve | None, store: ChargeCurve | None, words: tuple[str, str, str]) -> TableData:
     """Return the curves as a table: minutes to reach each tenth of charge."""
-    headers = [tr("state of charge")]
+    headers = [words[2]]
     columns = []
-    for curve, name in ((direct, tr("direct")), (store, tr("through a store"))):
+    for curve, name in ((direct, words[0]), (store, words[1])):
         if curve is not None and len(curve.minutes) > 1:
             headers.append(name)
             columns.append(curve)

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import errno
 import os
 import tempfile
 from pathlib import Path
@@ -97,26 +98,22 @@ def write_pdf(paper: Paper, path: Path, size: SheetSize = "A4") -> None:
 
     Raises
     ------
-    PrintError
-        When the file cannot be written, in one sentence.
+    OSError
+        When the file cannot be written; what stood there before stays.
     """
     data = pdf_bytes(paper, size)
     place = Path(os.path.realpath(path))
     if place.exists() and not place.is_file():
-        raise PrintError(f"{path} is no ordinary file; choose another name for the PDF.")
-    try:
-        handle, name = tempfile.mkstemp(prefix=f".{place.name}.", dir=place.parent)
-    except OSError as error:
-        raise PrintError(
-            f"The PDF cannot be written to {place.parent}: {error.strerror}; choose another folder."
-        ) from error
+        raise OSError(errno.EINVAL, "it is no ordinary file", str(path))
+    mode = place.stat().st_mode & 0o777 if place.exists() else 0o644
+    handle, name = tempfile.mkstemp(prefix=f".{place.name}.", dir=place.parent)
     try:
         with os.fdopen(handle, "wb") as file:
             file.write(data)
             file.flush()
             os.fsync(file.fileno())
-        Path(name).chmod(0o644 if not place.exists() else place.stat().st_mode & 0o777)
+        Path(name).chmod(mode)
         Path(name).replace(place)
-    except OSError as error:
+    except OSError:
         Path(name).unlink(missing_ok=True)
-        raise PrintError(f"The PDF cannot be written to {path}: {error.strerror}; choose another place.") from error
+        raise
