@@ -9,7 +9,7 @@ from __future__ import annotations
 import sys
 import time
 
-from PySide6.QtCore import QEvent, QObject, QTimer
+from PySide6.QtCore import QEvent, QObject, Qt, QTimer
 from PySide6.QtWidgets import QApplication, QLabel, QMainWindow, QWidget
 
 GIVE_UP_MS = 20_000
@@ -28,8 +28,13 @@ class FirstFrame(QObject):
     def eventFilter(self, watched: QObject, event: QEvent) -> bool:
         if event.type() == QEvent.Type.Paint and not self._seen and self._is_awaited(watched):
             self._seen = True
-            QTimer.singleShot(0, self._end)
+            # Answered as soon as the whole window is painted and on the screen, before any later work.
+            QApplication.postEvent(self, QEvent(QEvent.Type.User), Qt.EventPriority.HighEventPriority.value)
         return False
+
+    def customEvent(self, event: QEvent) -> None:
+        print(f"{(time.monotonic() - self._start) * 1000:.2f}", flush=True)
+        QApplication.exit(0)
 
     def _is_awaited(self, watched: QObject) -> bool:
         if not isinstance(watched, QWidget):
@@ -40,10 +45,6 @@ class FirstFrame(QObject):
         if self._kind == "window":
             return type(watched).__name__ == "VerdictStrip" and shows_verdict(watched)
         return watched.isWindow()
-
-    def _end(self) -> None:
-        print(f"{(time.monotonic() - self._start) * 1000:.2f}", flush=True)
-        QApplication.exit(0)
 
 
 def shows_verdict(strip: QWidget) -> bool:
