@@ -6,7 +6,6 @@ an error's text may quote a name from the plan.
 
 from __future__ import annotations
 
-import platform
 import sys
 import threading
 import traceback
@@ -34,7 +33,7 @@ def note_text(error: BaseException) -> str:
     """The crash note: kind of error, places, versions."""
     return "\n".join(
         [
-            f"Kitplanner {__version__}, Python {platform.python_version()}, {platform.system()} {platform.machine()}",
+            f"Kitplanner {__version__}, Python {sys.version.split()[0]}, {sys.platform}",
             type(error).__name__,
             *(f"  {place}" for place in places(error)),
             "",
