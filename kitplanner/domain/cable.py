@@ -5,12 +5,10 @@ from __future__ import annotations
 import math
 from dataclasses import dataclass
 
-from kitplanner.domain.machine import copper_ohm
+from kitplanner.domain.copper import COPPER_OHM_M, copper_ohm
 from kitplanner.domain.stage import Flow
 from kitplanner.domain.units import M2_PER_MM2, M_PER_MM, Values
 
-# IEC 60028: 100 % IACS copper at 20 degC [ohm.m].
-COPPER_OHM_M = 1.7241e-8
 # Contacts of a USB loop and the resistance of each (from memory).
 USB_CONTACTS = 4
 CONTACT_OHM = 0.030

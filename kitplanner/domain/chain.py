@@ -12,7 +12,8 @@ from kitplanner.domain.cadence import best_cadence, best_fraction_cadence, meter
 from kitplanner.domain.chain_model import Chain, Comfort
 from kitplanner.domain.chain_solver import charging_point, operating_point
 from kitplanner.domain.converter import SwitchingConverter
-from kitplanner.domain.machine import DcMachine, GearBox
+from kitplanner.domain.gear import GearBox
+from kitplanner.domain.machine import DcMachine
 from kitplanner.domain.operating_point import BINDINGS, FAILED_STATES, STATES, OperatingPoint
 from kitplanner.domain.rectifier import Diode, SynchronousRectifier
 from kitplanner.domain.regulator import LinearRegulator

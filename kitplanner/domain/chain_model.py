@@ -13,7 +13,8 @@ from dataclasses import dataclass
 import numpy as np
 
 from kitplanner.domain.converter import SwitchingConverter
-from kitplanner.domain.machine import DcMachine, GearBox, drag_torque_nm
+from kitplanner.domain.gear import GearBox
+from kitplanner.domain.machine import DcMachine, drag_torque_nm
 from kitplanner.domain.regulator import LinearRegulator, divider_band_v
 from kitplanner.domain.roots import BoolArray, FloatArray
 from kitplanner.domain.stage import Flow, Stage

@@ -27,7 +27,7 @@ from kitplanner.domain.usb_sink import ENTRY_TEST_A, ENTRY_TEST_V, UsbSink
 Question = npt.ArrayLike
 _STEPS = 16
 # Points per batch, so that its arrays stay in the processor's second-level cache.
-_BATCH = 4096
+_BATCH = 8192
 _BEHIND_PEAK = 1e-7
 _ROUNDING = 1e-9
 _CURRENT, _HOLD, _ACCEPTANCE, _HUMAN, _TORQUE, _NOTHING = range(len(BINDINGS))

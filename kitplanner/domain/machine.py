@@ -1,4 +1,4 @@
-"""Permanent-magnet DC machine as a generator, and the gear between handle and machine.
+"""Permanent-magnet DC machine as a generator.
 
 The machine is linear: no saturation, inductance ignored, steady current, brushes not sparking, winding
 within its thermal limit. Current out of the generator is positive, torque and speed are those the person
@@ -11,10 +11,8 @@ from dataclasses import dataclass
 
 import numpy as np
 
+from kitplanner.domain.gear import GearBox
 from kitplanner.domain.units import Values, rad_s_from_rpm, rpm_from_rad_s
-
-# IEC 60028 (1925): temperature coefficient of annealed copper at 20 degC, per kelvin.
-COPPER_PER_K = 0.00393
 
 
 @dataclass(frozen=True)
@@ -39,28 +37,6 @@ class DcMachine:
             raise ValueError("A machine needs a voltage constant and a winding resistance above zero.")
         if not (self.vb_v >= 0 and self.tc_nm >= 0 and self.b_nm_s >= 0):
             raise ValueError("Brush drop and drag of a machine cannot be negative.")
-
-
-@dataclass(frozen=True)
-class GearBox:
-    """Step-up gear: ratio [-] of machine speed to crank speed, efficiency [-], drag at the crank [N.m].
-
-    Raises
-    ------
-    ValueError
-        When ratio or efficiency is not above zero, the efficiency is above one or the drag negative.
-    """
-
-    ratio: float
-    eta: float = 1.0
-    drag_nm: float = 0.0
-
-    def __post_init__(self) -> None:
-        """Refuse constants for which the equations have no meaning."""
-        if not (self.ratio > 0 and 0 < self.eta <= 1 and self.drag_nm >= 0):
-            raise ValueError(
-                "A gear needs a ratio above zero, an efficiency above zero up to one and no negative drag."
-            )
 
 
 def ke_from_kv(kv_rpm_per_v: Values) -> Values:
@@ -191,50 +167,6 @@ def shaft_torque_nm(machine: DcMachine, speed_rad_s: Values, current_a: Values) 
     0.031
     """
     return machine.ke_v_s * current_a + drag_torque_nm(machine, speed_rad_s)
-
-
-def crank_torque_nm(gear: GearBox, torque_nm: Values) -> Values:
-    """Torque at the crank for a torque at the machine: T_crank = N T / eta_g + Td.
-
-    Parameters
-    ----------
-    gear : GearBox
-        Gear between crank and machine.
-    torque_nm : float or array
-        Torque at the machine's shaft [N.m].
-
-    Returns
-    -------
-    float or array
-        Torque at the crank [N.m].
-
-    Examples
-    --------
-    >>> round(crank_torque_nm(GearBox(40.0, 0.80, 0.08), 0.0297), 3)
-    1.565
-    """
-    return gear.ratio * torque_nm / gear.eta + gear.drag_nm
-
-
-def gear_train_eta(stages_eta: tuple[float, ...]) -> float:
-    """Efficiency of gear stages in a row: the product of theirs.
-
-    Parameters
-    ----------
-    stages_eta : tuple of float
-        Efficiency of each stage [-].
-
-    Returns
-    -------
-    float
-        Efficiency of the train [-].
-
-    Examples
-    --------
-    >>> round(gear_train_eta((0.92, 0.92, 0.92)), 4)
-    0.7787
-    """
-    return float(np.prod(stages_eta))
 
 
 def short_circuit_a(machine: DcMachine, speed_rad_s: Values) -> Values:
@@ -375,33 +307,6 @@ def eta_at(machine: DcMachine, speed_rad_s: Values, current_a: Values) -> Values
     """
     out_w = terminal_v(machine, speed_rad_s, current_a) * current_a
     return out_w / (shaft_torque_nm(machine, speed_rad_s, current_a) * speed_rad_s)
-
-
-def copper_ohm(ohm_20: Values, copper_degc: Values) -> Values:
-    """Resistance of copper at a temperature: R = R20 (1 + 0.00393 (T - 20)).
-
-    Parameters
-    ----------
-    ohm_20 : float or array
-        Resistance at 20 degC [ohm].
-    copper_degc : float or array
-        Temperature of the copper [degC].
-
-    Returns
-    -------
-    float or array
-        Resistance at that temperature [ohm].
-
-    References
-    ----------
-    IEC 60028, International standard of resistance for copper, 1925.
-
-    Examples
-    --------
-    >>> round(copper_ohm(1.5, 80.0), 3)
-    1.854
-    """
-    return ohm_20 * (1.0 + COPPER_PER_K * (copper_degc - 20.0))
 
 
 def regulating_speed_rpm(machine: DcMachine, gear: GearBox, terminal_volts_v: Values, current_a: Values) -> Values:

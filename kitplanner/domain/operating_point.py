@@ -202,7 +202,7 @@ def describe(chain: Chain, solution: Solution, sink: UsbSink) -> OperatingPoint:
     electric = _electric(chain, net_v, emf, current)
     plug_v, plug_a = _array(electric[-1].out_v), _array(electric[-1].out_a)
     flags = _flags(chain, solution, sink, electric[1:], (plug_v, plug_a, torque, net_v))
-    failed = flags["no_output"] | flags["vin_low"] | flags["collapse"]
+    failed: BoolArray = np.logical_or.reduce([flags[state] for state in FAILED_STATES])
     plug_w = plug_v * plug_a
     greatest_w = np.where(flags["collapse"], plug_w, np.nan)
     if failed.any():

@@ -18,9 +18,9 @@ IntArray = npt.NDArray[np.intp]
 IndexedFunction = Callable[[FloatArray, IntArray | None], FloatArray]
 
 _EPS = float(np.finfo(np.float64).eps)
-_FIRST_PASS = 6
+_FIRST_PASS = 4
 # Function values this small are rounding of quantities of about one.
-_SMALLEST = 2e-16
+_SMALLEST = 1e-15
 _MOST_STEPS = 120
 _GOLDEN = (5.0**0.5 - 1.0) / 2.0
 

@@ -1,4 +1,4 @@
-"""DC machine and gear: worked values, the optimum by search, the energy balance."""
+"""DC machine: worked values, the optimum by search, the energy balance."""
 
 from __future__ import annotations
 
@@ -8,16 +8,13 @@ from hypothesis import given
 from hypothesis import strategies as st
 from scipy.optimize import minimize_scalar
 
+from kitplanner.domain.gear import GearBox
 from kitplanner.domain.machine import (
     DcMachine,
-    GearBox,
     best_current_a,
     best_eta,
-    copper_ohm,
-    crank_torque_nm,
     emf_v,
     eta_at,
-    gear_train_eta,
     greatest_power_w,
     ke_from_kv,
     regulating_speed_rpm,
@@ -80,20 +77,6 @@ def test_efficiency_map() -> None:
         assert np.asarray(eta_at(MACHINE, rad_s_from_rpm(rpm), amps)) == pytest.approx(np.array(row), abs=6e-5)
 
 
-def test_warm_copper_after_iec_60028() -> None:
-    """Temperature coefficient 0.00393 per kelvin at 20 degC (IEC 60028)."""
-    assert copper_ohm(1.5, 80.0) == pytest.approx(1.854, rel=1e-3)
-    assert copper_ohm(1.5, 20.0) == 1.5
-
-
-def test_gear_trains_and_drag() -> None:
-    assert gear_train_eta((0.92, 0.92, 0.92)) == pytest.approx(0.7787, rel=1e-4)
-    assert crank_torque_nm(GearBox(40.0, 0.80), 0.0297) == pytest.approx(1.485, rel=1e-3)
-    with_drag = crank_torque_nm(GearBox(40.0, 0.80, 0.08), 0.0297)
-    assert with_drag == pytest.approx(1.565, rel=1e-3)
-    assert 40.0 * 0.0297 / with_drag == pytest.approx(0.7591, rel=1e-3)
-
-
 @given(st.floats(0.0, 2.0), st.floats(10.0, 500.0))
 def test_mechanical_watts_are_electrical_watts_and_losses(amps: float, speed: float) -> None:
     machine = DcMachine(0.05, 0.7, 0.4, 0.002, 1e-6)
@@ -115,9 +98,3 @@ def test_regulating_speed_is_the_inverse_of_the_terminal_volts(rpm: float, amps:
 def test_machines_without_meaning_are_refused(constants: tuple[float, ...]) -> None:
     with pytest.raises(ValueError, match="machine"):
         DcMachine(*constants)
-
-
-@pytest.mark.parametrize("constants", [(0.0, 1.0), (30.0, 0.0), (30.0, 1.1), (30.0, 0.9, -0.1)])
-def test_gears_without_meaning_are_refused(constants: tuple[float, ...]) -> None:
-    with pytest.raises(ValueError, match="A gear needs"):
-        GearBox(*constants)
