@@ -8,7 +8,7 @@ from __future__ import annotations
 
 import html
 
-from PySide6.QtCore import QEvent, QPointF, QRectF, QSize, Qt, Signal
+from PySide6.QtCore import QEvent, QPointF, QRect, QRectF, QSize, Qt, Signal
 from PySide6.QtGui import (
     QFontMetricsF,
     QHelpEvent,
@@ -22,6 +22,7 @@ from PySide6.QtGui import (
 from PySide6.QtWidgets import QSizePolicy, QToolTip, QWidget
 
 from kitplanner.planners.results import BenchPoint, EnergyFlow
+from kitplanner.ui import energy_line_access
 from kitplanner.ui.energy_line_chain import chain_picture
 from kitplanner.ui.energy_line_layout import Frame, Picture, Spot, day_picture
 from kitplanner.ui.energy_line_paint import mirrored, paint_picture
@@ -50,6 +51,7 @@ class EnergyLine(QWidget):
 
     def __init__(self, parent: QWidget | None = None) -> None:
         super().__init__(parent)
+        energy_line_access.install()
         self.setObjectName("energy_line")
         self.setFocusPolicy(Qt.FocusPolicy.StrongFocus)
         self.setMouseTracking(True)
@@ -90,6 +92,15 @@ class EnergyLine(QWidget):
     def sentences(self) -> tuple[str, ...]:
         """Return the sentence of every stage, in reading order."""
         return tuple(spot.sentence for spot in self._picture.stages)
+
+    @property
+    def stage(self) -> int:
+        """Number of the stage the keyboard stands on."""
+        return self._stage
+
+    def stage_rect(self, index: int) -> QRect:
+        """Return the box of a stage in the widget."""
+        return mirrored(self._picture.stages[index].box, self._mirror_width()).toAlignedRect()
 
     def move_to_stage(self, index: int) -> None:
         """Put the keyboard on a stage."""

@@ -40,6 +40,9 @@ def phone_row(plan: Plan, results: Results) -> tuple[Device, EffortRow] | None:
     return None
 
 
+_WIDE_PX = 820.0
+
+
 class VerdictSign(QWidget):
     """A sign that says the verdict by its shape: full ring, half ring, broken ring."""
 
@@ -121,6 +124,7 @@ class VerdictStrip(QFrame):
         self.detail = plain_label()
         self.phone = plain_label()
         self.medical = plain_label(size="small")
+        self._said = ("", "")
         self._row = QBoxLayout(QBoxLayout.Direction.LeftToRight)
         self._row.setSpacing(14)
         self._row.addWidget(self.sign, 0, Qt.AlignmentFlag.AlignVCenter)
@@ -152,8 +156,8 @@ class VerdictStrip(QFrame):
         self._line(self.evening, f"! {evening}" if evening else "")
         self._line(self.medical, medical_sentence(plan))
         self._line(self.phone, self._phone_words(plan, results))
-        said = (self.evening, self.verdict, self.detail, self.phone, self.medical)
-        self.setAccessibleDescription(" ".join(label.text() for label in said if label.text()))
+        said = (self.evening.text(), *self._said, self.phone.text(), self.medical.text())
+        self.setAccessibleDescription(" ".join(text for text in said if text))
 
     @staticmethod
     def _line(label: QWidget, text: str) -> None:
@@ -163,7 +167,8 @@ class VerdictStrip(QFrame):
     def _show(self, verdict: Verdict | None, title: str, detail: str) -> None:
         self.sign.set_verdict(verdict)
         self.verdict.setText(title)
-        self.detail.setText(detail)
+        self._said = (title, detail)
+        self._share_room()
 
     def _show_balance(self, plan: Plan, balance: BalanceResult) -> None:
         words = verdict_words(balance.verdict)
@@ -173,6 +178,22 @@ class VerdictStrip(QFrame):
             return
         detail = said.removeprefix(sentence(words).rstrip(".")).lstrip(": ")
         self._show(balance.verdict, sentence(words).rstrip("."), sentence(detail))
+
+    def _share_room(self) -> None:
+        """Stand the parts below each other where they would be squeezed, the verdict in line with its reason."""
+        wide = self.width() >= _WIDE_PX * text_scale()
+        direction = QBoxLayout.Direction.LeftToRight if wide else QBoxLayout.Direction.TopToBottom
+        if self._row.direction() != direction:
+            self._row.setDirection(direction)
+        self._row.setSpacing(14 if wide else 2)
+        self.sign.setVisible(wide)
+        self.verdict.setVisible(wide)
+        detail = self._said[1] if wide else f"{self._said[0]}: {self._said[1]}"
+        if self.detail.text() != detail:
+            self.detail.setText(detail)
+        for label in (self.detail, self.phone):
+            label.setProperty("type_size", "text" if wide else "small")
+            label.setFont(type_font("text" if wide else "small", bold=not wide and label is self.detail))
 
     def _phone_words(self, plan: Plan, results: Results | None) -> str:
         found = phone_row(plan, results) if results is not None else None
@@ -209,16 +230,12 @@ class VerdictStrip(QFrame):
             return
         if event.type() == QEvent.Type.FontChange:
             restyle_labels(self)
+            self._share_room()
         elif event.type() in (QEvent.Type.PaletteChange, QEvent.Type.StyleChange):
             self._colour()
 
     @guarded()
     def resizeEvent(self, event: QResizeEvent) -> None:
-        """Stand the parts below each other where they would be squeezed."""
+        """Share the new width."""
         super().resizeEvent(event)
-        need = 820 * type_font().pointSizeF() / 10.0
-        wide = self.width() >= need
-        direction = QBoxLayout.Direction.LeftToRight if wide else QBoxLayout.Direction.TopToBottom
-        if self._row.direction() != direction:
-            self._row.setDirection(direction)
-            self.sign.setVisible(wide)
+        self._share_room()

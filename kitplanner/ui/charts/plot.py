@@ -282,7 +282,7 @@ class Plot(pg.PlotWidget):
     def _px_per_x(self) -> float:
         """Return how many pixels one unit of the x axis takes."""
         (low, high), _y = self.viewRange()
-        return float(self.getViewBox().width()) / max(1e-9, high - low)
+        return float(self.getViewBox().width()) / max(1e-9, float(high) - float(low))
 
     def _marks(self, data: ChartData) -> None:
         """Draw lines across; words of neighbours keep apart: side by side, or one above and one below."""

@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from PySide6.QtCore import QSignalBlocker, Qt, Signal, Slot
-from PySide6.QtWidgets import QCheckBox, QComboBox, QGridLayout, QLabel, QPushButton, QSlider, QWidget
+from PySide6.QtWidgets import QCheckBox, QComboBox, QGridLayout, QLabel, QPushButton, QSizePolicy, QSlider, QWidget
 
 from kitplanner.plan.records import Plan
 from kitplanner.report.wording import plain
@@ -78,6 +78,7 @@ class BenchControls(QWidget):
         grid.addWidget(self.fixed, 3, 1)
         grid.addWidget(self.amps, 3, 2)
         grid.setColumnStretch(1, 1)
+        self.rpm.setSizePolicy(QSizePolicy.Policy.Preferred, QSizePolicy.Policy.Fixed)
 
     def asked_rpm(self) -> float | None:
         """Return the cadence asked for, None for the best one."""

@@ -88,7 +88,7 @@ class BenchPage(AnswerPage):
         column.addWidget(self.meter_words)
         column.addWidget(self.states)
         column.addStretch(1)
-        layout.addWidget(Columns([self.gauge, words], 290))
+        layout.addWidget(Columns([self.gauge, words], 290, align_top=True))
         layout.addWidget(plain_label(self.tr("Stage by stage, at this cadence"), bold=True))
         layout.addWidget(self.stages)
         frames = self.small_frames()

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from PySide6.QtCore import QSize
+from PySide6.QtCore import QSize, Qt
 from PySide6.QtGui import QResizeEvent
 from PySide6.QtWidgets import QBoxLayout, QSizePolicy, QWidget
 
@@ -17,7 +17,13 @@ class Columns(QWidget):
     """
 
     def __init__(
-        self, widgets: list[QWidget], least_px: int = 330, parent: QWidget | None = None, *, first: int = 1
+        self,
+        widgets: list[QWidget],
+        least_px: int = 330,
+        parent: QWidget | None = None,
+        *,
+        first: int = 1,
+        align_top: bool = False,
     ) -> None:
         super().__init__(parent)
         self._least_px = least_px
@@ -26,6 +32,8 @@ class Columns(QWidget):
         self._row.setSpacing(18)
         for place, widget in enumerate(widgets):
             self._row.addWidget(widget, first if place == 0 else 1)
+            if align_top:
+                self._row.setAlignment(widget, Qt.AlignmentFlag.AlignTop)
         self.setSizePolicy(QSizePolicy.Policy.Expanding, QSizePolicy.Policy.Preferred)
 
     @property

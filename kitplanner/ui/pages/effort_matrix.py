@@ -32,7 +32,7 @@ from kitplanner.ui.widgets.plain import as_tool_tip
 Index = QModelIndex | QPersistentModelIndex
 ROW_ROLE = Qt.ItemDataRole.UserRole + 1
 SHADE_ROLE = Qt.ItemDataRole.UserRole + 2
-SHADE_LOW_MIN, SHADE_HIGH_MIN = 30.0, 600.0
+SHADE_LOW_MIN, SHADE_HIGH_MIN = 60.0, 600.0
 
 
 @dataclass(frozen=True)
@@ -94,7 +94,7 @@ class EffortModel(QAbstractTableModel):
 
     @staticmethod
     def shade(row: EffortRow | None) -> float | None:
-        """Return where a cell's minutes lie between half an hour (1, yellow) and ten hours (0, dark blue), by ratio.
+        """Return where a cell's minutes lie between one hour (1, yellow) and ten hours (0, dark blue), by ratio.
 
         The scale is the same for every plan and person, so that two tables can be compared.
         """
