@@ -5,7 +5,7 @@ from __future__ import annotations
 from collections.abc import Mapping
 from typing import Any
 
-from PySide6.QtCore import Qt, Slot
+from PySide6.QtCore import QSize, Qt, Slot
 from PySide6.QtGui import QAction, QKeySequence
 from PySide6.QtWidgets import (
     QAbstractItemView,
@@ -13,7 +13,6 @@ from PySide6.QtWidgets import (
     QListWidget,
     QListWidgetItem,
     QMenu,
-    QPushButton,
     QVBoxLayout,
     QWidget,
 )
@@ -25,8 +24,10 @@ from kitplanner.session.field_text import translate
 from kitplanner.session.new_records import stage_word
 from kitplanner.ui.widgets.plain import plain_label
 from kitplanner.ui.widgets.record_form import RecordForm
+from kitplanner.ui.widgets.small_button import SmallButton
 
 _ROWS_SHOWN = 5
+_LEAST_ROW_PX = 24
 _ID_ROLE = Qt.ItemDataRole.UserRole
 
 
@@ -51,7 +52,7 @@ class NestedList(QWidget):
         self._forms: dict[str, RecordForm] = {}
         self._title = plain_label(title, bold=True)
         self._list = QListWidget(self)
-        self._buttons: dict[str, QPushButton] = {}
+        self._buttons: dict[str, SmallButton] = {}
         self._build(title)
         self._list.currentRowChanged.connect(self._on_current_row_changed)
         editing.draft_changed.connect(self._on_draft_changed)
@@ -60,7 +61,7 @@ class NestedList(QWidget):
         """The list of parts."""
         return self._list
 
-    def button(self, name: str) -> QPushButton:
+    def button(self, name: str) -> SmallButton:
         """One of the buttons: add, remove, up, down."""
         return self._buttons[name]
 
@@ -79,6 +80,7 @@ class NestedList(QWidget):
         for number, part in enumerate(parts, start=1):
             item = QListWidgetItem(self._item_text(number, part))
             item.setData(_ID_ROLE, part.id)
+            item.setSizeHint(QSize(0, self._row_height()))
             self._list.addItem(item)
         ids = [part.id for part in parts]
         self._list.setCurrentRow(ids.index(current) if current in ids else (0 if ids else -1))
@@ -95,6 +97,8 @@ class NestedList(QWidget):
 
     def _build(self, title: str) -> None:
         self._list.setAccessibleName(title)
+        self._list.setHorizontalScrollBarPolicy(Qt.ScrollBarPolicy.ScrollBarAlwaysOff)
+        self._list.setTextElideMode(Qt.TextElideMode.ElideRight)
         self._list.setSelectionMode(QAbstractItemView.SelectionMode.SingleSelection)
         self._title.setBuddy(self._list)
         row = QHBoxLayout()
@@ -105,10 +109,8 @@ class NestedList(QWidget):
             ("up", self.tr("Up"), self._on_up),
             ("down", self.tr("Down"), self._on_down),
         ):
-            button = QPushButton(text, self)
-            button.setMinimumHeight(26)
+            button = SmallButton(text, self)
             button.setAccessibleName(f"{text}: {title}")
-            button.setAutoDefault(False)
             self._buttons[name] = button
             row.addWidget(button)
             if name == "add" and len(self._kinds) > 1:
@@ -145,9 +147,11 @@ class NestedList(QWidget):
         return f"{text} ⚠" if wrong else text
 
     def _fit_height(self) -> None:
-        row = max(self._list.sizeHintForRow(0), self._list.fontMetrics().height() + 6)
         shown = min(max(len(self._parts), 2), _ROWS_SHOWN)
-        self._list.setFixedHeight(row * shown + 2 * self._list.frameWidth() + 4)
+        self._list.setFixedHeight(self._row_height() * shown + 2 * self._list.frameWidth() + 4)
+
+    def _row_height(self) -> int:
+        return max(_LEAST_ROW_PX, self._list.fontMetrics().height() + 8)
 
     def _current(self) -> Any:
         row = self._list.currentRow()

@@ -11,7 +11,6 @@ from PySide6.QtWidgets import (
     QAbstractItemView,
     QHBoxLayout,
     QHeaderView,
-    QPushButton,
     QScrollArea,
     QSplitter,
     QTableView,
@@ -32,6 +31,7 @@ from kitplanner.ui.models.records_model import RecordsModel
 from kitplanner.ui.panels.record_details import RecordDetails, make_details
 from kitplanner.ui.panels.sections import PLAN_SECTION, Section
 from kitplanner.ui.widgets.plain import colour_label, plain_label
+from kitplanner.ui.widgets.small_button import SmallButton
 
 _MEASURED_ROWS = 60
 _LEAST_TABLE_ROWS = 4
@@ -57,7 +57,7 @@ class SectionPanel(QWidget):
         self._may_build = False
         self._cautions: tuple[ShownCaution, ...] = ()
         self._details: RecordDetails | None = None
-        self._buttons: dict[str, QPushButton] = {}
+        self._buttons: dict[str, SmallButton] = {}
         self._layout = QVBoxLayout(self)
         self._layout.setContentsMargins(0, 0, 0, 0)
         self._layout.setSpacing(4)
@@ -92,7 +92,7 @@ class SectionPanel(QWidget):
             self._scroll.setWidget(self._details)
         return self._details
 
-    def button(self, name: str) -> QPushButton:
+    def button(self, name: str) -> SmallButton:
         """One of the buttons: add, several, duplicate, remove, up, down."""
         return self._buttons[name]
 
@@ -228,9 +228,7 @@ class SectionPanel(QWidget):
             ("up", "↑", self.tr("Move up: {what}"), self._on_up),
             ("down", "↓", self.tr("Move down: {what}"), self._on_down),
         ):
-            button = QPushButton(text, self)
-            button.setMinimumHeight(26)
-            button.setAutoDefault(False)
+            button = SmallButton(text, self)
             button.setAccessibleName(help_.format(what=word))
             button.setToolTip(help_.format(what=word))
             button.clicked.connect(slot)
@@ -243,9 +241,6 @@ class SectionPanel(QWidget):
         if self.table is not None:
             height = max(24, self.table.fontMetrics().height() + 8)
             self.table.verticalHeader().setDefaultSectionSize(height)
-            for button in self._buttons.values():
-                words = button.fontMetrics().horizontalAdvance(button.text())
-                button.setFixedWidth(max(28, words + 2 * button.fontMetrics().averageCharWidth() + 6))
             self.table.setMinimumHeight(height * _LEAST_TABLE_ROWS)
             colour_label(self._hint, "muted")
 

@@ -16,6 +16,7 @@ from kitplanner.plan.records import Plan
 from kitplanner.session.editing import Editing
 from kitplanner.session.field_text import translate
 from kitplanner.session.gates import Gates
+from kitplanner.ui.guard import guarded
 from kitplanner.ui.panels.problem_list import ProblemList, sentence_of
 from kitplanner.ui.panels.section_panel import SectionPanel
 from kitplanner.ui.panels.section_switch import SectionSwitch
@@ -137,7 +138,7 @@ class SectionsPane(QWidget):
         layout.setContentsMargins(0, 0, 0, 0)
         layout.setSpacing(8)
         layout.addWidget(self.switch.list)
-        layout.addWidget(scrolling(column), 1)
+        layout.addWidget(_scrolling(column), 1)
 
     def _panel_of(self, key: str) -> SectionPanel:
         if key not in self._panels:
@@ -193,15 +194,24 @@ class SectionsPane(QWidget):
         return str(len(records)) if records else ""
 
 
-def scrolling(column: QVBoxLayout) -> QScrollArea:
+class _Column(QWidget):
+    """A column that asks a scroll area for its least height only; its tables and forms scroll by themselves."""
+
+    @guarded(0)
+    def heightForWidth(self, width: int) -> int:
+        """Return the least height at a width, all texts in full."""
+        layout = self.layout()
+        return 0 if layout is None else layout.minimumHeightForWidth(width)
+
+
+def _scrolling(column: QVBoxLayout) -> QScrollArea:
     """Put a column into an area that scrolls when a low window or large text leaves too little room."""
-    content = QWidget()
+    content = _Column()
     content.setLayout(column)
     area = QScrollArea()
     area.setWidgetResizable(True)
     area.setFrameShape(QScrollArea.Shape.NoFrame)
     area.setFocusPolicy(Qt.FocusPolicy.NoFocus)
-    area.setHorizontalScrollBarPolicy(Qt.ScrollBarPolicy.ScrollBarAsNeeded)
     area.setMinimumSize(280, 160)
     area.setWidget(content)
     return area
