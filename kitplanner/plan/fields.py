@@ -91,7 +91,9 @@ NESTED: Mapping[str, tuple[str, ...]] = MappingProxyType(
     {
         "plan": ("format", "version", "conditions", "rota", *records.SECTIONS),
         "conditions": ("temperatures",),
-        "station": ("machine", "gear", "stages", "test_load"),
+        "person": ("absences",),
+        "station": ("machine", "gear", "stages", "test_load", "outages"),
+        "rota": ("bouts", "charging"),
     }
 )
 

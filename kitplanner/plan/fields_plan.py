@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from kitplanner.plan.fields_spec import (
+    OWN_VALUE,
     QT_TRANSLATE_NOOP,
     FieldSpec,
     choice,
@@ -17,6 +18,7 @@ from kitplanner.plan.fields_spec import (
 
 _PLAN = QT_TRANSLATE_NOOP("Fields", "Plan")
 _SIZE = QT_TRANSLATE_NOOP("Fields", "Length and margin")
+_ROTA = QT_TRANSLATE_NOOP("Fields", "Rota")
 _AIR = QT_TRANSLATE_NOOP("Fields", "Air")
 _RULES = QT_TRANSLATE_NOOP("Fields", "Rules")
 
@@ -69,6 +71,28 @@ PLAN = (
         (0, 2_147_483_647),
         QT_TRANSLATE_NOOP("Fields", "Any whole number; the same seed gives the same simulated futures."),
         heading=_SIZE,
+    ),
+    choice(
+        "cut",
+        QT_TRANSLATE_NOOP("Fields", "If it does not fit"),
+        (
+            ("strict", QT_TRANSLATE_NOOP("Fields", "serve priority 1 first, then 2 and so on")),
+            ("shared", QT_TRANSLATE_NOOP("Fields", "give every priority the same part")),
+        ),
+        QT_TRANSLATE_NOOP("Fields", "Who goes short when there is too little: the last priorities, or all alike."),
+        mark="own",
+        heading=_ROTA,
+    ),
+    whole(
+        "grid_min",
+        QT_TRANSLATE_NOOP("Fields", "Rota grid"),
+        QT_TRANSLATE_NOOP("Fields", "min"),
+        (5, 60),
+        QT_TRANSLATE_NOOP("Fields", "Bouts start and end on whole steps of this length."),
+        optional=True,
+        default=QT_TRANSLATE_NOOP("Fields", "greatest step that all bouts and station hours fit"),
+        source=OWN_VALUE,
+        heading=_ROTA,
     ),
 )
 

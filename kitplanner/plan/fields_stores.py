@@ -240,4 +240,54 @@ MEDICAL_NEED = (
 
 PACK_ITEM = (name(QT_TRANSLATE_NOOP("Fields", "What could be packed.")),)
 LOG_ENTRY = (name(QT_TRANSLATE_NOOP("Fields", "What this line of the log is about.")),)
-ROTA = (name(QT_TRANSLATE_NOOP("Fields", "What the adopted rota is called.")),)
+ROTA = (
+    name(QT_TRANSLATE_NOOP("Fields", "What the adopted rota is called.")),
+    whole(
+        "edition",
+        QT_TRANSLATE_NOOP("Fields", "Edition"),
+        "",
+        (1, 9999),
+        QT_TRANSLATE_NOOP("Fields", "Counts up with every rota that is posted; stands on the wall rota."),
+        mark="own",
+    ),
+    choice(
+        "state",
+        QT_TRANSLATE_NOOP("Fields", "State"),
+        (("draft", QT_TRANSLATE_NOOP("Fields", "draft")), ("posted", QT_TRANSLATE_NOOP("Fields", "posted"))),
+        QT_TRANSLATE_NOOP("Fields", "A posted rota hangs on the wall; a draft does not."),
+        mark="own",
+    ),
+    whole(
+        "valid_until_day",
+        QT_TRANSLATE_NOOP("Fields", "Valid until day"),
+        "",
+        (1, 366),
+        QT_TRANSLATE_NOOP("Fields", "The last day of the plan for which this rota holds."),
+        optional=True,
+        default=QT_TRANSLATE_NOOP("Fields", "the last day"),
+        mark="own",
+    ),
+    whole(
+        "slot_min",
+        QT_TRANSLATE_NOOP("Fields", "Grid"),
+        QT_TRANSLATE_NOOP("Fields", "min"),
+        (5, 60),
+        QT_TRANSLATE_NOOP("Fields", "Bouts start and end on whole steps of this length."),
+        source=OWN_VALUE,
+    ),
+    text(
+        "solver",
+        QT_TRANSLATE_NOOP("Fields", "Found by"),
+        QT_TRANSLATE_NOOP("Fields", "Which version of the search found this rota."),
+        mark="default",
+    ),
+    whole(
+        "work",
+        QT_TRANSLATE_NOOP("Fields", "Work"),
+        "",
+        (0, 1_000_000_000),
+        QT_TRANSLATE_NOOP("Fields", "How many steps of the search were allowed."),
+        optional=True,
+        default=QT_TRANSLATE_NOOP("Fields", "the usual work"),
+    ),
+)

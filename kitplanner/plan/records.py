@@ -29,6 +29,8 @@ DescribedBy = Literal["measured", "label", "parts"]
 Chemistry = Literal["li_ion", "lfp", "nimh", "lead_acid", "supercapacitor", "alkaline"]
 UseBy = Literal["power_hours", "wh_per_day", "percent", "times"]
 BlockKind = Literal["quiet", "meal", "school", "prayer", "duty"]
+Cut = Literal["strict", "shared"]
+RotaState = Literal["draft", "posted"]
 Mark = Literal["measured", "default", "guidance", "guess", "own", "demo"]
 
 
@@ -49,6 +51,15 @@ class Window(Record, frozen=True):
 
     start: ClockTime
     end: ClockTime
+
+
+class Spell(Record, frozen=True):
+    """Part of one day of the plan in which somebody is away or `count` units are out of service."""
+
+    day: int
+    start: ClockTime = "00:00"
+    end: ClockTime = "24:00"
+    count: int = 1
 
 
 class TemperaturePart(Record, frozen=True):
@@ -120,6 +131,8 @@ class Person(Record, frozen=True):
     role: str = ""
     may_watch: bool | None = None
     watch_hours: tuple[Window, ...] = ()
+    days_off: tuple[int, ...] = ()
+    absences: tuple[Spell, ...] = ()
     notes: dict[str, Note] = {}
 
 
@@ -255,6 +268,7 @@ class Station(Record, frozen=True):
     needs_watcher: bool = False
     guarded: bool = True
     in_service: bool = True
+    outages: tuple[Spell, ...] = ()
     feeds: tuple[str, ...] = ()
     connector: str = ""
     described_by: DescribedBy = "measured"
@@ -380,11 +394,46 @@ class LogEntry(Record, frozen=True):
     notes: dict[str, Note] = {}
 
 
+class Bout(Record, frozen=True):
+    """One unbroken stretch of turning in an adopted rota; a locked one stays where it is."""
+
+    id: str
+    day: int
+    start: ClockTime
+    end: ClockTime
+    station: str
+    person: str
+    unit: int = 1
+    watcher: str | None = None
+    locked: bool = False
+
+
+class ChargeSpell(Record, frozen=True):
+    """Units of one device line on charge in an adopted rota; energy at the outlet."""
+
+    id: str
+    day: int
+    start: ClockTime
+    end: ClockTime
+    device: str
+    count: int = 1
+    first_ticket: int = 1
+    energy_wh: float = 0.0
+
+
 class Rota(Record, frozen=True):
-    """An adopted rota."""
+    """An adopted rota: saved as it was found, never computed again."""
 
     id: str
     name: str = ""
+    edition: int = 1
+    state: RotaState = "draft"
+    valid_until_day: int | None = None
+    slot_min: int = 5
+    solver: str = ""
+    work: int | None = None
+    bouts: tuple[Bout, ...] = ()
+    charging: tuple[ChargeSpell, ...] = ()
     notes: dict[str, Note] = {}
 
 
@@ -399,6 +448,8 @@ class Plan(Record, frozen=True):
     days: int = 3
     margin_fraction: float = 0.15
     seed: int = 1
+    cut: Cut = "strict"
+    grid_min: int | None = None
     conditions: Conditions = Conditions()
     blocks: tuple[Block, ...] = ()
     groups: tuple[Group, ...] = ()

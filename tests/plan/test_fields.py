@@ -10,6 +10,7 @@ import typing
 import pytest
 from msgspec import NODEFAULT, structs
 
+from kitplanner.domain.age_limits import limits_for_age
 from kitplanner.plan import records
 from kitplanner.plan.fields import (
     FIELDS,
@@ -78,7 +79,14 @@ def test_every_key_but_ids_notes_and_nested_records_has_exactly_one_spec(kind):
 
 def test_every_record_type_is_named():
     made = {one for one in vars(records).values() if isinstance(one, type) and issubclass(one, records.Record)}
-    assert made - set(RECORD_TYPES.values()) == {records.Record, records.Note, records.Window}
+    assert made - set(RECORD_TYPES.values()) == {
+        records.Record,
+        records.Note,
+        records.Window,
+        records.Spell,
+        records.Bout,
+        records.ChargeSpell,
+    }
     assert set(FIELDS) == set(RECORD_TYPES)
     assert tuple(SECTION_KINDS) == records.SECTIONS
     assert {RECORD_TYPES[kind] for kind in STAGE_KINDS} == set(typing.get_args(records.Stage))
@@ -203,3 +211,9 @@ def test_specs_cannot_be_changed():
     assert isinstance(FIELDS["person"][0], FieldSpec)
     with pytest.raises(TypeError):
         FIELDS["person"] = ()
+
+
+@pytest.mark.parametrize("key", ["bout_min", "rest_min", "cap_min"])
+def test_age_limits_in_words_are_those_of_the_age_rules(key):
+    words = {int(digits) for digits in re.findall(r"\d+", field("person", key).default)}
+    assert {getattr(limits_for_age(age), key) for age in (12, 14, 17, 40, 62, 70)} <= words

@@ -1,0 +1,89 @@
+"""Frozen records of a rota: bouts, objectives with their proven bounds, broken rules, the whole answer.
+
+Levels: S at the station's output, O at the outlet. Times are minutes of a day, 0 to 1440; nothing crosses midnight.
+"""
+
+from __future__ import annotations
+
+from typing import Literal
+
+from msgspec import Struct
+
+ObjectiveName = Literal["unmet", "margin", "excess", "greatest_load", "spread", "unpopular", "handovers", "change"]
+
+
+class RotaBout(Struct, frozen=True, kw_only=True):
+    """One unbroken stretch of turning by one person on one unit of a station; energy at S."""
+
+    day: int
+    start_min: int
+    end_min: int
+    station: str
+    unit: int
+    person: str
+    watcher: str | None = None
+    output_wh: float = 0.0
+    locked: bool = False
+
+
+class RotaCharge(Struct, frozen=True, kw_only=True):
+    """`count` units of a device line on charge, tickets from `first_ticket`; energy at O."""
+
+    day: int
+    start_min: int
+    end_min: int
+    device: str
+    count: int
+    first_ticket: int
+    energy_wh: float
+    at_station: bool = False
+
+
+class UnmetUse(Struct, frozen=True, kw_only=True):
+    """Use that cannot be served: which device, from when, how much at O, and why."""
+
+    device: str
+    priority: int
+    day: int
+    start_min: int
+    wh: float
+    why: str
+
+
+class RotaObjective(Struct, frozen=True, kw_only=True):
+    """One level of the order of aims with its proven bound.
+
+    `relaxed`: the bound leaves out watchers and changeover. `gap` is value less bound in the same unit.
+    """
+
+    name: ObjectiveName
+    value: float
+    unit: str
+    bound: float
+    gap: float
+    proved: bool
+    relaxed: bool
+    words: str
+
+
+class RotaSolution(Struct, frozen=True, kw_only=True):
+    """What the solver found: bouts, aims, and how the search went; energy made at S."""
+
+    slot_min: int
+    bouts: tuple[RotaBout, ...]
+    objectives: tuple[RotaObjective, ...]
+    made_wh: float
+    made_bound_wh: float
+    steps: int
+    seconds: float
+    cut_off: bool
+
+
+class RotaProgress(Struct, frozen=True, kw_only=True):
+    """A moment of the search: seconds and steps so far, the value and bound of the level at work."""
+
+    seconds: float
+    steps: int
+    stage: str
+    value: float
+    bound: float

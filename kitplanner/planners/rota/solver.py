@@ -1,0 +1,118 @@
+"""From a plan to a rota: bounds, a first legal rota at once, then better ones until work or time is used up."""
+
+from __future__ import annotations
+
+import time
+from collections.abc import Callable
+from dataclasses import dataclass
+from typing import Protocol
+
+from kitplanner.plan.records import Plan
+from kitplanner.planners.rota.bounds import Bounds, bounds
+from kitplanner.planners.rota.draft import Draft
+from kitplanner.planners.rota.improve import Improver
+from kitplanner.planners.rota.objectives import objectives_of
+from kitplanner.planners.rota.problem import RotaProblem, build
+from kitplanner.planners.rota.result import RotaBout, RotaProgress, RotaSolution
+from kitplanner.planners.rota.search import Search
+from kitplanner.planners.rota.start import first_rota
+from kitplanner.planners.rota.value import excess_step_wh, value_of
+
+# Enough for every pass on 60 people and a week; the search ends by itself when nothing is left to improve.
+DEFAULT_WORK = 20_000
+
+
+def _never() -> bool:
+    return False
+
+
+def _silent(_: RotaProgress) -> None:
+    return None
+
+
+@dataclass(frozen=True, slots=True)
+class Effort:
+    """How much may be spent, and whom to ask and tell: steps, seconds, a stop question, a listener."""
+
+    work: int = DEFAULT_WORK
+    seconds: float = float("inf")
+    cancelled: Callable[[], bool] = _never
+    progress: Callable[[RotaProgress], None] = _silent
+
+
+class RotaSolver(Protocol):
+    """Anything that finds a rota."""
+
+    def solve(self, plan: Plan, effort: Effort) -> RotaSolution:
+        """Return the best rota found; legal in every case, empty where nothing can be turned."""
+        ...
+
+
+class WalkAndImprove:
+    """The solver: coarse linear rota for bounds and fair shares, a walk for names, passes for the rest."""
+
+    def solve(self, plan: Plan, effort: Effort) -> RotaSolution:
+        """Return the best rota found."""
+        began = time.monotonic()
+        problem = build(plan)
+        limits = bounds(problem)
+        effort.progress(RotaProgress(seconds=time.monotonic() - began, steps=0, stage="bounds", value=0.0, bound=0.0))
+        draft = best_start(problem, limits)
+        search = Search(
+            draft,
+            excess_step_wh(problem),
+            effort.work,
+            max(0.0, effort.seconds - (time.monotonic() - began)),
+            effort.cancelled,
+            effort.progress,
+        )
+        Improver(search, limits.greatest_load).run()
+        return solution_of(problem, limits, search, time.monotonic() - began)
+
+
+def best_start(problem: RotaProblem, limits: Bounds) -> Draft:
+    """Return the best of a few walks that start energy earlier or later before it is due."""
+    longest = int(problem.bout.max(initial=1))
+    step = excess_step_wh(problem)
+    walks = [first_rota(problem, limits, longest, spaced=spaced) for spaced in (False, True)]
+    return min(walks, key=lambda draft: value_of(draft, step))
+
+
+def solution_of(problem: RotaProblem, limits: Bounds, search: Search, seconds: float) -> RotaSolution:
+    """Return a finished search as frozen records."""
+    draft = search.draft
+    outlet = problem.outlet_fraction
+    made_s = sum(draft.bout_wh(key) / float(outlet[bout.station]) for key, bout in draft.bouts.items())
+    return RotaSolution(
+        slot_min=problem.slot_min,
+        bouts=bouts_of(draft),
+        objectives=objectives_of(problem, limits, search),
+        made_wh=made_s,
+        made_bound_wh=limits.made_wh / float(outlet.max(initial=1.0)) if len(outlet) else 0.0,
+        steps=search.steps,
+        seconds=seconds,
+        cut_off=search.cut_off,
+    )
+
+
+def bouts_of(draft: Draft) -> tuple[RotaBout, ...]:
+    """Return the bouts of a draft by day, time, station and unit."""
+    problem = draft.problem
+    rows = []
+    for key, bout in draft.bouts.items():
+        day, first = divmod(bout.start, problem.per_day)
+        rows.append(
+            RotaBout(
+                day=day + 1,
+                start_min=first * problem.slot_min,
+                end_min=(first + bout.length) * problem.slot_min,
+                station=problem.stations[bout.station],
+                unit=bout.unit + 1,
+                person=problem.people[bout.person],
+                watcher=problem.people[bout.watcher] if bout.watcher >= 0 else None,
+                output_wh=draft.bout_wh(key) / float(problem.outlet_fraction[bout.station]),
+                locked=bout.locked,
+            )
+        )
+    rows.sort(key=lambda row: (row.day, row.start_min, problem.stations.index(row.station), row.unit))
+    return tuple(rows)
