@@ -25,7 +25,9 @@ from kitplanner.domain.units import rad_s_from_rpm
 from kitplanner.domain.usb_sink import ENTRY_TEST_A, ENTRY_TEST_V, UsbSink
 
 Question = npt.ArrayLike
-_STEPS = 16
+_STEPS = 10
+# Currents of the walk as shares of the short-circuit current.
+_PACE = (np.arange(_STEPS + 1) / _STEPS) ** 2
 # Points per batch, so that its arrays stay in the processor's second-level cache.
 _BATCH = 8192
 _BEHIND_PEAK = 1e-7
@@ -317,33 +319,36 @@ def _walk(chain: Chain, limits: _Limits) -> _Walk:
     top = limits.top_a
     x = np.zeros_like(top)
     plug_v, plug_a = march(chain, limits.net_v, x)
-    f = _worst(limits.terms(plug_v, plug_a, x))
-    at_once: BoolArray = f >= 0.0
-    low, high = x.copy(), x.copy()
-    f_low, f_high = f.copy(), f.copy()
-    fallen: BoolArray = np.zeros(top.shape, np.bool_)
+    excesses = [_worst(limits.terms(plug_v, plug_a, x))]
+    at_once: BoolArray = excesses[0] >= 0.0
     is_open = ~at_once
-    before_x, before_f = x, f
+    fallen: BoolArray = np.zeros(top.shape, np.bool_)
+    ended_at: IntArray = np.zeros(top.shape, np.intp)
     for step in range(1, _STEPS + 1):
         if not is_open.any():
             break
-        last_x, last_f, last_a = x, f, plug_a
-        x = top * (step / _STEPS) ** 2
+        last_a = plug_a
+        x = top * _PACE[step]
         plug_v, plug_a = march(chain, limits.net_v, x)
-        f = _worst(limits.terms(plug_v, plug_a, x))
+        excess = _worst(limits.terms(plug_v, plug_a, x))
+        excesses.append(excess)
         falls = is_open & (plug_a < last_a)
-        meets = is_open & (f >= 0.0) & ~falls
-        low, f_low = (
-            np.where(meets, last_x, np.where(falls, before_x, low)),
-            np.where(meets, last_f, np.where(falls, before_f, f_low)),
-        )
-        ends = meets | falls
-        high, f_high = np.where(ends, x, high), np.where(ends, f, f_high)
+        ends = falls | (is_open & (excess >= 0.0))
         fallen |= falls
+        np.copyto(ended_at, step, where=ends)
         is_open &= ~ends
-        before_x, before_f = last_x, last_f
-    # What is still open has neither met a limit nor a peak: nothing but the short circuit ends it.
-    return _Walk(np.where(is_open, top, low), np.where(is_open, top, high), f_low, f_high, at_once | is_open, fallen)
+    # A peak lies up to two steps back. What is still open has met neither limit nor peak: the short circuit ends it.
+    began_at = np.maximum(ended_at - np.where(fallen, 2, 1), 0)
+    table, points = np.stack(excesses), np.arange(top.size)
+    low, high = top * _PACE[began_at], top * _PACE[ended_at]
+    return _Walk(
+        np.where(is_open, top, low),
+        np.where(is_open, top, high),
+        table[began_at, points],
+        table[ended_at, points],
+        at_once | is_open,
+        fallen,
+    )
 
 
 def _peak(chain: Chain, limits: _Limits, low: FloatArray, high: FloatArray) -> FloatArray:

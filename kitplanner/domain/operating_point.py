@@ -74,9 +74,6 @@ class OperatingPoint:
     plug_v: FloatArray
     plug_a: FloatArray
     plug_w: FloatArray
-    regulator_in_v: FloatArray
-    regulator_w: FloatArray
-    junction_degc: FloatArray
     binding: IntArray
     failed: BoolArray
     charges: BoolArray
@@ -102,6 +99,25 @@ class OperatingPoint:
     def stage_names(self) -> tuple[str, ...]:
         """Names of all steps."""
         return self.chain.stage_names
+
+    @cached_property
+    def _regulator(self) -> tuple[FloatArray, FloatArray, FloatArray]:
+        return _regulator(self.chain, self.electric[1:], np.full(self.rpm.shape, np.nan))
+
+    @property
+    def regulator_in_v(self) -> FloatArray:
+        """Volts into the first stage that sets a voltage [V]."""
+        return self._regulator[0]
+
+    @property
+    def regulator_w(self) -> FloatArray:
+        """Heat of that stage; of the die alone where it is linear [W]."""
+        return self._regulator[1]
+
+    @property
+    def junction_degc(self) -> FloatArray:
+        """Junction temperature of the hottest linear regulator [degC]."""
+        return self._regulator[2]
 
     @cached_property
     def _watts(self) -> tuple[tuple[FloatArray, FloatArray, FloatArray], ...]:
@@ -210,7 +226,6 @@ def describe(chain: Chain, solution: Solution, sink: UsbSink) -> OperatingPoint:
         electric = tuple(Flow(*(_array(values) + hidden for values in flow)) for flow in electric)
         torque, plug_w = torque + hidden, plug_w + hidden
         p1 = p1 + hidden
-    meter_v, regulator_w, junction = _regulator(chain, electric[1:], np.full(rpm.shape, np.nan))
     return OperatingPoint(
         rpm=rpm,
         human_w=p0 + p1 * current,
@@ -220,9 +235,6 @@ def describe(chain: Chain, solution: Solution, sink: UsbSink) -> OperatingPoint:
         plug_v=_array(electric[-1].out_v),
         plug_a=_array(electric[-1].out_a),
         plug_w=plug_w,
-        regulator_in_v=meter_v,
-        regulator_w=regulator_w,
-        junction_degc=junction,
         binding=solution.binding,
         failed=failed,
         charges=~(failed | flags["not_charging"]),
