@@ -100,8 +100,6 @@ def made_sound(record: Any) -> Any:
         changes = sound_station(record)
     elif kind == "Device":
         changes = sound_device(record)
-    elif kind == "CableStage" and record.awg is None and record.area_mm2 is None and record.loop_ohm is None:
-        changes = {"loop_ohm": 0.25}
     elif kind == "Person" and record.watts_by == "self_test":
         changes = {"age": 40}
     return structs.replace(record, **changes)

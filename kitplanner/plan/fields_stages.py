@@ -294,7 +294,7 @@ CABLE = (
         symbol="R",
         decimals=4,
         optional=True,
-        default=QT_TRANSLATE_NOOP("Fields", "from wire size and length"),
+        default=QT_TRANSLATE_NOOP("Fields", "from wire size and length, else 0.25"),
         mark="measured",
         column=True,
     ),
