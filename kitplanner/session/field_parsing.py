@@ -20,6 +20,7 @@ _NO_NAMES: Names = {}
 _CLOCK = re.compile(r"^(\d{1,2})(?:[:.h](\d{2}))?$")
 _RANGE_SIGN = re.compile(r"\s*(?:-|–|—|to|until)\s*")
 _NUMBER = re.compile(r"^([-+−]?\s*[\d.,\s']*\d[\d.,]*(?:[eE][-+]?\d+)?|[-+−]?[.,]\d+)\s*(.*)$")
+_COMMA_OF_THOUSANDS = re.compile(r"^[-+]?[1-9]\d{0,2},\d{3}$")
 _MAY_BE_EMPTY = ("text", "windows", "days", "refs", "choice")
 _YES = ("yes", "y", "1", "true", "x")
 _NO = ("no", "n", "0", "false", "-")
@@ -55,6 +56,9 @@ def _refusal(spec: FieldSpec, reason: str, remedy: str, text: str = "") -> Field
 
 def _read_numeric(spec: FieldSpec, text: str, _names: Names) -> int | float:
     found = _NUMBER.match(text)
+    if found is not None and _is_ambiguous(found.group(1)):
+        remedy = translate("FieldText", "Leave out the comma, or write a point for decimals.")
+        raise _refusal(spec, translate("FieldText", "could be read in two ways: {text}"), remedy, text)
     number = None if found is None else _read_digits(found.group(1))
     if found is None or number is None or not math.isfinite(number):
         raise _refusal(spec, translate("FieldText", "is not a number: {text}"), range_words(spec), text)
@@ -63,6 +67,12 @@ def _read_numeric(spec: FieldSpec, text: str, _names: Names) -> int | float:
         raise _refusal(spec, translate("FieldText", "must be a whole number, not {text}"), range_words(spec), text)
     _check_range(spec, value, text)
     return round(value) if spec.kind == "integer" else value
+
+
+def _is_ambiguous(text: str) -> bool:
+    """Tell whether a comma may part thousands or decimals, and the user's locale does not say which."""
+    plain = text.strip()
+    return bool(_COMMA_OF_THOUSANDS.match(plain)) and not QLocale().toDouble(plain)[1]
 
 
 def _read_digits(text: str) -> float | None:

@@ -44,13 +44,13 @@ def unit_of(spec: FieldSpec) -> str:
 
 def number_text(spec: FieldSpec, value: float, locale: QLocale | None = None, *, exact: bool = True) -> str:
     """Write a number at display scale; `exact` adds digits where the field's decimals would lose some."""
-    shown = round(float(value) * spec.display_scale, 12)
+    shown = float(f"{float(value) * spec.display_scale:.15g}")
     if not math.isfinite(shown):
         return str(shown)
     decimals = 0 if spec.kind == "integer" else spec.decimals
     text = f"{shown:.{decimals}f}"
-    if exact and not math.isclose(float(text), shown, rel_tol=1e-9, abs_tol=1e-15):
-        text = f"{shown:.12g}"
+    if exact and not math.isclose(float(text), shown, rel_tol=1e-12):
+        text = f"{shown:.15g}"
     elif not exact and shown != 0 and float(text) == 0:
         text = f"{shown:.2g}"
     if "." in text and "e" not in text:

@@ -110,6 +110,7 @@ class MainWindow(QMainWindow):
         document.plan_changed.connect(self._on_plan_changed)
         document.file_changed.connect(self._on_file_changed)
         document.edit_refused.connect(self._on_edit_refused)
+        self.autosave.failed.connect(self._on_edit_refused)
         document.stack.cleanChanged.connect(self._on_clean_changed)
         self.recompute.results_changed.connect(self._on_results_changed)
         self.energy_line.section_requested.connect(self.sections.show_section)

@@ -160,7 +160,9 @@ def test_a_lock_of_a_dead_process_is_taken_over(qapp, tmp_path):
         "print(FileLock(Path(sys.argv[1])).acquire()); sys.stdout.flush(); "
         "lock = FileLock(Path(sys.argv[1])); os._exit(0 if lock.acquire() is None else 9)"
     )
-    run = subprocess.run([sys.executable, "-c", script, str(path)], capture_output=True, text=True, timeout=60, check=False)
+    run = subprocess.run(
+        [sys.executable, "-c", script, str(path)], capture_output=True, text=True, timeout=60, check=False
+    )
     assert run.returncode == 0, run.stderr
     assert any(name.startswith(".~lock.") for name in os.listdir(tmp_path))
     lock = FileLock(path)
