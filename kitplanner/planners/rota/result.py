@@ -7,7 +7,11 @@ from __future__ import annotations
 
 from typing import Literal
 
+import numpy as np
+import numpy.typing as npt
 from msgspec import Struct
+
+FloatArray = npt.NDArray[np.float64]
 
 ObjectiveName = Literal["unmet", "margin", "excess", "greatest_load", "spread", "unpopular", "handovers", "change"]
 
@@ -87,3 +91,40 @@ class RotaProgress(Struct, frozen=True, kw_only=True):
     stage: str
     value: float
     bound: float
+
+
+class Violation(Struct, frozen=True, kw_only=True):
+    """One broken rule: which, in words, and where; `start_min` None where it concerns a whole day or the plan."""
+
+    rule: str
+    text: str
+    day: int
+    start_min: int | None = None
+    person: str | None = None
+    station: str | None = None
+
+
+class StoreLevels(Struct, frozen=True, kw_only=True):
+    """Levels over the horizon on the rota's grid, entry t at the start of slot t; arrays of shape (slots + 1,).
+
+    `stores_wh` and `devices_wh` map ids to energy above the floor: at O for stores, at D for device lines.
+    `pooled_wh` is the sum of the stores, `due_wh` what must still have come out of them by then, at O.
+    """
+
+    slot_min: int
+    stores_wh: dict[str, FloatArray]
+    devices_wh: dict[str, FloatArray]
+    pooled_wh: FloatArray
+    due_wh: FloatArray
+
+
+class RotaAnswer(Struct, frozen=True, kw_only=True):
+    """A whole rota: bouts, charging table, what stays unmet and why, levels, and the judge's findings."""
+
+    solution: RotaSolution
+    charging: tuple[RotaCharge, ...]
+    unmet: tuple[UnmetUse, ...]
+    unmet_wh: float
+    unmet_margin_wh: float
+    levels: StoreLevels
+    violations: tuple[Violation, ...]
