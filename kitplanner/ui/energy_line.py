@@ -6,12 +6,9 @@ Signals: `section_requested(str)` people, stations, stores or devices; `station_
 
 from __future__ import annotations
 
-import html
-
-from PySide6.QtCore import QEvent, QPointF, QRect, QRectF, QSize, Qt, Signal
+from PySide6.QtCore import QEvent, QPointF, QSize, Qt, Signal
 from PySide6.QtGui import (
     QFontMetricsF,
-    QHelpEvent,
     QKeyEvent,
     QMouseEvent,
     QPainter,
@@ -19,15 +16,17 @@ from PySide6.QtGui import (
     QPen,
     QResizeEvent,
 )
-from PySide6.QtWidgets import QSizePolicy, QToolTip, QWidget
+from PySide6.QtWidgets import QSizePolicy, QWidget
 
 from kitplanner.planners.results import BenchPoint, EnergyFlow
 from kitplanner.ui import energy_line_access
 from kitplanner.ui.energy_line_chain import chain_picture
-from kitplanner.ui.energy_line_layout import Frame, Picture, Spot, day_picture
-from kitplanner.ui.energy_line_paint import mirrored, paint_picture
+from kitplanner.ui.energy_line_layout import day_picture
+from kitplanner.ui.energy_line_paint import paint_picture
+from kitplanner.ui.energy_line_picture import Frame, Picture, Spot
 from kitplanner.ui.energy_line_text import empty_text
 from kitplanner.ui.guard import guarded
+from kitplanner.ui.spotted_widget import SpottedWidget
 from kitplanner.ui.theme import colours, type_font
 
 _STEPS = {Qt.Key.Key_Right: 1, Qt.Key.Key_Left: -1}
@@ -40,7 +39,7 @@ def measure(text: str, size: str, bold: bool) -> float:
     return QFontMetricsF(type_font(size, bold=bold)).horizontalAdvance(text) + 1.0  # type: ignore[arg-type]
 
 
-class EnergyLine(QWidget):
+class EnergyLine(SpottedWidget):
     """Custom-painted flow of an average day, or of one station's own chain in watts."""
 
     section_requested = Signal(str)
@@ -54,16 +53,13 @@ class EnergyLine(QWidget):
         energy_line_access.install()
         self.setObjectName("energy_line")
         self.setFocusPolicy(Qt.FocusPolicy.StrongFocus)
-        self.setMouseTracking(True)
         self.setSizePolicy(QSizePolicy.Policy.Expanding, QSizePolicy.Policy.Fixed)
         self.setAccessibleName(self.tr("Energy line"))
         self._flow: EnergyFlow | None = None
         self._point: BenchPoint | None = None
         self._point_name = ""
-        self._picture = Picture()
         self._stage = 0
         self._spot: int | None = None
-        self._hover: Spot | None = None
         self.ready = True
         self._lay_out()
 
@@ -77,11 +73,6 @@ class EnergyLine(QWidget):
         self._point, self._point_name = point, name
         self._stage, self._spot = 0, None
         self._lay_out()
-
-    @property
-    def picture(self) -> Picture:
-        """What is laid out now."""
-        return self._picture
 
     def current_spot(self) -> Spot | None:
         """Return the stage or band that the keyboard stands on."""
@@ -97,10 +88,6 @@ class EnergyLine(QWidget):
     def stage(self) -> int:
         """Number of the stage the keyboard stands on."""
         return self._stage
-
-    def stage_rect(self, index: int) -> QRect:
-        """Return the box of a stage in the widget."""
-        return mirrored(self._picture.stages[index].box, self._mirror_width()).toAlignedRect()
 
     def move_to_stage(self, index: int) -> None:
         """Put the keyboard on a stage."""
@@ -135,17 +122,6 @@ class EnergyLine(QWidget):
         self.setAccessibleDescription(now + whole)
         self.update()
 
-    def _mirror_width(self) -> float:
-        return float(self.width()) if self.layoutDirection() == Qt.LayoutDirection.RightToLeft else 0.0
-
-    def spot_at(self, place: QPointF) -> Spot | None:
-        """Return what lies under a point: a band before its stage."""
-        width = self._mirror_width()
-        for spot in (*self._picture.spots, *self._picture.stages):
-            if mirrored(spot.box, width).contains(place):
-                return spot
-        return None
-
     def _choose(self, spot: Spot | None) -> None:
         if spot is None:
             return
@@ -166,32 +142,20 @@ class EnergyLine(QWidget):
                 painter.setPen(scheme.color("muted"))
                 flags = int(Qt.AlignmentFlag.AlignCenter | Qt.TextFlag.TextWordWrap)
                 painter.drawText(self.rect().adjusted(16, 4, -16, -4), flags, empty_text())
-            self._paint_hover(painter)
-            paint_picture(painter, self._picture, scheme, mirror_width=self._mirror_width())
-            self._paint_focus(painter)
+            if self._hover is not None:
+                painter.setPen(Qt.PenStyle.NoPen)
+                painter.setBrush(scheme.color("panel"))
+                painter.drawRoundedRect(self.frame_box(self._hover), 6, 6)
+            paint_picture(painter, self._picture, scheme, mirror_width=self.mirror_width())
+            spot = self.current_spot()
+            if self.hasFocus() and spot is not None:
+                painter.setPen(QPen(scheme.color("accent"), 2))
+                painter.setBrush(Qt.BrushStyle.NoBrush)
+                painter.drawRoundedRect(self.frame_box(spot), 6, 6)
             painter.setPen(QPen(scheme.color("rule"), 1))
             painter.drawLine(QPointF(0, self.height() - 0.5), QPointF(self.width(), self.height() - 0.5))
         finally:
             painter.end()
-
-    def _paint_hover(self, painter: QPainter) -> None:
-        if self._hover is None:
-            return
-        painter.setPen(Qt.PenStyle.NoPen)
-        painter.setBrush(colours().color("panel"))
-        painter.drawRoundedRect(self._inside(self._hover), 6, 6)
-
-    def _paint_focus(self, painter: QPainter) -> None:
-        spot = self.current_spot()
-        if not self.hasFocus() or spot is None:
-            return
-        painter.setPen(QPen(colours().color("accent"), 2))
-        painter.setBrush(Qt.BrushStyle.NoBrush)
-        painter.drawRoundedRect(self._inside(spot), 6, 6)
-
-    def _inside(self, spot: Spot) -> QRectF:
-        box = mirrored(spot.box, self._mirror_width()).adjusted(-1, -1, 1, 1)
-        return box & QRectF(self.rect()).adjusted(2, 2, -2, -2)
 
     @guarded()
     def resizeEvent(self, event: QResizeEvent) -> None:
@@ -207,35 +171,6 @@ class EnergyLine(QWidget):
             if self.ready:
                 self.updateGeometry()
             self._lay_out()
-
-    @guarded(True)
-    def event(self, event: QEvent) -> bool:
-        """Show the sentence of what lies under the pointer."""
-        if event.type() == QEvent.Type.ToolTip and isinstance(event, QHelpEvent):
-            spot = self.spot_at(QPointF(event.pos()))
-            if spot is None:
-                QToolTip.hideText()
-            else:
-                QToolTip.showText(event.globalPos(), f"<p>{html.escape(spot.sentence)}</p>", self)
-            return True
-        return bool(super().event(event))
-
-    @guarded()
-    def mouseMoveEvent(self, event: QMouseEvent) -> None:
-        """Mark the stage under the pointer."""
-        spot = self.spot_at(event.position())
-        stage = spot if spot is None or spot in self._picture.stages else None
-        self.setCursor(Qt.CursorShape.ArrowCursor if spot is None else Qt.CursorShape.PointingHandCursor)
-        if stage is not self._hover:
-            self._hover = stage
-            self.update()
-
-    @guarded()
-    def leaveEvent(self, event: QEvent) -> None:
-        """Forget the stage under the pointer."""
-        super().leaveEvent(event)
-        self._hover = None
-        self.update()
 
     @guarded()
     def mousePressEvent(self, event: QMouseEvent) -> None:
@@ -253,7 +188,7 @@ class EnergyLine(QWidget):
         """Left and right go from stage to stage, up and down within one, Return opens, Esc leaves a station."""
         key = Qt.Key(event.key())
         if key in _STEPS:
-            step = -_STEPS[key] if self._mirror_width() else _STEPS[key]
+            step = -_STEPS[key] if self.mirror_width() else _STEPS[key]
             self.move_to_stage(self._stage + step)
         elif key in _SIDE_STEPS and self._stage_spots():
             now = -1 if self._spot is None else self._spot

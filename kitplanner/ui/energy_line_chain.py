@@ -5,7 +5,7 @@ from __future__ import annotations
 from PySide6.QtCore import QRectF
 
 from kitplanner.planners.results import BenchPoint
-from kitplanner.ui.energy_line_layout import MARGIN, Frame, Hook, Picture, Ribbon, Spot, Word, heading, place
+from kitplanner.ui.energy_line_picture import MARGIN, Frame, Hook, Picture, Ribbon, Spot, Word, heading, place
 from kitplanner.ui.energy_line_text import StageText, chain_stages, chain_title
 from kitplanner.ui.energy_line_text import watts as watts_text
 

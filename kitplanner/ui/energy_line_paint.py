@@ -5,7 +5,7 @@ from __future__ import annotations
 from PySide6.QtCore import QPointF, QRectF, Qt
 from PySide6.QtGui import QBrush, QColor, QLinearGradient, QPainter, QPainterPath, QPen
 
-from kitplanner.ui.energy_line_layout import Chip, Hook, Picture, Ribbon
+from kitplanner.ui.energy_line_picture import Chip, Hook, Picture, Ribbon
 from kitplanner.ui.hatches import CATEGORY_HATCHES, draw_hatch
 from kitplanner.ui.theme import CATEGORY_FILLS, Colours, text_on, type_font
 
