@@ -9,10 +9,11 @@ from __future__ import annotations
 import sys
 import time
 
-from PySide6.QtCore import QEvent, QObject, Qt, QTimer
+from PySide6.QtCore import QEvent, QObject, QTimer
 from PySide6.QtWidgets import QApplication, QLabel, QMainWindow, QWidget
 
 GIVE_UP_MS = 20_000
+HIGH_PRIORITY = 1  # as a number: the bare window shall not pay for loading all names of Qt's namespace
 SIZE = (1500, 1100)  # tall enough for the first chart to be in sight; the same for every kind
 
 
@@ -29,7 +30,7 @@ class FirstFrame(QObject):
         if event.type() == QEvent.Type.Paint and not self._seen and self._is_awaited(watched):
             self._seen = True
             # Answered as soon as the whole window is painted and on the screen, before any later work.
-            QApplication.postEvent(self, QEvent(QEvent.Type.User), Qt.EventPriority.HighEventPriority.value)
+            QApplication.postEvent(self, QEvent(QEvent.Type.User), HIGH_PRIORITY)
         return False
 
     def customEvent(self, event: QEvent) -> None:
