@@ -12,7 +12,7 @@ from hypothesis import strategies as st
 from msgspec import structs
 
 from kitplanner.plan.fields import FIELDS, RECORD_TYPES, SECTION_KINDS, STAGE_KINDS, FieldSpec
-from kitplanner.plan.records import Conditions, Note, Plan, Window
+from kitplanner.plan.records import Bout, ChargeSpell, Conditions, Note, Plan, Rota, Spell, Window
 
 NAMES = st.text(st.characters(codec="utf-8", exclude_categories=("Cs", "Cc")), max_size=12)
 MINUTES = st.integers(0, 1439)
@@ -140,6 +140,34 @@ def sound_device(device: Any) -> dict[str, Any]:
 
 
 @st.composite
+def a_spell(draw: st.DrawFn) -> Spell:
+    start, end = sorted(draw(st.lists(st.integers(0, 1440), min_size=2, max_size=2, unique=True)))
+    return Spell(day=draw(st.integers(1, 366)), start=clock(start), end=clock(end), count=draw(st.integers(1, 5)))
+
+
+SPELLS = st.lists(a_spell(), max_size=2).map(tuple)
+
+
+@st.composite
+def adopted_rotas(draw: st.DrawFn, ids: dict[str, list[str]]) -> Rota:
+    """An adopted rota that names only records which are there; legal or not."""
+    bouts, charging = [], []
+    for number in range(draw(st.integers(0, 3)) if ids["people"] and ids["stations"] else 0):
+        part = draw(a_spell())
+        person, station = draw(st.sampled_from(ids["people"])), draw(st.sampled_from(ids["stations"]))
+        watcher = draw(st.none() | st.sampled_from(ids["people"]))
+        when = {"day": part.day, "start": part.start, "end": part.end}
+        bouts.append(Bout(id=f"b{number}", **when, station=station, person=person, watcher=watcher))
+    for number in range(draw(st.integers(0, 2)) if ids["devices"] else 0):
+        part = draw(a_spell())
+        when = {"day": part.day, "start": part.start, "end": part.end}
+        device = draw(st.sampled_from(ids["devices"]))
+        charging.append(ChargeSpell(id=f"c{number}", **when, device=device, energy_wh=draw(st.floats(0, 1e3))))
+    rota: Rota = draw(records("rota", "rota-1"))
+    return structs.replace(rota, bouts=tuple(bouts), charging=tuple(charging))
+
+
+@st.composite
 def plans(draw: st.DrawFn, most: int = 3) -> Plan:
     """A plan without errors, with at most `most` records in each section."""
     counts = {section: draw(st.integers(0, most)) for section in SECTION_KINDS}
@@ -151,5 +179,7 @@ def plans(draw: st.DrawFn, most: int = 3) -> Plan:
     conditions: Conditions = draw(records("conditions"))
     parts = tuple(draw(records("temperature", f"T{number}")) for number in range(draw(st.integers(0, 2))))
     top: Plan = draw(records("plan"))
-    rota = draw(st.none() | records("rota", "rota-1"))
+    sections["people"] = tuple(structs.replace(one, absences=draw(SPELLS)) for one in sections["people"])
+    sections["stations"] = tuple(structs.replace(one, outages=draw(SPELLS)) for one in sections["stations"])
+    rota = draw(st.none() | adopted_rotas(ids))
     return structs.replace(top, conditions=structs.replace(conditions, temperatures=parts), rota=rota, **sections)

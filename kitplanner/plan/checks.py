@@ -6,6 +6,7 @@ from kitplanner.plan.checks_fields import check_fields
 from kitplanner.plan.checks_people import check_people
 from kitplanner.plan.checks_plan import check_plan
 from kitplanner.plan.checks_references import check_ids, check_references, check_sizes
+from kitplanner.plan.checks_rota import check_rota, check_spells
 from kitplanner.plan.checks_supply import check_supply
 from kitplanner.plan.checks_use import check_use
 from kitplanner.plan.problem import Place, Problem, Severity
@@ -41,7 +42,15 @@ def check(plan: Plan) -> tuple[Problem, ...]:
     basic = (*check_fields(plan), *check_ids(plan), *check_references(plan))
     if has_errors(basic):
         return basic
-    found = (*basic, *check_plan(plan), *check_people(plan), *check_supply(plan), *check_use(plan))
+    found = (
+        *basic,
+        *check_plan(plan),
+        *check_people(plan),
+        *check_supply(plan),
+        *check_use(plan),
+        *check_spells(plan),
+        *check_rota(plan),
+    )
     return tuple(sorted(found, key=lambda problem: _ORDER[problem.severity]))
 
 

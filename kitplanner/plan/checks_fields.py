@@ -75,7 +75,7 @@ def _check_value(place: Place, kind: str, spec: FieldSpec, value: Any) -> Iterat
     elif spec.kind == "days":
         yield from (problem for day in value for problem in _check_number(place, spec, day))
     elif kind == "temperature" and spec.key in ("start", "end"):
-        yield from _check_clock(place, value)
+        yield from check_clock(place, value)
 
 
 def _check_choice(place: Place, kind: str, spec: FieldSpec, value: Any) -> Iterator[Problem]:
@@ -130,7 +130,7 @@ def allowed(spec: FieldSpec) -> str:
 
 def check_window(place: Place, window: Window) -> Iterator[Problem]:
     """Yield what is wrong with one window; an end before the start is allowed, it crosses midnight."""
-    wrong = [*_check_clock(place, window.start), *_check_clock(place, window.end)]
+    wrong = [*check_clock(place, window.start), *check_clock(place, window.end)]
     yield from wrong
     if not wrong and window.start in (window.end, "24:00"):
         yield error(
@@ -140,6 +140,7 @@ def check_window(place: Place, window: Window) -> Iterator[Problem]:
         )
 
 
-def _check_clock(place: Place, text: str) -> Iterator[Problem]:
+def check_clock(place: Place, text: str) -> Iterator[Problem]:
+    """Yield what is wrong with one clock time."""
     if not _CLOCK.fullmatch(text):
         yield error(place, f"{short(text)} is not a clock time", "write it as HH:MM from 00:00 to 24:00")

@@ -5,6 +5,7 @@ from __future__ import annotations
 from collections.abc import Iterator
 from typing import Any
 
+from kitplanner.plan.checks_rota import rota_collections
 from kitplanner.plan.fields import SECTION_KINDS
 from kitplanner.plan.places import ordinal, short
 from kitplanner.plan.problem import Place, Problem, error
@@ -44,6 +45,8 @@ def check_ids(plan: Plan) -> tuple[Problem, ...]:
                 )
             taken.setdefault(own_id, section)
     found.extend(_check_collection(("conditions", "temperatures"), plan.conditions.temperatures))
+    for place, records in rota_collections(plan):
+        found.extend(_check_collection(place, records))
     for station in plan.stations:
         place = ("stations", station.id, "stages")
         found.extend(_check_collection(place, station.stages))

@@ -15,7 +15,7 @@ from typing import Any
 import msgspec
 from msgspec import structs
 
-from kitplanner.plan.fields import FIELDS, kind_of
+from kitplanner.plan.fields import spec_of
 from kitplanner.plan.places import place_of_path, short
 from kitplanner.plan.records import SECTIONS, Note, Plan, Record
 from kitplanner.plan.references import without_references
@@ -40,6 +40,8 @@ _LETTERS = {
     "log": "L",
     "stages": "s",
     "temperatures": "T",
+    "bouts": "b",
+    "charging": "c",
 }
 
 
@@ -235,7 +237,7 @@ def _with_value(record: Any, key: str, value: Any, path: Path) -> Any:
     if held == old and type(held) is type(old):
         return record
     changes: dict[str, Any] = {key: held}
-    spec = next((spec for spec in FIELDS[kind_of(record)] if spec.key == key), None) if key != "notes" else None
+    spec = spec_of(record, key)
     if spec is not None and "notes" in record.__struct_fields__:
         notes = {name: note for name, note in record.notes.items() if name != key}  # type: ignore[attr-defined]
         changes["notes"] = notes if spec.mark == "own" else {**notes, key: Note(mark="own")}

@@ -36,6 +36,7 @@ __all__ = [
     "field",
     "is_shown",
     "kind_of",
+    "spec_of",
 ]
 
 RECORD_TYPES: Mapping[str, type[records.Record]] = MappingProxyType(
@@ -172,6 +173,17 @@ def kind_of(record: records.Record) -> str:
     'cable'
     """
     return _KIND_BY_TYPE[type(record)]
+
+
+def spec_of(record: records.Record, key: str) -> FieldSpec | None:
+    """Return the spec of a key of a record, None where it has none (ids, nested records, parts of a rota).
+
+    Examples
+    --------
+    >>> spec_of(records.Group(id="G", name="Leaders"), "id") is None
+    True
+    """
+    return _BY_KEY.get((_KIND_BY_TYPE.get(type(record), ""), key))
 
 
 def is_shown(spec: FieldSpec, record: records.Record) -> bool:

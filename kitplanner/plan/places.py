@@ -8,7 +8,7 @@ from kitplanner.plan.records import SECTIONS
 
 Part = str | int
 
-_COLLECTIONS = frozenset((*SECTIONS, "stages", "temperatures"))
+_COLLECTIONS = frozenset((*SECTIONS, "stages", "temperatures", "bouts", "charging"))
 _GROUPS = _COLLECTIONS | {"conditions", "machine", "gear", "test_load", "rota"}
 ORDINALS = ("first", "second", "third", "fourth", "fifth", "sixth", "seventh", "eighth", "ninth", "tenth")
 
