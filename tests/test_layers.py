@@ -13,7 +13,7 @@ import pytest
 ROOT = Path(__file__).resolve().parents[1]
 PACKAGE = ROOT / "kitplanner"
 QT = {"PySide6", "shiboken6"}
-SLOW = {"pandas", "scipy", "pyqtgraph", "openpyxl", "python_calamine", "icalendar", "segno"}
+SLOW = {"pandas", "scipy", "highspy", "pyqtgraph", "openpyxl", "python_calamine", "icalendar", "segno"}
 # What a layer's modules may load besides the layers below it.
 FORBIDDEN = {
     "domain": QT | SLOW | {"msgspec"},

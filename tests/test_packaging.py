@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import shlex
 import subprocess
 import sys
 import tarfile
@@ -78,3 +79,31 @@ def test_font_licence_travels_with_the_fonts() -> None:
     fonts = ROOT / "resources" / "fonts"
     assert sorted(path.name for path in fonts.glob("*.ttf")) == ["DejaVuSans-Bold.ttf", "DejaVuSans.ttf"]
     assert "Bitstream" in (fonts / "LICENSE.txt").read_text(encoding="utf-8")
+
+
+def test_readme_shows_what_the_commands_answer() -> None:
+    """Each answer line under a command in the tour comes from that command."""
+    lines = (ROOT / "README.md").read_text(encoding="utf-8").splitlines()
+    tour = lines[lines.index("## A short tour") : lines.index("## What it is not")]
+    shown: dict[str, list[str]] = {}
+    command = None
+    for line in tour:
+        if line.startswith("$ kitplanner "):
+            command = line.removeprefix("$ kitplanner ").partition("#")[0].strip()
+        elif line.startswith(("```", "Letters")):
+            command = None
+        elif command and line and line != "...":
+            shown.setdefault(command, []).append(line)
+    assert len(shown) >= 3
+    for command, answers in shown.items():
+        call = [
+            sys.executable,
+            "-c",
+            "from kitplanner.app.cli import main; raise SystemExit(main())",
+            *shlex.split(command),
+        ]
+        said = subprocess.run(
+            call, cwd=ROOT, capture_output=True, text=True, timeout=60, check=True
+        ).stdout.splitlines()
+        for answer in answers:
+            assert answer in said, command
