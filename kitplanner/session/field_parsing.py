@@ -14,7 +14,7 @@ from PySide6.QtCore import QDate, QLocale
 from kitplanner.plan.fields import FieldSpec
 from kitplanner.plan.records import Window
 from kitplanner.session.field_text import Names, choice_label, label_of, range_words, translate, unit_of
-from kitplanner.session.units_text import factor_of_unit
+from kitplanner.session.units_text import factor_of_unit, is_unit
 
 _NO_NAMES: Names = {}
 _CLOCK = re.compile(r"^(\d{1,2})(?:[:.h](\d{2}))?$")
@@ -55,18 +55,28 @@ def _refusal(spec: FieldSpec, reason: str, remedy: str, text: str = "") -> Field
 
 
 def _read_numeric(spec: FieldSpec, text: str, _names: Names) -> int | float:
-    found = _NUMBER.match(text)
-    if found is not None and _is_ambiguous(found.group(1)):
+    digits, typed_unit = _parts_of(spec, text)
+    if _is_ambiguous(digits):
         remedy = translate("FieldText", "Leave out the comma, or write a point for decimals.")
         raise _refusal(spec, translate("FieldText", "could be read in two ways: {text}"), remedy, text)
-    number = None if found is None else _read_digits(found.group(1))
-    if found is None or number is None or not math.isfinite(number):
+    number = _read_digits(digits)
+    if number is None or not math.isfinite(number):
         raise _refusal(spec, translate("FieldText", "is not a number: {text}"), range_words(spec), text)
-    value = _in_field_unit(spec, number, found.group(2).strip())
+    value = _in_field_unit(spec, number, typed_unit)
     if spec.kind == "integer" and value != round(value):
         raise _refusal(spec, translate("FieldText", "must be a whole number, not {text}"), range_words(spec), text)
     _check_range(spec, value, text)
     return round(value) if spec.kind == "integer" else value
+
+
+def _parts_of(spec: FieldSpec, text: str) -> tuple[str, str]:
+    """Part the digits from a unit behind them."""
+    found = _NUMBER.match(text)
+    if found is not None:
+        unit = found.group(2).strip()
+        if unit in ("", unit_of(spec), spec.unit) or is_unit(unit):
+            return found.group(1), unit
+    raise _refusal(spec, translate("FieldText", "is not a number: {text}"), range_words(spec), text)
 
 
 def _is_ambiguous(text: str) -> bool:

@@ -103,7 +103,8 @@ def default_text(spec: FieldSpec, names: Names = _NO_NAMES) -> str:
 def range_words(spec: FieldSpec) -> str:
     """Say which numbers a field takes."""
     unit = unit_of(spec)
-    low = "" if spec.low is None else f"{number_text(spec, spec.low)} {unit}".strip()
+    only_low = spec.high is None
+    low = "" if spec.low is None else f"{number_text(spec, spec.low)} {unit if only_low else ''}".strip()
     high = "" if spec.high is None else f"{number_text(spec, spec.high)} {unit}".strip()
     if low and high and spec.low_open:
         sentence = translate("FieldText", "Enter a number above {low}, up to {high}.")

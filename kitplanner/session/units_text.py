@@ -48,6 +48,20 @@ def factor_of_unit(typed: str, wanted: str) -> float | None:
     return None if base is None else base * typed_scale / wanted_scale
 
 
+def is_unit(typed: str) -> bool:
+    """Tell whether a text is a unit of any kind, so that a slip of the finger is not called one.
+
+    Examples
+    --------
+    >>> is_unit("kWh"), is_unit("mAh at 3.7 V"), is_unit("O")
+    (True, True, False)
+    """
+    unit = _plain(typed)
+    _, base = _split(unit)
+    named = {one for pair in _known_factors() for one in pair}
+    return unit in named or base in _PREFIXED or unit in ("%", "Ah", "mAh", "rpm") or bool(_CHARGE.match(typed))
+
+
 def _plain(unit: str) -> str:
     unit = unit.strip().removesuffix("/day").replace("Ω", "ohm").replace("Ω", "ohm")
     return _SPELLINGS.get(unit, unit)

@@ -1,7 +1,5 @@
 """Recovery files: written while editing, offered after a crash, gone after a clean close."""
 
-import os
-
 import pytest
 
 from kitplanner.plan.edits import set_value
@@ -85,12 +83,12 @@ def test_an_original_that_changed_since_is_told(desk, tmp_path):
     assert not find_recovered(folder)[0].original_changed
     path.write_bytes(path.read_bytes().replace(b"Hut", b"Barn"))
     assert find_recovered(folder)[0].original_changed
-    os.unlink(path)
+    path.unlink()
     assert find_recovered(folder)[0].original_changed
 
 
 def test_a_damaged_recovery_file_is_left_alone(desk):
-    document, autosave, folder = desk
+    _document, _autosave, folder = desk
     folder.mkdir()
     (folder / "bad.json").write_text("{")
     assert find_recovered(folder) == ()

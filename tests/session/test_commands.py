@@ -1,5 +1,7 @@
 """The one undo command: references to frozen plans, merging, and steps that erase themselves."""
 
+import itertools
+
 from msgspec.structs import replace
 from PySide6.QtGui import QUndoStack
 
@@ -23,7 +25,7 @@ def test_undo_restores_the_identical_plan(qapp):
 def test_steps_of_one_intention_become_one(qapp):
     stack, seen = QUndoStack(), []
     plans = [Plan(days=days) for days in (3, 4, 5, 6)]
-    for before, after in zip(plans, plans[1:], strict=False):
+    for before, after in itertools.pairwise(plans):
         push(stack, seen, before, after, "days")
     assert stack.count() == 1
     stack.undo()

@@ -52,9 +52,9 @@ def test_a_refused_edit_says_why_and_changes_nothing(document):
 
 def test_a_fault_in_an_edit_reaches_the_hook_and_not_qt(document, monkeypatch):
     caught = []
-    monkeypatch.setattr(sys, "excepthook", lambda kind, error, trace: caught.append(kind))
+    monkeypatch.setattr(sys, "excepthook", lambda kind, _error, _trace: caught.append(kind))
     before = document.plan
-    assert document.apply(lambda plan: 1 / 0, "Divide") is not None
+    assert document.apply(lambda _plan: 1 / 0, "Divide") is not None
     assert caught == [ZeroDivisionError]
     assert document.plan is before
 
@@ -71,7 +71,7 @@ def test_save_and_open_bring_the_same_plan_back(document, tmp_path):
     assert document.path == path
     assert read_plan(path) == document.plan
     other = PlanDocument()
-    with pytest.raises(FileInUseError, match="hut.kitplan is open in"):
+    with pytest.raises(FileInUseError, match=r"hut\.kitplan is open in"):
         other.open_file(path)
     other.open_copy(path)
     assert other.path is None
@@ -164,7 +164,7 @@ def test_a_lock_of_a_dead_process_is_taken_over(qapp, tmp_path):
         [sys.executable, "-c", script, str(path)], capture_output=True, text=True, timeout=60, check=False
     )
     assert run.returncode == 0, run.stderr
-    assert any(name.startswith(".~lock.") for name in os.listdir(tmp_path))
+    assert any(file.name.startswith(".~lock.") for file in tmp_path.iterdir())
     lock = FileLock(path)
     assert lock.acquire() is None
     lock.release()

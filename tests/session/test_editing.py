@@ -163,7 +163,7 @@ def test_records_are_named_for_people(bench):
 
 
 def test_two_records_of_one_name_are_told_apart(camp):
-    document, editing = camp
+    _document, editing = camp
     editing.enter(("people", "L2", "name"), field("person", "name"), "Hesmira")
     assert editing.names("people")["L2"] == "Hesmira (L2)"
     assert editing.names("people")["L3"] == "Quorin"

@@ -91,11 +91,11 @@ def test_undo_recomputes_too(desk):
 
 
 def test_a_fault_in_a_quick_answer_reaches_the_hook_and_keeps_the_earlier_results(desk, monkeypatch):
-    document, bench, recompute = desk
+    document, _bench, recompute = desk
     set_days(document, 4)
     before, caught = recompute.results, []
-    monkeypatch.setattr(sys, "excepthook", lambda kind, error, trace: caught.append(str(error)))
-    recompute._run_quick = lambda plan, results: 1 / 0
+    monkeypatch.setattr(sys, "excepthook", lambda _kind, error, _trace: caught.append(str(error)))
+    recompute._run_quick = lambda _plan, _results: 1 / 0
     set_days(document, 5)
     assert caught == ["division by zero"]
     assert recompute.results is before
@@ -103,9 +103,9 @@ def test_a_fault_in_a_quick_answer_reaches_the_hook_and_keeps_the_earlier_result
 
 
 def test_a_fault_in_a_slow_answer_reaches_the_hook(desk, qtbot, monkeypatch):
-    document, bench, recompute = desk
+    document, _bench, recompute = desk
     caught = []
-    monkeypatch.setattr(sys, "excepthook", lambda kind, error, trace: caught.append(str(error)))
+    monkeypatch.setattr(sys, "excepthook", lambda _kind, error, _trace: caught.append(str(error)))
 
     def fail(plan, before, cancelled):
         raise ValueError("worn out")
