@@ -16,8 +16,9 @@ ROOT = Path(__file__).resolve().parents[1]
 
 
 def files_of(folder: str) -> set[str]:
+    """All files of a folder but caches and the lock files of an open window."""
     paths = (path for path in (ROOT / folder).rglob("*") if path.is_file() and "__pycache__" not in path.parts)
-    return {path.relative_to(ROOT / folder).as_posix() for path in paths}
+    return {path.relative_to(ROOT / folder).as_posix() for path in paths if not path.name.startswith(".~lock.")}
 
 
 @pytest.fixture(scope="module")
