@@ -237,8 +237,8 @@ def _refuse(raw: dict[str, Any], path: list[Part], reason: str, remedy: str) -> 
 def _refuse_foreign(raw: dict[str, Any]) -> None:
     """Raise unless the mapping says that it is a plan of a version known here."""
     if raw.get("format") != FORMAT:
-        found = f"its format is {short(raw['format'])}" if "format" in raw else "it has no key format"
-        raise PlanFileError("The file", f"it is not a plan ({found} instead of '{FORMAT}')", "choose a .kitplan file")
+        found = f"its format is {short(raw['format'])}" if "format" in raw else "its format is not given"
+        raise PlanFileError("The file", f"it is not a plan ({found}, not '{FORMAT}')", "choose a .kitplan file")
     version = raw.get("version")
     if isinstance(version, bool) or not isinstance(version, int) or version < 1:
         raise PlanFileError("Key version", "a whole number from 1 is expected", f"{_RESTORE}")

@@ -94,7 +94,7 @@ BAD_FILES = [
     (b"\x89PNG\r\n\x1a\n\x00", "Line 1: the bytes are not UTF-8"),
     (b"[]", "one JSON object"),
     (b"3", "one JSON object"),
-    (b"{}", "no key format"),
+    (b"{}", "format is not given"),
     (b'{"format": "other"}', "its format is 'other'"),
     (b'{"format": 7}', "its format is '7'"),
     (b'{"format": "kitplanner-plan"}', "version"),

@@ -1,6 +1,6 @@
-"""The demo plans hold the figures of their published scenarios, added up here by hand-sized arithmetic.
+"""The demo plans hold the figures of their scenarios, added up here by plain arithmetic.
 
-The sums stand in the project's scenario tables (invented places): use at the device (D) and at the outlet
+The scenarios are invented; their sums were worked out apart from the program: use at the device (D) and at the outlet
 (O = D / 0.85 with a battery of one's own, else D), stores at the outlet, minutes and energy people offer.
 """
 
