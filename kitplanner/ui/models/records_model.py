@@ -124,6 +124,8 @@ class RecordsModel(QAbstractTableModel):
             return f"{label_of(spec)}, {unit}" if unit else label_of(spec)
         if role == Qt.ItemDataRole.ToolTipRole:
             return as_tool_tip(help_text(spec))
+        if role == Qt.ItemDataRole.TextAlignmentRole:
+            return _alignment(spec)
         return None
 
     @guarded()
@@ -139,9 +141,7 @@ class RecordsModel(QAbstractTableModel):
             case Qt.ItemDataRole.FontRole | Qt.ItemDataRole.ForegroundRole:
                 return self._look(index, role)
             case Qt.ItemDataRole.TextAlignmentRole:
-                numeric = self._specs[index.column()].kind in ("number", "integer")
-                side = Qt.AlignmentFlag.AlignRight if numeric else Qt.AlignmentFlag.AlignLeft
-                return side | Qt.AlignmentFlag.AlignVCenter
+                return _alignment(self._specs[index.column()])
             case Qt.ItemDataRole.ToolTipRole:
                 problem = self._problem(index)
                 return as_tool_tip(problem) if problem else None
@@ -269,6 +269,12 @@ class RecordsModel(QAbstractTableModel):
         row = self.row_of(path[depth])
         if row >= 0:
             self.dataChanged.emit(self.index(row, 0), self.index(row, len(self._specs) - 1))
+
+
+def _alignment(spec: FieldSpec) -> Qt.AlignmentFlag:
+    """Numbers stand at the right, under their heading."""
+    side = Qt.AlignmentFlag.AlignRight if spec.kind in ("number", "integer") else Qt.AlignmentFlag.AlignLeft
+    return side | Qt.AlignmentFlag.AlignVCenter
 
 
 def _is_diffable(before: list[str], after: list[str]) -> bool:
