@@ -19,6 +19,20 @@ class LinearModelError(RuntimeError):
     """The solver stopped without an optimum."""
 
 
+def _silent_solver() -> Any:
+    """Return a solver that writes nothing, its greeting included."""
+    import highspy
+
+    class Silent(highspy.Highs):
+        """The solver greets on standard output in its own constructor unless it is silenced inside it."""
+
+        def enableCallbacks(self) -> Any:  # noqa: N802 - the solver's name
+            self.setOptionValue("output_flag", False)
+            return super().enableCallbacks()  # type: ignore[no-untyped-call]
+
+    return Silent()  # type: ignore[no-untyped-call]
+
+
 class LinearModel:
     """Columns and rows collected as triplets, then minimised for one cost after another."""
 
@@ -70,8 +84,7 @@ class LinearModel:
         lp.a_matrix_.start_ = np.array(self._starts, dtype=np.int32)
         lp.a_matrix_.index_ = np.concatenate(self._index) if self._index else np.zeros(0, dtype=np.int32)
         lp.a_matrix_.value_ = np.concatenate(self._value) if self._value else np.zeros(0)
-        highs = highspy.Highs()  # type: ignore[no-untyped-call]
-        highs.setOptionValue("output_flag", False)
+        highs = _silent_solver()
         highs.setOptionValue("threads", THREADS)
         highs.passModel(lp)
         self._highs = highs

@@ -88,7 +88,7 @@ def solution_of(problem: RotaProblem, limits: Bounds, search: Search, seconds: f
         bouts=bouts_of(draft),
         objectives=objectives_of(problem, limits, search),
         made_wh=made_s,
-        made_bound_wh=limits.made_wh / float(outlet.max(initial=1.0)) if len(outlet) else 0.0,
+        made_bound_wh=limits.made_wh / float(outlet.max()) if len(outlet) else 0.0,
         steps=search.steps,
         seconds=seconds,
         cut_off=search.cut_off,
