@@ -92,7 +92,7 @@ def test_device_without_battery_has_no_credit_and_no_loss():
 @given(
     start=st.floats(0, 1),
     floor=st.floats(0, 1),
-    use=st.floats(0, 100),
+    use=st.floats(0, 100, allow_subnormal=False),
     count=st.integers(0, 50),
     days=st.integers(1, 30),
 )
