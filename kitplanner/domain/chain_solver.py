@@ -201,27 +201,15 @@ def _joined(parts: list[npt.NDArray[_Scalar]], shape: tuple[int, ...]) -> npt.ND
 
 def _solve(chain: Chain, flat: list[FloatArray], bounded: list[bool], *, held: bool) -> Solution:
     """Generator currents of one batch."""
-    rpm, amps, human_w, torque_nm, plug_w, hold_v = flat[:6]
-    net_v = source_v(chain, rpm)
-    top_a = np.asarray(short_circuit_a(chain.machine, np.asarray(rad_s_from_rpm(rpm)) * chain.gear.ratio), np.float64)
-    p0, p1, t1, t0 = human_cost(chain, rpm)
-    cap_a = torque_cap_a = None
-    if bounded[2] or bounded[3]:
-        torque_cap_a = (torque_nm - t0) / t1
-        cap_a = np.minimum((human_w - p0) / np.maximum(p1, 1e-300), torque_cap_a)
-    limits = _Limits(
-        net_v,
-        top_a,
-        hold_v,
-        _finite(amps) if bounded[1] else None,
-        _finite(plug_w) if bounded[4] else None,
-        None if cap_a is None else _finite(cap_a),
-    )
+    rpm = flat[0]
+    limits, torque_first = _limits_of(chain, flat, bounded)
+    net_v, cap_a = limits.net_v, limits.cap_a
     current, collapsed = _first_limit(chain, limits)
     plug_v, plug_a = march(chain, net_v, current)
     terms = limits.terms(plug_v, plug_a, current)
     keys = np.array(list(terms))
     binding = keys[np.argmax(np.stack(list(terms.values())), axis=0)]
+    binding = np.where((binding == _HUMAN) & torque_first, _TORQUE, binding)
 
     unfed = (plug_a < 0.0) & ~collapsed & (np.abs(plug_a) > 1e-12 * np.maximum(np.abs(current), 1e-3))
     dead = net_v <= 0.0
@@ -233,15 +221,36 @@ def _solve(chain: Chain, flat: list[FloatArray], bounded: list[bool], *, held: b
     if cap_a is not None:
         # The person cannot even turn the empty station at this cadence.
         dead |= (current > cap_a + _ROUNDING * np.abs(cap_a)) & ~collapsed
-    dead |= (plug_v <= 0.0) & ~collapsed
+    # No volts are left, or the stages' standing draw alone is more than the chain carries.
+    dead |= ((plug_v <= 0.0) | (plug_a < -_ROUNDING)) & ~collapsed
     if not held:
         dead |= (binding == _HOLD) & ~collapsed
     binding = np.where(collapsed | dead, _NOTHING, binding)
-    if cap_a is not None and torque_cap_a is not None:
-        limited = binding == _HUMAN
-        binding = np.where(limited & (torque_cap_a <= cap_a), _TORQUE, binding)
     fails = _fails_entry(chain, limits, plug_v, plug_a) & ~(dead | collapsed)
     return Solution(rpm, current, binding.astype(np.intp), collapsed & ~dead, dead, fails)
+
+
+def _limits_of(chain: Chain, flat: list[FloatArray], bounded: list[bool]) -> tuple[_Limits, BoolArray]:
+    """Limits of one batch, and where the torque runs out before the watts."""
+    rpm, amps, human_w, torque_nm, plug_w, hold_v = flat[:6]
+    shaft_rad_s = np.asarray(rad_s_from_rpm(rpm)) * chain.gear.ratio
+    cap_a = None
+    torque_first: BoolArray = np.zeros(rpm.shape, np.bool_)
+    if bounded[2] or bounded[3]:
+        p0, p1, t1, t0 = human_cost(chain, rpm)
+        watts_cap_a = (human_w - p0) / np.maximum(p1, 1e-300)
+        torque_cap_a = (torque_nm - t0) / t1
+        torque_first = torque_cap_a <= watts_cap_a
+        cap_a = _finite(np.minimum(watts_cap_a, torque_cap_a))
+    limits = _Limits(
+        source_v(chain, rpm),
+        np.asarray(short_circuit_a(chain.machine, shaft_rad_s), np.float64),
+        hold_v,
+        _finite(amps) if bounded[1] else None,
+        _finite(plug_w) if bounded[4] else None,
+        cap_a,
+    )
+    return limits, torque_first
 
 
 def _finite(values: FloatArray) -> FloatArray:

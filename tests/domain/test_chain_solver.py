@@ -6,7 +6,15 @@ import numpy as np
 import pytest
 from scipy.optimize import brentq
 
-from kitplanner.domain.chain import UsbSink, charging_point, operating_point
+from kitplanner.domain.chain import (
+    Chain,
+    DcMachine,
+    GearBox,
+    SynchronousRectifier,
+    UsbSink,
+    charging_point,
+    operating_point,
+)
 from tests.domain import reference_chain as reference
 from tests.domain.chain_sets import A_BUCK, C_5V, C_12V, A, B
 
@@ -106,3 +114,11 @@ def test_batches_do_not_show() -> None:
     whole = operating_point(B, cadences, 1.0)
     for i in (0, 4096, 8191, 8192, 9000):
         assert whole.human_w[i] == pytest.approx(float(operating_point(B, float(cadences[i]), 1.0).human_w), rel=1e-13)
+
+
+def test_a_standing_draw_that_nothing_can_feed_gives_no_output() -> None:
+    """A control circuit of 0.2 A behind a machine that shorts at 0.1 A."""
+    hungry = Chain(DcMachine(0.02, 10.0), GearBox(5.0), (SynchronousRectifier(2, 0.01, 0.2),))
+    point = charging_point(hungry, 96.0, UsbSink(hold_v=0.5))
+    assert float(point.rpm) * np.pi / 30.0 * 5.0 * 0.02 / 10.0 == pytest.approx(0.1, rel=0.01)
+    assert point.states_at() == ("no_output",)
