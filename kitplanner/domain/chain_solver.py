@@ -298,12 +298,16 @@ def _first_limit(chain: Chain, limits: _Limits) -> tuple[FloatArray, BoolArray]:
         high[fallen], f_high[fallen] = peak[fallen], f_peak
     unsettled = ~(collapsed | walk.at_once)
     current = np.where(collapsed, high, low)
-    todo: IntArray | None = None if unsettled.all() else np.flatnonzero(unsettled)
-    if todo is None:
+    pending: IntArray | None = None if unsettled.all() else np.flatnonzero(unsettled)
+    if pending is None:
         current = bracketed_roots(excess, low, high, f_low, f_high)
-    elif todo.size:
-        current[todo] = bracketed_roots(
-            lambda x, at: excess(x, todo if at is None else todo[at]), low[todo], high[todo], f_low[todo], f_high[todo]
+    elif pending.size:
+        current[pending] = bracketed_roots(
+            lambda x, at: excess(x, pending if at is None else pending[at]),
+            low[pending],
+            high[pending],
+            f_low[pending],
+            f_high[pending],
         )
     # A limit of the plug is met upwards only; one of the person may be met behind the peak too.
     if chain.has_converter and limits.cap_a is not None:
