@@ -185,8 +185,8 @@ def contrast_ratio(one: QColor, other: QColor) -> float:
 
 
 def text_on(fill: QColor) -> QColor:
-    """Return near-black or white, whichever contrasts more with the fill."""
-    dark, light = QColor("#10161d"), QColor("#ffffff")
+    """Return black or white, whichever contrasts more with the fill."""
+    dark, light = QColor("#000000"), QColor("#ffffff")
     return dark if contrast_ratio(dark, fill) >= contrast_ratio(light, fill) else light
 
 

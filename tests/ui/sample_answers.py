@@ -2,8 +2,13 @@
 
 from __future__ import annotations
 
+import functools
+
 import numpy as np
 
+from kitplanner.plan.files import read_plan
+from kitplanner.plan.shipped import demo
+from kitplanner.planners import pipeline
 from kitplanner.planners.results import BenchPoint, BenchStage, EnergyFlow, FlowBand, FlowLoss
 
 
@@ -121,3 +126,20 @@ def chain_point() -> BenchPoint:
 def ramp(n: int = 50) -> np.ndarray:
     """A rising line from 0 to 1."""
     return np.linspace(0.0, 1.0, n)
+
+
+@functools.cache
+def demo_answers(name: str):
+    """A demo plan with all its answers, computed once for all tests."""
+    plan = read_plan(demo(name))
+    return plan, pipeline.run_slow(plan, None)
+
+
+def show_page(qtbot, page, size=(900, 1000)):
+    """Show a page until its charts are built."""
+    qtbot.addWidget(page)
+    page.resize(*size)
+    page.show()
+    page.grab()
+    qtbot.waitUntil(lambda: page.is_loaded, timeout=10_000)
+    return page

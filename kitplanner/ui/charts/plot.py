@@ -5,7 +5,7 @@ from __future__ import annotations
 import pyqtgraph as pg
 from PySide6.QtCore import QEvent, QSize, Qt
 from PySide6.QtGui import QFontMetricsF, QPainter, QPen, QResizeEvent
-from PySide6.QtWidgets import QFrame, QGraphicsItem, QWidget
+from PySide6.QtWidgets import QApplication, QFrame, QGraphicsItem, QWidget
 
 from kitplanner.ui.charts.chart_data import ChartData
 from kitplanner.ui.charts.drawing import ChartDrawing
@@ -34,14 +34,19 @@ class Plot(pg.PlotWidget):
     ready = False
 
     def __init__(self, parent: QWidget | None = None) -> None:
-        super().__init__(parent, axisItems={"left": PlainAxis("left"), "bottom": PlainAxis("bottom")})
+        axes = {"left": PlainAxis("left"), "bottom": PlainAxis("bottom")}
+        before = set(QApplication.topLevelWidgets())
+        super().__init__(parent, axisItems=axes, enableMenu=False)
+        # The library makes menu and form all the same; without a parent they would outlive the plot.
+        for stray in set(QApplication.topLevelWidgets()) - before - {self}:
+            if stray.parent() is None:
+                stray.setParent(self)
         self._data: ChartData | None = None
         self._cursor: pg.InfiniteLine | None = None
         self._cursor_at: float | None = None
         self._titles: list[QGraphicsItem] = []
         self.setAntialiasing(True)
         item = self.getPlotItem()
-        item.setMenuEnabled(False)
         item.hideButtons()
         self.setMouseEnabled(x=False, y=False)
         self.getViewBox().setMouseEnabled(False, False)
@@ -77,7 +82,7 @@ class Plot(pg.PlotWidget):
     def changeEvent(self, event: QEvent) -> None:
         """Take the new colours and type size."""
         super().changeEvent(event)
-        if self.ready and event.type() in (QEvent.Type.PaletteChange, QEvent.Type.FontChange):
+        if self._is_open() and event.type() in (QEvent.Type.PaletteChange, QEvent.Type.FontChange):
             self._style()
             self._draw()
             self.updateGeometry()
@@ -86,7 +91,7 @@ class Plot(pg.PlotWidget):
     def resizeEvent(self, event: QResizeEvent) -> None:
         """Choose again which words have room."""
         super().resizeEvent(event)
-        if self.ready and self._data is not None and any(bars.texts for bars in self._data.bars):
+        if self._is_open() and self._data is not None and any(bars.texts for bars in self._data.bars):
             self._draw()
 
     @guarded(QSize(320, 200))
@@ -98,6 +103,10 @@ class Plot(pg.PlotWidget):
     def minimumSizeHint(self) -> QSize:
         """Return the least size."""
         return QSize(120, 80)
+
+    def _is_open(self) -> bool:
+        """Say whether there is a plot to draw in: not while the library builds it, nor after it closed it."""
+        return self.ready and self.getPlotItem() is not None
 
     def _style(self) -> None:
         scheme, font = colours(), type_font("small")
