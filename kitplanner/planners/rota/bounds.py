@@ -36,8 +36,10 @@ class Bounds:
         Least greatest share of one's own minutes, in whole slots of people [-].
     target_wh : ndarray, shape (slots + 1,)
         Energy made by each slot in the coarse rota, at O [Wh].
-    share : ndarray, shape (people,)
-        Minutes of each person in the coarse rota over the allowance [-].
+    share : ndarray, shape (people, stations)
+        Turning of each person at each station line in the coarse rota over the allowance [-].
+    group : ndarray of int, shape (people,)
+        Class of each person, -1 for people who never turn.
     """
 
     unmet_wh: FloatArray
@@ -46,6 +48,7 @@ class Bounds:
     greatest_load: float
     target_wh: FloatArray
     share: FloatArray
+    group: IntArray
 
 
 class CoarseRota:
@@ -248,6 +251,7 @@ class CoarseRota:
             greatest_load=load,
             target_wh=self._target(solution),
             share=self._share(solution),
+            group=self._group(),
         )
 
     def _least_of(self, column: int) -> float:
@@ -299,11 +303,17 @@ class CoarseRota:
             before = after
         return target
 
-    def _share(self, solution: FloatArray) -> FloatArray:
-        share = np.zeros(len(self.problem.people))
+    def _group(self) -> IntArray:
+        group = np.full(len(self.problem.people), -1, dtype=np.int64)
         for row, who in enumerate(self.classes.members):
-            _, columns = self._columns_of(row)
-            share[who] = solution[columns].sum() / max(1.0, float(self.problem.allowance[who].sum()))
+            group[who] = row
+        return group
+
+    def _share(self, solution: FloatArray) -> FloatArray:
+        share = np.zeros(self.problem.output_w.shape)
+        for (row, station), (_, columns) in self._work.items():
+            who = self.classes.members[row]
+            share[who, station] = solution[columns].sum() / max(1.0, float(self.problem.allowance[who].sum()))
         return share
 
 

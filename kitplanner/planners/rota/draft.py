@@ -54,6 +54,8 @@ class Draft:
         self.made = np.zeros(slots)
         most = [int(problem.units[station].max(initial=0)) for station in range(len(problem.stations))]
         self.unit_busy = [np.zeros((units, slots), dtype=bool) for units in most]
+        # Slots before a bout in which another's bout still costs it a changeover.
+        self._pause = [-(-int(each) // problem.slot_min) for each in problem.changeover_min]
         self.unit_day = [np.zeros((units, problem.days), dtype=np.int64) for units in most]
         self._on_unit: dict[tuple[int, int], list[tuple[int, int]]] = {}
         self._energy: dict[int, float] = {}
@@ -86,24 +88,33 @@ class Draft:
         """Energy made at O."""
         return float(self.made.sum())
 
-    def free_unit(self, station: int, start: int, length: int, person: int) -> int | None:
-        """Return a unit that is free for the whole bout, one without a changeover first."""
+    def units_free(self, station: int, slot: int, *, rested: bool = False) -> int:
+        """Return how many units of a line are free in a slot; `rested`: idle for the changeover before it too."""
+        count = int(self.problem.units[station, slot])
+        first = slot - (self._pause[station] if rested else 0)
+        return count - int(self.unit_busy[station][:count, max(first, 0) : slot + 1].any(axis=1).sum())
+
+    def free_units(self, station: int, start: int, length: int) -> list[int]:
+        """Return the units that are free for a whole bout and may still run that long today."""
         problem, end = self.problem, start + length
         units = problem.units[station, start:end]
-        if len(units) < length or not int(units.min()):
-            return None
-        day = start // problem.per_day
-        best = None
-        for unit in range(int(units.min())):
-            if self.unit_busy[station][unit, start:end].any():
-                continue
-            limit = problem.daily[station]
-            if limit >= 0 and self.unit_day[station][unit, day] + length > limit:
-                continue
-            if not self.lost_min(station, unit, start, person):
-                return unit
-            best = unit if best is None else best
-        return best
+        if len(units) < length:
+            return []
+        count = int(units.min())
+        free = ~self.unit_busy[station][:count, start:end].any(axis=1)
+        limit = problem.daily[station]
+        if limit >= 0:
+            free &= self.unit_day[station][:count, start // problem.per_day] + length <= limit
+        return [int(unit) for unit in np.flatnonzero(free)]
+
+    def free_unit(self, station: int, start: int, length: int, person: int) -> int | None:
+        """Return a unit that is free for the whole bout, one without a changeover first."""
+        free = self.free_units(station, start, length)
+        before = max(0, start - self._pause[station])
+        rested = ~self.unit_busy[station][free, before:start].any(axis=1)
+        if rested.any():
+            return free[int(np.argmax(rested))]
+        return min(free, key=lambda unit: self.lost_min(station, unit, start, person), default=None)
 
     def lost_min(self, station: int, unit: int, start: int, person: int) -> float:
         """Return the minutes a bout loses to the changeover from the bout before it on the same unit."""
@@ -132,14 +143,17 @@ class Draft:
             and not self.watching[person, start:end].any()
         )
 
-    def find_watcher(self, person: int, start: int, length: int) -> int | None:
-        """Return who can watch a bout: people without minutes first, then who is worked most and watched least."""
-        end = start + length
-        span = slice(start, end)
+    def watchers(self, person: int, start: int, length: int) -> IntArray:
+        """Return everybody who is free to watch a bout."""
+        span = slice(start, start + length)
         free = self.problem.may_watch[:, span].all(axis=1)
         free &= ~self.turning[:, span].any(axis=1) & ~self.watching[:, span].any(axis=1)
-        candidates = np.flatnonzero(free)
-        candidates = candidates[candidates != person]
+        who = np.flatnonzero(free)
+        return np.asarray(who[who != person])
+
+    def find_watcher(self, person: int, start: int, length: int) -> int | None:
+        """Return who best watches a bout: people without minutes first, then who is worked most and watched least."""
+        candidates = self.watchers(person, start, length)
         if not len(candidates):
             return None
         resting = self.held[candidates, start]

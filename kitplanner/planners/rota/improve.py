@@ -305,17 +305,16 @@ class Improver:
 
     def join(self) -> None:
         """Make fewer and longer bouts: lengthen one bout of a day and drop or shorten another of the same person."""
-        for person in self.able:
-            for day in range(self.problem.days):
-                self._join_day(int(person), day)
+        by_day: dict[tuple[int, int], list[int]] = {}
+        for key, bout in self.draft.bouts.items():
+            if not bout.locked:
+                by_day.setdefault((bout.person, bout.start // self.problem.per_day), []).append(key)
+        for (person, day), mine in by_day.items():
+            if len(mine) > 1:
+                self._join_day(person, day, mine)
 
-    def _join_day(self, person: int, day: int) -> None:
+    def _join_day(self, person: int, day: int, mine: list[int]) -> None:
         draft, problem = self.draft, self.problem
-        mine = [
-            k
-            for k, b in draft.bouts.items()
-            if b.person == person and not b.locked and b.start // problem.per_day == day
-        ]
         mine.sort(key=lambda k: draft.bouts[k].length)
         for place, short in enumerate(mine):
             for longer in mine[place + 1 :]:

@@ -10,6 +10,7 @@ from typing import Protocol
 from kitplanner.plan.records import Plan
 from kitplanner.planners.rota.bounds import Bounds, bounds
 from kitplanner.planners.rota.draft import Draft
+from kitplanner.planners.rota.exact import Enumeration
 from kitplanner.planners.rota.improve import Improver
 from kitplanner.planners.rota.objectives import objectives_of
 from kitplanner.planners.rota.problem import RotaProblem, build
@@ -66,15 +67,28 @@ class WalkAndImprove:
             effort.cancelled,
             effort.progress,
         )
-        Improver(search, limits.greatest_load).run()
+        if not _solved_exactly(problem, search):
+            Improver(search, limits.greatest_load).run()
         return solution_of(problem, limits, search, time.monotonic() - began)
+
+
+def _solved_exactly(problem: RotaProblem, search: Search) -> bool:
+    """Put the optimum of a tiny problem into the search; False where there are too many rotas to look at."""
+    alone = Search(Draft(problem), search.step_wh, search.work, changed=search.changed)
+    enumeration = Enumeration(alone)
+    if search.work <= 0 or not enumeration.run():
+        return False
+    search.draft, search.value = alone.draft, alone.value
+    search.steps = enumeration.looked_at
+    return True
 
 
 def best_start(problem: RotaProblem, limits: Bounds) -> Draft:
     """Return the best of a few walks that start energy earlier or later before it is due."""
     longest = int(problem.bout.max(initial=1))
     step = excess_step_wh(problem)
-    walks = [first_rota(problem, limits, longest, spaced=spaced) for spaced in (False, True)]
+    ways = (False, True) if problem.changeover_min.any() else (False,)
+    walks = [first_rota(problem, limits, longest, spaced=spaced) for spaced in ways]
     return min(walks, key=lambda draft: value_of(draft, step))
 
 

@@ -12,7 +12,9 @@ from kitplanner.planners.rota.problem import RotaProblem
 IntArray = npt.NDArray[np.int64]
 FloatArray = npt.NDArray[np.float64]
 
-_LEAST_SHARE = 0.02
+_LEAST_SHARE, _LEAST_PART = 0.02, 1e-6
+# Among equally loaded people, who has turned less today goes first.
+_DAY_WEIGHT = 1e-3
 
 
 def run_lengths(free: npt.NDArray[np.bool_], per_day: int) -> IntArray:
@@ -36,79 +38,89 @@ def run_lengths(free: npt.NDArray[np.bool_], per_day: int) -> IntArray:
 class Walk:
     """One pass over the slots that fills a draft up to an energy target."""
 
-    def __init__(self, draft: Draft, target_wh: FloatArray, share: FloatArray, budget: IntArray) -> None:
-        """Take a draft (with what is already fixed in it), a target curve at O and each person's budget."""
-        problem = draft.problem
-        self.draft = draft
-        self.problem = problem
-        self.target_wh = target_wh
-        self.budget = budget
-        self.spaced = False
-        self.weight = np.maximum(share, _LEAST_SHARE) * np.maximum(problem.allowance, 1)
-        self.person_run = run_lengths(problem.may_turn, problem.per_day)
-        self.unit_run = run_lengths(problem.units > 0, problem.per_day)
-        # Strongest station first; a person is offered the next one only when that has no unit free.
-        self.stations = [
-            [int(each) for each in np.argsort(-watts, kind="stable") if watts[each] > 0.0] for watts in problem.output_w
-        ]
-
-    def run(self, ahead: int, *, spaced: bool = False) -> None:
-        """Walk all slots; a bout starts while what has been started stays below the target `ahead` slots on.
+    def __init__(self, draft: Draft, limits: Bounds, budget: IntArray, *, spaced: bool) -> None:
+        """Take a draft (with what is already fixed in it), the coarse rota and each person's budget.
 
         `spaced` leaves a unit idle for the changeover instead of letting the next bout lose it.
         """
-        problem = self.problem
+        problem = draft.problem
+        self.draft = draft
+        self.problem = problem
+        self.target_wh = limits.target_wh
+        self.budget = budget
         self.spaced = spaced
-        open_ = np.flatnonzero((problem.units > 0).any(axis=0))
-        started = float(self.draft.made.sum())
-        for slot in open_:
+        self.group = limits.group
+        self.weight = np.maximum(limits.share.sum(axis=1), _LEAST_SHARE) * np.maximum(problem.allowance, 1)
+        self.person_run = run_lengths(problem.may_turn, problem.per_day)
+        self.unit_run = run_lengths(problem.units > 0, problem.per_day)
+        # Minutes spent at a weak station are lost to a strong one, so each class keeps to its part at each station.
+        self.quota = np.zeros((int(self.group.max(initial=-1)) + 1, len(problem.stations)))
+        able = np.flatnonzero(self.group >= 0)
+        np.add.at(self.quota, self.group[able], limits.share[able] * problem.allowance[able, None])
+        self.order = np.argsort(-problem.output_w.max(axis=0, initial=0.0), kind="stable")
+        self.started = float(draft.made.sum())
+        self.unwatched = -1
+
+    def run(self, ahead: int) -> None:
+        """Walk all slots; a bout starts while what has been started stays below the target `ahead` slots on."""
+        problem = self.problem
+        for slot in np.flatnonzero((problem.units > 0).any(axis=0)):
             day_end = (int(slot) // problem.per_day + 1) * problem.per_day
             goal = float(self.target_wh[min(int(slot) + ahead, day_end)])
-            if started >= goal:
-                continue
-            started = self._fill_slot(int(slot), goal, started)
+            if self.started < goal:
+                self._fill_slot(int(slot), goal)
 
-    def _fill_slot(self, slot: int, goal: float, started: float) -> float:
-        """Start bouts in one slot until the goal is met or nobody is left."""
+    def _fill_slot(self, slot: int, goal: float) -> None:
+        """Start bouts in one slot, at the strongest stations first, until the goal is met or nobody is left."""
         draft, problem = self.draft, self.problem
         day = slot // problem.per_day
-        free = problem.may_turn[:, slot] & ~draft.held[:, slot] & ~draft.watching[:, slot]
-        free &= (draft.load < self.budget) & (draft.day_load[:, day] < problem.cap[:, day])
-        people = np.flatnonzero(free)
-        if not len(people):
-            return started
-        behind = draft.load[people] / self.weight[people] + 1e-3 * draft.day_load[people, day]
-        for person in people[np.argsort(behind, kind="stable")]:
-            key = self._start(int(person), slot, day)
-            if key is not None:
-                started += draft.bout_wh(key)
-                if started >= goal:
+        free: npt.NDArray[np.bool_] | None = None
+        for station in self.order:
+            if draft.units_free(int(station), slot, rested=self.spaced) <= 0:
+                continue
+            if free is None:
+                free = problem.may_turn[:, slot] & ~draft.held[:, slot] & ~draft.watching[:, slot] & (self.group >= 0)
+                free &= (draft.load < self.budget) & (draft.day_load[:, day] < problem.cap[:, day])
+            people = np.flatnonzero(free & (problem.output_w[:, station] > 0.0))
+            people = people[self.quota[self.group[people], station] > _LEAST_PART]
+            behind = draft.load[people] / self.weight[people] + _DAY_WEIGHT * draft.day_load[people, day]
+            for person in people[np.argsort(behind, kind="stable")]:
+                if self.started >= goal or draft.units_free(int(station), slot, rested=self.spaced) <= 0:
                     break
-        return started
+                if self.unwatched == slot and problem.needs_watcher[person, station]:
+                    continue
+                if self._start(int(person), int(station), slot, day):
+                    free[person] = False
+                    free &= ~draft.watching[:, slot]
 
-    def _start(self, person: int, slot: int, day: int) -> int | None:
-        """Start the longest bout a person may turn in this slot at the best free station."""
+    def _start(self, person: int, station: int, slot: int, day: int) -> bool:
+        """Start the longest bout a person may turn in this slot at a station."""
         draft, problem = self.draft, self.problem
         longest = min(
             int(problem.bout[person, day]),
             int(problem.cap[person, day] - draft.day_load[person, day]),
             int(self.budget[person] - draft.load[person]),
             int(self.person_run[person, slot]),
+            int(self.unit_run[station, slot]),
         )
-        for station in self.stations[person]:
-            length = min(longest, int(self.unit_run[station, slot]))
-            while length > 0:
-                unit = draft.free_unit(station, slot, length, person)
-                if unit is not None and self.spaced and draft.lost_min(station, unit, slot, person):
-                    break
-                key = draft.place(person, station, slot, length, unit=unit) if unit is not None else None
-                if key is not None:
-                    return key
-                # Shorter only helps where something fixed lies ahead.
-                if not self._blocked_ahead(person, station, slot, length):
-                    break
-                length -= 1
-        return None
+        for length in range(longest, 0, -1):
+            unit = draft.free_unit(station, slot, length, person)
+            watcher = None
+            if problem.needs_watcher[person, station]:
+                watcher = draft.find_watcher(person, slot, length)
+                if watcher is None:
+                    # Nobody is left to watch in this slot: no use asking again for the next minor.
+                    self.unwatched = slot
+                    return False
+            key = draft.place(person, station, slot, length, unit=unit, watcher=watcher) if unit is not None else None
+            if key is not None:
+                self.started += draft.bout_wh(key)
+                self.quota[self.group[person], station] -= length
+                return True
+            # Shorter only helps where something fixed lies ahead.
+            if not self._blocked_ahead(person, station, slot, length):
+                return False
+        return False
 
     def _blocked_ahead(self, person: int, station: int, slot: int, length: int) -> bool:
         draft, problem = self.draft, self.problem
@@ -142,6 +154,6 @@ def first_rota(
         Bouts that keep every hard rule.
     """
     draft = Draft(problem) if fixed is None else fixed
-    Walk(draft, limits.target_wh, limits.share, slots_at(problem, limits.greatest_load)).run(ahead, spaced=spaced)
+    Walk(draft, limits, slots_at(problem, limits.greatest_load), spaced=spaced).run(ahead)
     draft.forget()
     return draft
