@@ -28,6 +28,9 @@ PAPER_KEY = "rota"
 UNITS_ACROSS = 5
 # Up to here every start and end has a row of its own; more would not leave room for the rest of the page.
 ROWS_DOWN = 17
+# With so few stations the watcher stands in the same line, which brings most days onto one sheet.
+ONE_LINE_UNITS = 3
+WATCH_NOTE = "Name + who watches."
 _HOUR_MIN = 60
 _BLOCK_SHADE = 0.5
 
@@ -119,6 +122,7 @@ def _table(plan: Plan, day: int, bouts: Sequence[RotaBout], columns: Sequence[_C
         *(cell(*_unit_lines(station, unit), strong=True) for station, unit in columns),
     )
     by_unit = [[bout for bout in bouts if (bout.station, bout.unit) == (each.id, unit)] for each, unit in columns]
+    one_line = len(columns) <= ONE_LINE_UNITS
     rows: list[tuple[Cell, ...]] = []
     for start, end, block in _slots(plan, day, [bout for line in by_unit for bout in line]):
         time = f"{clock(start)}–{clock(end)}"
@@ -126,12 +130,19 @@ def _table(plan: Plan, day: int, bouts: Sequence[RotaBout], columns: Sequence[_C
             shaded = Cell(lines=(block,), align="centre", shade_fraction=_BLOCK_SHADE, span=len(columns))
             rows.append((cell(time, shade_fraction=_BLOCK_SHADE), shaded))
             continue
-        cells = [_unit_cells(line, (start, end), names) for line in by_unit]
+        cells = [_unit_cells(line, (start, end), names, one_line) for line in by_unit]
         # Several bouts of one unit in a row of an hour stand below each other, each with its own times.
         for place in range(max(1, *(len(column) for column in cells))):
             beside = (column[place] if place < len(column) else cell("" if place else "–") for column in cells)
             rows.append((cell("" if place else time), *beside))
-    return Table(title="", header=(header,), rows=tuple(rows), widths=(0.8, *(1.5 for _ in columns)))
+    watched = any(bout.watcher for line in by_unit for bout in line)
+    return Table(
+        title="",
+        header=(header,),
+        rows=tuple(rows),
+        widths=(0.8, *(1.5 for _ in columns)),
+        footnotes=(WATCH_NOTE,) if one_line and watched else (),
+    )
 
 
 def _unit_lines(station: Station, unit: int) -> tuple[str, ...]:
@@ -139,7 +150,7 @@ def _unit_lines(station: Station, unit: int) -> tuple[str, ...]:
     return (name, f"unit {unit}") if station.count > 1 else (name,)
 
 
-def _unit_cells(line: Sequence[RotaBout], row: tuple[int, int], names: dict[str, str]) -> list[Cell]:
+def _unit_cells(line: Sequence[RotaBout], row: tuple[int, int], names: dict[str, str], one_line: bool) -> list[Cell]:
     """Return the bouts that start on one unit in one row; if none does, who is still turning."""
     start, end = row
     cells = []
@@ -148,8 +159,13 @@ def _unit_cells(line: Sequence[RotaBout], row: tuple[int, int], names: dict[str,
         if start <= bout.start_min < end:
             exact = (bout.start_min, bout.end_min) == row
             first = name if exact else f"{clock(bout.start_min)}–{clock(bout.end_min)} {name}"
-            below = (f"{names.get(bout.watcher, plain(bout.watcher))} watches",) if bout.watcher else ()
-            cells.append(cell(first, *below))
+            watcher = names.get(bout.watcher, plain(bout.watcher)) if bout.watcher else ""
+            if not watcher:
+                cells.append(cell(first))
+            elif one_line:
+                cells.append(cell(f"{first} + {watcher}"))
+            else:
+                cells.append(cell(first, f"{watcher} watches"))
     if not cells:
         on = [bout for bout in line if bout.start_min < start < bout.end_min]
         cells += [cell(f"({names.get(bout.person, plain(bout.person))} to {clock(bout.end_min)})") for bout in on]
