@@ -23,7 +23,7 @@ from kitplanner.ui import energy_line_access
 from kitplanner.ui.energy_line_chain import chain_picture
 from kitplanner.ui.energy_line_layout import day_picture
 from kitplanner.ui.energy_line_paint import paint_picture
-from kitplanner.ui.energy_line_picture import Frame, Picture, Spot
+from kitplanner.ui.energy_line_picture import Frame, Measure, Picture, Spot
 from kitplanner.ui.energy_line_text import empty_text
 from kitplanner.ui.guard import guarded
 from kitplanner.ui.spotted_widget import SpottedWidget
@@ -34,9 +34,17 @@ _SIDE_STEPS = {Qt.Key.Key_Down: 1, Qt.Key.Key_Up: -1}
 _CHOOSE = (Qt.Key.Key_Return, Qt.Key.Key_Enter, Qt.Key.Key_Space)
 
 
-def measure(text: str, size: str, bold: bool) -> float:
-    """Return the width of a text in one of the type sizes."""
-    return QFontMetricsF(type_font(size, bold=bold)).horizontalAdvance(text) + 1.0  # type: ignore[arg-type]
+def measure() -> Measure:
+    """Return what tells the width of a text in one of the type sizes, as they are now."""
+    known: dict[tuple[str, bool], QFontMetricsF] = {}
+
+    def width(text: str, size: str, bold: bool) -> float:
+        metrics = known.get((size, bold))
+        if metrics is None:
+            metrics = known[size, bold] = QFontMetricsF(type_font(size, bold=bold))  # type: ignore[arg-type]
+        return metrics.horizontalAdvance(text) + 1.0
+
+    return width
 
 
 class EnergyLine(SpottedWidget):
@@ -104,7 +112,7 @@ class EnergyLine(SpottedWidget):
         if not self.ready:
             return
         text, small = QFontMetricsF(type_font("text")), QFontMetricsF(type_font("small"))
-        frame = Frame(float(self.width()), float(self.height()), text.height(), small.height(), measure)
+        frame = Frame(float(self.width()), float(self.height()), text.height(), small.height(), measure())
         if self._point is not None:
             self._picture = chain_picture(self._point, self._point_name, frame)
         elif self._flow is not None:

@@ -9,6 +9,7 @@ from PySide6.QtCore import QCoreApplication
 from kitplanner.planners.results import BenchPoint, EnergyFlow, FlowBand
 
 LEVELS = ("M", "S", "B", "O", "D")
+translate = QCoreApplication.translate
 SECTIONS = ("people", "stations", "stores", "stores", "devices")
 
 
@@ -22,10 +23,6 @@ def figure(value: float) -> str:
 def watts(value: float) -> str:
     """Return a power of a station's chain, to the hundredth of a watt below ten."""
     return f"{value:.1f}" if abs(value) >= 9.995 else f"{value:.2f}"
-
-
-def _tr(text: str) -> str:
-    return QCoreApplication.translate("EnergyLine", text)
 
 
 @dataclass(frozen=True)
@@ -47,8 +44,8 @@ def total(bands: tuple[FlowBand, ...]) -> float:
 def _values(wh: float) -> tuple[str, ...]:
     text = figure(wh)
     return (
-        QCoreApplication.translate("EnergyLine", "{wh} Wh a day").format(wh=text),
-        QCoreApplication.translate("EnergyLine", "{wh} Wh").format(wh=text),
+        translate("EnergyLine", "{wh} Wh a day").format(wh=text),
+        translate("EnergyLine", "{wh} Wh").format(wh=text),
         text,
     )
 
@@ -62,22 +59,23 @@ def day_stages(flow: EnergyFlow) -> tuple[StageText, ...]:
     people, stations, devices = total(flow.people_m), total(flow.stations_s), total(flow.devices_d)
     have = flow.o_wh + flow.start_o_wh
     titles = (
-        (_tr("People"),),
-        (_tr("Stations"),),
-        (_tr("Into stores"), _tr("Stores")),
-        (_tr("Out of stores"), _tr("Outlets")),
-        (_tr("Devices"),),
+        (translate("EnergyLine", "People"),),
+        (translate("EnergyLine", "Stations"),),
+        (translate("EnergyLine", "Into stores"), translate("EnergyLine", "Stores")),
+        (translate("EnergyLine", "Out of stores"), translate("EnergyLine", "Outlets")),
+        (translate("EnergyLine", "Devices"),),
     )
     shown = (people, stations, flow.b_wh, have, devices)
     sentences = (
-        _tr("People put {wh} Wh a day into cranks and pedals (M).").format(wh=figure(people))
-        + _list(_tr(" By kind of station: {parts}."), flow.people_m),
-        _tr("Stations give {wh} Wh a day at their sockets (S).").format(wh=figure(stations))
-        + _list(_tr(" {parts}."), flow.stations_s)
-        + _list(_tr(" Other sources add {parts}."), flow.sources_s),
-        _tr("{wh} Wh a day arrive in the stores (B).").format(wh=figure(flow.b_wh)),
+        translate("EnergyLine", "People put {wh} Wh a day into cranks and pedals (M).").format(wh=figure(people))
+        + _list(translate("EnergyLine", " By kind of station: {parts}."), flow.people_m),
+        translate("EnergyLine", "Stations give {wh} Wh a day at their sockets (S).").format(wh=figure(stations))
+        + _list(translate("EnergyLine", " {parts}."), flow.stations_s)
+        + _list(translate("EnergyLine", " Other sources add {parts}."), flow.sources_s),
+        translate("EnergyLine", "{wh} Wh a day arrive in the stores (B).").format(wh=figure(flow.b_wh)),
         _outlet_sentence(flow),
-        _tr("Devices need {wh} Wh a day (D).").format(wh=figure(devices)) + _list(" {parts}.", flow.devices_d),
+        translate("EnergyLine", "Devices need {wh} Wh a day (D).").format(wh=figure(devices))
+        + _list(" {parts}.", flow.devices_d),
     )
     return tuple(
         StageText(level, section, title, _values(wh), sentence + _loss_sentence(flow, level))
@@ -90,13 +88,19 @@ def _list(pattern: str, bands: tuple[FlowBand, ...]) -> str:
 
 
 def _outlet_sentence(flow: EnergyFlow) -> str:
-    text = _tr("{wh} Wh a day come out of the stores and stations (O).").format(wh=figure(flow.o_wh))
+    text = translate("EnergyLine", "{wh} Wh a day come out of the stores and stations (O).").format(
+        wh=figure(flow.o_wh)
+    )
     if flow.start_o_wh > 0:
-        text += _tr(" Energy stored at the start adds {wh} Wh a day.").format(wh=figure(flow.start_o_wh))
+        text += translate("EnergyLine", " Energy stored at the start adds {wh} Wh a day.").format(
+            wh=figure(flow.start_o_wh)
+        )
     if flow.missing_o_wh > 0:
-        text += _tr(" {wh} Wh a day are missing.").format(wh=figure(flow.missing_o_wh))
+        text += translate("EnergyLine", " {wh} Wh a day are missing.").format(wh=figure(flow.missing_o_wh))
     if flow.margin_o_wh + flow.spare_o_wh > 0:
-        text += _tr(" Kept back: {parts}.").format(parts=reserve_texts(flow.margin_o_wh, flow.spare_o_wh)[0])
+        text += translate("EnergyLine", " Kept back: {parts}.").format(
+            parts=reserve_texts(flow.margin_o_wh, flow.spare_o_wh)[0]
+        )
     return text
 
 
@@ -105,7 +109,7 @@ def _loss_sentence(flow: EnergyFlow, level: str) -> str:
     if not lost:
         return ""
     parts = ", ".join(f"{loss.label} {figure(loss.wh_per_day)} Wh" for loss in lost)
-    return _tr(" Lost on the way to {level}: {parts}.").format(level=lost[0].level_to, parts=parts)
+    return translate("EnergyLine", " Lost on the way to {level}: {parts}.").format(level=lost[0].level_to, parts=parts)
 
 
 def chain_stages(point: BenchPoint, name: str) -> tuple[StageText, ...]:
@@ -114,15 +118,21 @@ def chain_stages(point: BenchPoint, name: str) -> tuple[StageText, ...]:
     stages = []
     for index, stage in enumerate(point.stages):
         level = "M" if index == 0 else "S" if plug is not None and index == plug + 1 else ""
-        where = _tr(" at the crank (M)") if level == "M" else _tr(" at the output socket (S)") if level else ""
+        where = (
+            translate("EnergyLine", " at the crank (M)")
+            if level == "M"
+            else translate("EnergyLine", " at the output socket (S)")
+            if level
+            else ""
+        )
         got = watts(stage.in_w or 0.0)
-        sentence = _tr("{name}, {stage}: {w} W arrive{where}, {loss} W are lost.").format(
+        sentence = translate("EnergyLine", "{name}, {stage}: {w} W arrive{where}, {loss} W are lost.").format(
             name=name, stage=stage.name, w=got, where=where, loss=watts(stage.loss_w or 0.0)
         )
         stages.append(StageText(level, "stations", (stage.name,), (f"{got} W", got), sentence))
     stored = watts(point.stored_w or 0.0)
-    sentence = _tr("{name}: {w} W are stored.").format(name=name, w=stored)
-    stages.append(StageText("", "stations", (_tr("Stored"),), (f"{stored} W", stored), sentence))
+    sentence = translate("EnergyLine", "{name}: {w} W are stored.").format(name=name, w=stored)
+    stages.append(StageText("", "stations", (translate("EnergyLine", "Stored"),), (f"{stored} W", stored), sentence))
     return tuple(stages)
 
 
@@ -138,40 +148,42 @@ def plug_index(point: BenchPoint) -> int | None:
 
 def start_name() -> str:
     """Return the name of energy that was stored at the start."""
-    return _tr("stored at the start")
+    return translate("EnergyLine", "stored at the start")
 
 
 def missing_text(wh: float) -> str:
     """Return the words of the gap."""
-    return _tr("{wh} Wh missing").format(wh=figure(wh))
+    return translate("EnergyLine", "{wh} Wh missing").format(wh=figure(wh))
 
 
 def reserve_texts(margin_wh: float, spare_wh: float) -> tuple[str, ...]:
     """Return the words of what is kept back, from the fullest to the shortest."""
-    margin = _tr("margin {wh} Wh").format(wh=figure(margin_wh))
-    spare = _tr("spare {wh} Wh").format(wh=figure(spare_wh))
+    margin = translate("EnergyLine", "margin {wh} Wh").format(wh=figure(margin_wh))
+    spare = translate("EnergyLine", "spare {wh} Wh").format(wh=figure(spare_wh))
     if spare_wh < 0.05:
         return (margin, figure(margin_wh))
     if margin_wh < 0.05:
         return (spare, figure(spare_wh))
-    both = _tr("kept back {wh} Wh").format(wh=figure(margin_wh + spare_wh))
+    both = translate("EnergyLine", "kept back {wh} Wh").format(wh=figure(margin_wh + spare_wh))
     return (f"{margin}, {spare}", both, f"+{figure(margin_wh + spare_wh)} Wh", figure(margin_wh + spare_wh))
 
 
 def rest_text(count: int, wh: float) -> str:
     """Return the words for device categories that had no room."""
-    return _tr("and {n} more, {wh} Wh").format(n=count, wh=figure(wh))
+    return translate("EnergyLine", "and {n} more, {wh} Wh").format(n=count, wh=figure(wh))
 
 
 def empty_text() -> str:
     """Return what the line says before there is anything to draw."""
-    return _tr("Add people, stations and devices, and this line shows where each day's energy goes.")
+    return translate(
+        "EnergyLine", "Add people, stations and devices, and this line shows where each day's energy goes."
+    )
 
 
 def chain_title(point: BenchPoint, name: str) -> str:
     """Return the heading over a station's own chain."""
     if point.human_w is None or point.rpm is None:
-        return _tr("{name}: no output at this point. Esc returns to the day.").format(name=name)
-    return _tr("{name} at {rpm} turns a minute, in watts. Esc returns to the day.").format(
+        return translate("EnergyLine", "{name}: no output at this point. Esc returns to the day.").format(name=name)
+    return translate("EnergyLine", "{name} at {rpm} turns a minute, in watts. Esc returns to the day.").format(
         name=name, rpm=f"{point.rpm:.0f}"
     )

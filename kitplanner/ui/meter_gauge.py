@@ -25,7 +25,7 @@ class MeterGauge(QWidget):
         self._high: float | None = None
         self._now: float | None = None
         self.setAccessibleName(self.tr("Panel meter in front of the regulator"))
-        self.setSizePolicy(QSizePolicy.Policy.Preferred, QSizePolicy.Policy.Fixed)
+        self.setSizePolicy(QSizePolicy.Policy.Fixed, QSizePolicy.Policy.Fixed)
 
     def set_reading(self, low: float | None, high: float | None, now: float | None, words: str) -> None:
         """Show a band and a needle; `words` say the same."""

@@ -42,7 +42,7 @@ def line(qtbot, look):
 def frame(width=1000.0, height=None):
     text, small = QFontMetricsF(theme.type_font("text")), QFontMetricsF(theme.type_font("small"))
     tall = height or text.height() + 3.2 * small.height() + 112
-    return Frame(width, tall, text.height(), small.height(), measure)
+    return Frame(width, tall, text.height(), small.height(), measure())
 
 
 def overlaps(picture, sizes):

@@ -41,6 +41,7 @@ class Plot(pg.PlotWidget):
         for stray in set(QApplication.topLevelWidgets()) - before - {self}:
             if stray.parent() is None:
                 stray.setParent(self)
+                stray.hide()
         self._data: ChartData | None = None
         self._cursor: pg.InfiniteLine | None = None
         self._cursor_at: float | None = None
@@ -50,7 +51,8 @@ class Plot(pg.PlotWidget):
         item.hideButtons()
         self.setMouseEnabled(x=False, y=False)
         self.getViewBox().setMouseEnabled(False, False)
-        self.setFocusPolicy(Qt.FocusPolicy.NoFocus)
+        for widget in (self, self.viewport()):
+            widget.setFocusPolicy(Qt.FocusPolicy.NoFocus)
         self.setFrameShape(QFrame.Shape.NoFrame)
         self.ready = True
         self._style()

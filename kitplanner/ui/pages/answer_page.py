@@ -15,6 +15,9 @@ from kitplanner.planners.pipeline import Results
 from kitplanner.ui.guard import guarded
 from kitplanner.ui.pages.chart_frame import ChartFrame, restyle_labels
 
+# Later than the next frame: energy line and verdict come first, and edits in quick succession draw once.
+REFRESH_MS = 25
+
 
 class PageColumn(QWidget):
     """The column that scrolls; tells when it was painted for the first time.
@@ -34,7 +37,11 @@ class PageColumn(QWidget):
         super().paintEvent(event)
         if not self._was_painted:
             self._was_painted = True
-            QTimer.singleShot(0, self.first_painted.emit)
+            # A timer of the column's own ends with it; a single shot would still come after its end.
+            timer = QTimer(self)
+            timer.setSingleShot(True)
+            timer.timeout.connect(self.first_painted)
+            timer.start()
 
 
 class AnswerPage(QWidget):
@@ -56,6 +63,10 @@ class AnswerPage(QWidget):
         self.results: Results | None = None
         self._is_stale = False
         self.is_loaded = False
+        self._timer = QTimer(self)
+        self._timer.setSingleShot(True)
+        self._timer.setInterval(REFRESH_MS)
+        self._timer.timeout.connect(self.catch_up)
         content = PageColumn()
         content.first_painted.connect(self.load_charts)
         self.column = QVBoxLayout(content)
@@ -72,12 +83,11 @@ class AnswerPage(QWidget):
         self.ready = True
 
     def set_answers(self, plan: Plan, results: Results | None) -> None:
-        """Take a plan and its results; draw them now if the page is in sight."""
+        """Take a plan and its results; a page in sight draws them after the window's own lines have been painted."""
         self.plan, self.results = plan, results
+        self._is_stale = True
         if self.isVisible():
-            self._refresh_now()
-        else:
-            self._is_stale = True
+            self._timer.start()
 
     def refresh(self) -> None:
         """Draw plan and results; every page has its own."""
@@ -86,9 +96,11 @@ class AnswerPage(QWidget):
         """Return the page's charts."""
         return self.findChildren(ChartFrame)
 
-    def _refresh_now(self) -> None:
-        self._is_stale = False
-        if self.plan is not None:
+    @Slot()
+    def catch_up(self) -> None:
+        """Draw the newest answers if they are not drawn yet; a hidden page waits until it is shown."""
+        if self._is_stale and self.plan is not None and self.isVisible():
+            self._is_stale = False
             self.refresh()
 
     @Slot()
@@ -105,8 +117,7 @@ class AnswerPage(QWidget):
     def showEvent(self, event: QShowEvent) -> None:
         """Catch up with what changed while the page was hidden."""
         super().showEvent(event)
-        if self._is_stale:
-            self._refresh_now()
+        self.catch_up()
 
     @guarded()
     def changeEvent(self, event: QEvent) -> None:

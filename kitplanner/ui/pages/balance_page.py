@@ -42,6 +42,8 @@ class BalancePage(AnswerPage):
         self.stores = plain_label(size="small")
         self.people = plain_label(size="small")
         self._parts: list[QWidget] = []
+        self._shown_plan: Plan | None = None
+        self._shown: BalanceResult | None = None
         self._build()
 
     def _build(self) -> None:
@@ -78,6 +80,9 @@ class BalancePage(AnswerPage):
         plan, results = self.plan, self.results
         assert plan is not None
         balance = results.balance if results is not None else None
+        if balance is not None and plan is self._shown_plan and balance is self._shown:
+            return
+        self._shown_plan, self._shown = plan, balance
         for part in self._parts:
             part.setVisible(balance is not None)
         if balance is None:

@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from PySide6.QtCore import QSignalBlocker, Qt, Signal, Slot
-from PySide6.QtWidgets import QCheckBox, QComboBox, QGridLayout, QLabel, QPushButton, QSizePolicy, QSlider, QWidget
+from PySide6.QtWidgets import QCheckBox, QComboBox, QGridLayout, QLabel, QPushButton, QSlider, QWidget
 
 from kitplanner.plan.records import Plan
 from kitplanner.report.wording import plain
@@ -73,12 +73,11 @@ class BenchControls(QWidget):
             label.setBuddy(buddy)
             grid.addWidget(label, row, 0)
             grid.addWidget(buddy, row, 1, 1, 2)
-        grid.addWidget(self.rpm, 2, 1)
+        grid.addWidget(self.rpm, 2, 1, Qt.AlignmentFlag.AlignLeading)
         grid.addWidget(self.best, 2, 2)
         grid.addWidget(self.fixed, 3, 1)
         grid.addWidget(self.amps, 3, 2)
         grid.setColumnStretch(1, 1)
-        self.rpm.setSizePolicy(QSizePolicy.Policy.Preferred, QSizePolicy.Policy.Fixed)
 
     def asked_rpm(self) -> float | None:
         """Return the cadence asked for, None for the best one."""

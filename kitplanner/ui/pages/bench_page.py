@@ -61,12 +61,12 @@ class BenchPage(AnswerPage):
         self.point: BenchPoint | None = None
         self._answers = QWidget()
         self._build()
-        self._timer = QTimer(self)
-        self._timer.setSingleShot(True)
-        self._timer.setInterval(16)
-        self._timer.timeout.connect(self._work_out)
-        self.controls.asked.connect(self._timer.start)
-        self.controls.station_chosen.connect(self._timer.start)
+        self._ask_timer = QTimer(self)
+        self._ask_timer.setSingleShot(True)
+        self._ask_timer.setInterval(16)
+        self._ask_timer.timeout.connect(self._work_out)
+        self.controls.asked.connect(self._ask_timer.start)
+        self.controls.station_chosen.connect(self._ask_timer.start)
 
     @staticmethod
     def _frame(title: str) -> ChartFrame:

@@ -89,10 +89,10 @@ class EffortPage(AnswerPage):
         self.curve = ChartFrame(self.tr("State of charge while turning"), height_lines=14)
         self.one_charge = OneChargeBox()
         self._build()
-        self._timer = QTimer(self)
-        self._timer.setSingleShot(True)
-        self._timer.setInterval(CURVE_DELAY_MS)
-        self._timer.timeout.connect(self._draw_curve)
+        self._curve_timer = QTimer(self)
+        self._curve_timer.setSingleShot(True)
+        self._curve_timer.setInterval(CURVE_DELAY_MS)
+        self._curve_timer.timeout.connect(self._draw_curve)
         for box in (self.person, self.route, self.charge):
             box.currentIndexChanged.connect(self._on_choice)
         self.matrix.row_chosen.connect(self._on_row_chosen)
@@ -180,7 +180,7 @@ class EffortPage(AnswerPage):
             self.chosen.setText(self.tr("Choose a cell to see its charge curve.") if self.plan is not None else "")
         else:
             self.chosen.setText(effort_sentence(self.plan, row))
-        self._timer.start()
+        self._curve_timer.start()
 
     @Slot()
     def _draw_curve(self) -> None:

@@ -35,6 +35,8 @@ class OneChargeBox(QFrame):
         self.watts = self._spin(self.tr("W"), 6.0, 0.1, 2_000.0)
         self.answer = plain_label(size="title", bold=True)
         self.sentence = plain_label()
+        self.wh.setAccessibleName(self.tr("Battery of the phone, watt-hours"))
+        self.watts.setAccessibleName(self.tr("Station's output, watts"))
         form = QFormLayout()
         form.setRowWrapPolicy(QFormLayout.RowWrapPolicy.WrapLongRows)
         form.addRow(self.tr("&Battery of the phone"), self.wh)

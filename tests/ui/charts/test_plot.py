@@ -7,7 +7,7 @@ import pyqtgraph as pg
 import pytest
 from PySide6.QtCore import QPoint, QPointF, Qt
 from PySide6.QtGui import QWheelEvent
-from PySide6.QtWidgets import QApplication
+from PySide6.QtWidgets import QApplication, QMenu
 
 from kitplanner.ui import theme
 from kitplanner.ui.charts.bar_items import HatchedBars
@@ -140,3 +140,9 @@ def test_words_that_have_no_room_give_way(plot):
     assert words(plot) == []
     plot.resize(1400, 200)
     assert len(words(plot)) == 10
+
+
+def test_the_library_s_menus_never_show(plot):
+    plot.set_data(chart(lines=(Line(X, X / 10),)))
+    plot.grab()
+    assert not [menu for menu in plot.findChildren(QMenu) if menu.isVisible()]

@@ -78,6 +78,7 @@ def test_devices_table_lists_every_device(page):
 def test_no_balance_says_why(page):
     plan, results = demo_answers("shelter")
     page.set_answers(plan, replace(results, balance=None))
+    page.catch_up()
     assert "worked out" in page.verdict.text()
     assert not page.hours.isVisible()
 

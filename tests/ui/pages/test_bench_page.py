@@ -104,6 +104,7 @@ def test_sweep_table_has_a_state_for_each_cadence():
 def test_plan_without_parts_says_so(qtbot, page):
     with qtbot.waitSignal(page.point_changed) as told:
         page.set_answers(*demo_answers("household"))
+        page.catch_up()
     assert told.args == [None, ""]
     assert "described by its parts" in page.answer.text()
     assert not page.stages.isVisible()
@@ -115,6 +116,7 @@ def test_an_edit_of_the_station_is_followed(qtbot, page):
     weaker = replace(station, machine=replace(station.machine, ra_ohm=station.machine.ra_ohm * 2))
     before = np.array(page._sweep.stored_w)
     page.set_answers(replace(plan, stations=(weaker, *plan.stations[1:])), results)
+    page.catch_up()
     after = page._sweep.stored_w
     assert np.nanmax(before) > np.nanmax(after)
 

@@ -129,6 +129,7 @@ def test_screen_reader_hears_names_minutes_and_range(page):
 def test_plan_with_errors_says_why_there_is_nothing(qtbot, page):
     plan, results = demo_answers("camp")
     page.set_answers(plan, replace(results, effort=None, balance=None, flow=None, problems=()))
+    page.catch_up()
     assert "worked out" in page.summary.text()
     assert not page.matrix.isVisible()
 
