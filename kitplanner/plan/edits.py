@@ -9,7 +9,9 @@ from __future__ import annotations
 
 import math
 import re
-from collections.abc import Callable
+from collections.abc import Callable, Mapping
+from functools import cache
+from types import MappingProxyType
 from typing import Any
 
 import msgspec
@@ -253,9 +255,15 @@ def _with_note(record: Any, key: str, note: Any, path: Path) -> Any:
     return record if changed == record.notes else structs.replace(record, notes=changed)
 
 
+@cache
+def _types_of(kind: type[Record]) -> Mapping[str, Any]:
+    """Return the types of a record's keys; read once, because the annotations are text."""
+    return MappingProxyType({one.name: one.type for one in structs.fields(kind)})
+
+
 def _holdable(record: Record, key: str, value: Any, path: Path) -> Any:
     """Return the value as a file would give it back; EditError if no file could hold it."""
-    wanted = next(one.type for one in structs.fields(record) if one.name == key)
+    wanted = _types_of(type(record))[key]
     try:
         held = msgspec.convert(msgspec.to_builtins(value), wanted, strict=True)
     except (msgspec.ValidationError, TypeError, OverflowError) as error:

@@ -159,7 +159,7 @@ def _people_levers(plan: Plan, cover: Cover) -> Iterator[Lever]:
             return _with_units(plan, cover, LeverChange(lever=key, to=to))
 
         yield Lever(f"minutes:{target}", now, steps, "min a day", minutes)
-        if len(steps) and len(with_units(steps[-1])) > 1:
+        if steps and len(with_units(steps[-1])) > 1:
             yield Lever(f"minutes+units:{target}", now, steps, "min a day, with the stations they need", with_units)
     yield from _volunteer_levers(plan, cover)
 

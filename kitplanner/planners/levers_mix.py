@@ -9,8 +9,8 @@ for each side only the choices that no other beats in both cost and energy, and 
 from __future__ import annotations
 
 import itertools
-from collections.abc import Callable, Sequence
-from dataclasses import dataclass
+from collections.abc import Callable, Iterable, Mapping, Sequence
+from dataclasses import dataclass, replace
 from types import MappingProxyType
 
 import numpy as np
@@ -27,7 +27,6 @@ from kitplanner.planners.levers_list import (
     half_of,
     is_set_of_lamps,
     lamp_steps,
-    least_use,
     turning_targets,
     use_now,
     use_steps,
@@ -40,17 +39,23 @@ PRIORITY_WEIGHTS = MappingProxyType({1: 16.0, 2: 8.0, 3: 4.0, 4: 2.0, 5: 1.0})
 _MOST_GROUPS, _MINUTE_STEPS = 4, 2
 # Equal costs go to whoever changes fewer things; far below a watt-hour.
 _PER_CHANGE_COST = 1e-6
+# Where few changes count first: far above any cost.
+_PER_THING_COST = 1e6
 _SHARE_STEPS = 100
 _ROUNDING_WH = 1e-9
 
 
 @dataclass(frozen=True, slots=True)
 class Option:
-    """One choice for one line or one set of people: what it saves or brings over the horizon, and its cost."""
+    """One choice for one line or one set of people: what it saves or brings over the horizon, and its cost.
+
+    `kept_fraction` is the share of its use a line keeps.
+    """
 
     changes: tuple[LeverChange, ...]
     wh: float
     cost: float
+    kept_fraction: float = 1.0
 
 
 _NOTHING = Option((), 0.0, 0.0)
@@ -73,27 +78,38 @@ def combinations(plan: Plan, cover: Cover, unmet_wh: Callable[[Plan], float] | N
     tuple of Combination
         None where even all cuts to a third and all minutes together are not enough.
     """
-    lines = {device.id: line_options(plan, device) for device in plan.devices if use_wh_per_day(device) > 0.0}
-    minutes = _minute_options(plan, cover)
     missing = need_wh(plan) - cover.have_wh(plan)
-    found: list[tuple[Character, tuple[LeverChange, ...]]] = []
-
-    def keep(character: Character, option: Option | None) -> Option | None:
-        if option is not None and not any(set(option.changes) == set(other) for _, other in found):
-            found.append((character, option.changes))
-        return option
-
-    mildest = keep("mildest", cheapest((*lines.values(), minutes), missing))
-    keep("cuts_only", cheapest(tuple(lines.values()), missing))
-    keep("alike", _alike(plan, missing))
-    spared = _most_cut(plan, mildest)
-    if spared is not None:
-        others = tuple(options for key, options in lines.items() if key != spared)
-        keep("spares_one", cheapest((*others, _more_turning_options(plan, cover)), missing))
-    keep("more_turning", _more_turning(plan, cover, tuple(lines.values()), missing))
-    keep("fewest", _fewest((*lines.values(), minutes), missing))
+    lines = {device.id: line_options(plan, device) for device in plan.devices if use_wh_per_day(device) > 0.0}
+    spared = {device.id for device in plan.devices if device.priority <= LIFE_SAFETY_PRIORITY}
+    found = _found(plan, cover, {key: each for key, each in lines.items() if key not in spared}, missing)
+    # What warns people and calls help is touched only where nothing else is enough.
+    found = found or _found(plan, cover, lines, missing)
     rows = [_combination(plan, cover, character, changes, unmet_wh) for character, changes in found]
     return tuple(sorted(rows, key=lambda row: row.cost))
+
+
+def _found(
+    plan: Plan, cover: Cover, lines: Mapping[str, tuple[Option, ...]], missing_wh: float
+) -> list[tuple[Character, tuple[LeverChange, ...]]]:
+    """Return the combinations of some lines and of minutes, each only once."""
+    minutes = _minute_options(plan, cover)
+    cuts = tuple(lines.values())
+    mildest = cheapest((*cuts, minutes), missing_wh)
+    most_cut = _most_cut(lines, mildest)
+    others = tuple(options for key, options in lines.items() if key != most_cut)
+    tried: tuple[tuple[Character, Option | None], ...] = (
+        ("mildest", mildest),
+        ("cuts_only", cheapest(cuts, missing_wh)),
+        ("alike", _alike(cuts, missing_wh)),
+        ("spares_one", cheapest((*others, _with_one_more_unit(plan, cover, minutes)), missing_wh)),
+        ("more_turning", _more_turning(plan, cover, cuts, missing_wh)),
+        ("fewest", _fewest((*cuts, minutes), missing_wh)),
+    )
+    found: list[tuple[Character, tuple[LeverChange, ...]]] = []
+    for character, option in tried:
+        if option is not None and not any(set(option.changes) == set(other) for _, other in found):
+            found.append((character, option.changes))
+    return found
 
 
 def line_options(plan: Plan, device: Device) -> tuple[Option, ...]:
@@ -107,9 +123,9 @@ def line_options(plan: Plan, device: Device) -> tuple[Option, ...]:
     options = [_NOTHING]
     for changes in _line_changes(device):
         cut = _changed(plan, changes, device.id)
-        given_up = day - cut.count * use_wh_per_day(cut)
+        kept = cut.count * use_wh_per_day(cut)
         saved = before - _net_need_wh(plan, cut)
-        options.append(Option(changes, saved, weight * given_up + _PER_CHANGE_COST * len(changes)))
+        options.append(Option(changes, saved, weight * (day - kept) + _PER_CHANGE_COST * len(changes), kept / day))
     return tuple(options)
 
 
@@ -180,17 +196,11 @@ def cheapest(parts: Sequence[Sequence[Option]], missing_wh: float) -> Option | N
         kept = order[costs[order] < best]
         tables.append((kept // len(part), kept % len(part)))
         wh, cost = sums[kept], costs[kept]
-    at = int(np.argmin(cost))
-    total_cost, changes = float(cost[at]), []
+    at, chosen = int(np.argmin(cost)), []
     for part, (before, choice) in zip(reversed(parts), reversed(tables), strict=True):
-        changes.append(part[int(choice[at])])
+        chosen.append(part[int(choice[at])])
         at = int(before[at])
-    chosen = [option for option in reversed(changes) if option.changes]
-    return Option(
-        tuple(change for option in chosen for change in option.changes),
-        sum(option.wh for option in chosen),
-        total_cost,
-    )
+    return _together(reversed(chosen))
 
 
 def _minute_options(plan: Plan, cover: Cover) -> tuple[Option, ...]:
@@ -243,20 +253,19 @@ def _all_minutes(plan: Plan) -> tuple[LeverChange, ...]:
     return tuple(LeverChange(lever=f"minutes:{target}", to=limit) for target, now, limit in ranges if limit > now)
 
 
-def _more_turning_options(plan: Plan, cover: Cover) -> tuple[Option, ...]:
-    """Return the groups' minutes with and without one more unit of the station that makes most."""
+def _with_one_more_unit(plan: Plan, cover: Cover, minutes: tuple[Option, ...]) -> tuple[Option, ...]:
+    """Return the people's choices with and without one more unit of the station that makes most."""
     added = _one_more_unit(plan, cover)
-    own = _minute_options(plan, cover)
     if added is None:
-        return own
+        return minutes
     larger = levers_edit((added,))(plan)
-    bonus = cover.have_wh(larger) - cover.have_wh(plan)
+    brought = cover.have_wh(larger) - cover.have_wh(plan)
     extra = max(0.0, turned_min(cover.supply(larger)) - turned_min(cover.supply(plan)))
     with_unit = [
-        Option((*option.changes, added), option.wh + bonus, option.cost + extra + _PER_CHANGE_COST)
+        Option((*option.changes, added), option.wh + brought, option.cost + extra + _PER_CHANGE_COST)
         for option in _minute_options(larger, cover)
     ]
-    return _undominated((*own, *with_unit))
+    return _undominated((*minutes, *with_unit))
 
 
 def _one_more_unit(plan: Plan, cover: Cover) -> LeverChange | None:
@@ -273,9 +282,7 @@ def _one_more_unit(plan: Plan, cover: Cover) -> LeverChange | None:
     return LeverChange(lever=f"units:{station_id}", to=count + 1)
 
 
-def _more_turning(
-    plan: Plan, cover: Cover, lines: tuple[tuple[Option, ...], ...], missing_wh: float
-) -> Option | None:
+def _more_turning(plan: Plan, cover: Cover, lines: tuple[tuple[Option, ...], ...], missing_wh: float) -> Option | None:
     """Return everybody's minutes at their limit with one more unit, and the mildest cuts that are then needed."""
     minutes, added = _all_minutes(plan), _one_more_unit(plan, cover)
     if not minutes or added is None:
@@ -288,60 +295,38 @@ def _more_turning(
     return Option((*cut.changes, *minutes, added), cut.wh + brought, cut.cost)
 
 
-def _alike(plan: Plan, missing_wh: float) -> Option | None:
-    """Return the same share cut from every line but life-safety, as little as is enough."""
+def _alike(lines: Sequence[Sequence[Option]], missing_wh: float) -> Option | None:
+    """Return the same share cut from every line, as little as is enough; a line stops at what it must keep."""
     for share in range(1, _SHARE_STEPS + 1):
-        options = [
-            _at_share(plan, device, 1.0 - share / _SHARE_STEPS)
-            for device in plan.devices
-            if device.priority > LIFE_SAFETY_PRIORITY and use_wh_per_day(device) > 0.0
-        ]
-        if any(option is None for option in options):
-            return None
-        chosen = [option for option in options if option is not None]
+        kept = 1.0 - share / _SHARE_STEPS
+        chosen = [next((each for each in part if each.kept_fraction <= kept + 1e-9), part[-1]) for part in lines]
         if sum(option.wh for option in chosen) >= missing_wh - _ROUNDING_WH:
-            changes = tuple(change for option in chosen for change in option.changes)
-            return Option(changes, sum(option.wh for option in chosen), sum(option.cost for option in chosen))
+            return _together(chosen)
     return None
 
 
-def _at_share(plan: Plan, device: Device, kept: float) -> Option | None:
-    """Return the option of a line that keeps just at most a share of its use; None below what it must keep."""
-    if kept < least_use(device) / use_now(device) - 1e-9:
-        kept = least_use(device) / use_now(device)
-        if device.priority >= COMFORT_PRIORITY:
-            return None
-    whole = device.count * use_wh_per_day(device)
-    for option in line_options(plan, device):
-        after = _changed(plan, option.changes, device.id) if option.changes else device
-        if after.count * use_wh_per_day(after) <= kept * whole + _ROUNDING_WH:
-            return option
-    return line_options(plan, device)[-1]
+def _together(options: Iterable[Option]) -> Option:
+    chosen = [option for option in options if option.changes]
+    changes = tuple(change for option in chosen for change in option.changes)
+    return Option(changes, sum(option.wh for option in chosen), sum(option.cost for option in chosen))
 
 
-def _most_cut(plan: Plan, option: Option | None) -> str | None:
-    """Return the line that gives up most in a combination."""
+def _most_cut(lines: Mapping[str, tuple[Option, ...]], option: Option | None) -> str | None:
+    """Return the line whose cut costs most in a combination."""
     if option is None:
         return None
-    given = [
-        (device.count * use_wh_per_day(device) - cut.count * use_wh_per_day(cut), device.id)
-        for device, cut in zip(plan.devices, levers_edit(option.changes)(plan).devices, strict=True)
-    ]
-    most = max(given, default=(0.0, ""))
-    return most[1] if most[0] > 0.0 else None
+    chosen = set(option.changes)
+    costs = {
+        key: next((each.cost for each in reversed(part) if each.changes and chosen.issuperset(each.changes)), 0.0)
+        for key, part in lines.items()
+    }
+    return max(costs, key=lambda key: costs[key], default=None)
 
 
 def _fewest(parts: Sequence[Sequence[Option]], missing_wh: float) -> Option | None:
     """Return the cheapest among the combinations that change the fewest things."""
-    by_count = [
-        [replaced_cost(option, 1e6 * len(option.changes) + option.cost) for option in part] for part in parts
-    ]
-    return cheapest(by_count, missing_wh)
-
-
-def replaced_cost(option: Option, cost: float) -> Option:
-    """Return an option at another price."""
-    return Option(option.changes, option.wh, cost)
+    priced = [[replace(each, cost=each.cost + _PER_THING_COST * len(each.changes)) for each in part] for part in parts]
+    return cheapest(priced, missing_wh)
 
 
 def _combination(
@@ -386,5 +371,3 @@ def _row(plan: Plan, change: LeverChange) -> ChangeRow:
         return ChangeRow(lever=change.lever, from_value=device.count, to=change.to, unit="units")
     unit = LEVEL_UNITS[device.use_by]
     return ChangeRow(lever=change.lever, from_value=use_now(device), to=change.to, unit=unit)
-
-
