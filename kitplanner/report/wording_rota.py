@@ -213,14 +213,8 @@ def _unmet_sentence(plan: Plan, device_id: str, rows: Sequence[UnmetUse]) -> str
 
 
 def violation_sentence(found: Violation) -> str:
-    """Return a broken rule with its place."""
-    place = f"day {found.day}" if found.day else ""
-    if found.start_min is not None:
-        place += f" {clock(min(max(found.start_min, 0), 1440))}"
-    who = plain(found.person) if found.person else ""
-    where = plain(found.station) if found.station else ""
-    head = ", ".join(part for part in (place.strip(), where, who) if part)
-    return sentence(f"{head}: {plain(found.text)}" if head else plain(found.text))
+    """Return a broken rule in one sentence; the judge's words name day, time and person."""
+    return sentence(plain(found.text))
 
 
 def remark_sentence(plan: Plan, remark: RotaRemark) -> str:
