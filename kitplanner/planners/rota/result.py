@@ -11,7 +11,22 @@ import numpy as np
 import numpy.typing as npt
 from msgspec import Struct
 
+from kitplanner.planners.rota.check import Violation
+
 FloatArray = npt.NDArray[np.float64]
+
+__all__ = [
+    "ObjectiveName",
+    "RotaAnswer",
+    "RotaBout",
+    "RotaCharge",
+    "RotaObjective",
+    "RotaProgress",
+    "RotaSolution",
+    "StoreLevels",
+    "UnmetUse",
+    "Violation",
+]
 
 ObjectiveName = Literal["unmet", "margin", "excess", "greatest_load", "spread", "unpopular", "handovers", "change"]
 
@@ -91,17 +106,6 @@ class RotaProgress(Struct, frozen=True, kw_only=True):
     stage: str
     value: float
     bound: float
-
-
-class Violation(Struct, frozen=True, kw_only=True):
-    """One broken rule: which, in words, and where; `start_min` None where it concerns a whole day or the plan."""
-
-    rule: str
-    text: str
-    day: int
-    start_min: int | None = None
-    person: str | None = None
-    station: str | None = None
 
 
 class StoreLevels(Struct, frozen=True, kw_only=True):
