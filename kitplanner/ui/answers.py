@@ -78,6 +78,10 @@ class Answers(QTabWidget):
         self._pages: dict[str, Any] = {}
         self._bands: dict[str, CautionBand] = {}
         self._waiting: list[PageEntry] = []
+        # A timer of its own ends with the tabs; a single shot would still come after the window is gone.
+        self._timer = QTimer(self)
+        self._timer.setSingleShot(True)
+        self._timer.timeout.connect(self._load_next)
         self.setAccessibleName(self.tr("Answers"))
         self.setDocumentMode(True)
         for entry in PAGES:
@@ -136,7 +140,7 @@ class Answers(QTabWidget):
         self._bands[entry.key] = band
         page.set_answers(self._plan, self._results)
         self.page_loaded.emit(entry.key)
-        QTimer.singleShot(0, self._load_next)
+        self._timer.start()
 
     @Slot(int)
     def _on_current_changed(self, _index: int) -> None:

@@ -46,6 +46,9 @@ class MainWindow(QMainWindow):
         super().__init__(parent)
         self.setAttribute(Qt.WidgetAttribute.WA_DeleteOnClose)
         self._has_painted = False
+        self._first_paint = QTimer(self)
+        self._first_paint.setSingleShot(True)
+        self._first_paint.timeout.connect(self._after_first_paint)
         self.document, self._settings = document, settings
         self.editing = Editing(document, self)
         self.gates = Gates(document, settings, self)
@@ -266,7 +269,7 @@ class MainWindow(QMainWindow):
         super().paintEvent(event)
         if not self._has_painted:
             self._has_painted = True
-            QTimer.singleShot(0, self._after_first_paint)
+            self._first_paint.start()
 
     @guarded()
     def resizeEvent(self, event: QResizeEvent) -> None:

@@ -9,7 +9,6 @@ from PySide6.QtCore import QSize, Qt, Slot
 from PySide6.QtGui import QAction, QKeySequence
 from PySide6.QtWidgets import (
     QAbstractItemView,
-    QHBoxLayout,
     QListWidget,
     QListWidgetItem,
     QMenu,
@@ -22,6 +21,7 @@ from kitplanner.plan.fields import FIELDS, kind_of
 from kitplanner.session.editing import Editing
 from kitplanner.session.field_text import translate
 from kitplanner.session.new_records import stage_word
+from kitplanner.ui.widgets.button_row import ButtonRow
 from kitplanner.ui.widgets.plain import plain_label
 from kitplanner.ui.widgets.record_form import RecordForm
 from kitplanner.ui.widgets.small_button import SmallButton
@@ -101,8 +101,6 @@ class NestedList(QWidget):
         self._list.setTextElideMode(Qt.TextElideMode.ElideRight)
         self._list.setSelectionMode(QAbstractItemView.SelectionMode.SingleSelection)
         self._title.setBuddy(self._list)
-        row = QHBoxLayout()
-        row.setSpacing(4)
         for name, text, slot in (
             ("add", self.tr("Add"), self._on_add),
             ("remove", self.tr("Remove"), self._on_remove),
@@ -112,12 +110,10 @@ class NestedList(QWidget):
             button = SmallButton(text, self)
             button.setAccessibleName(f"{text}: {title}")
             self._buttons[name] = button
-            row.addWidget(button)
             if name == "add" and len(self._kinds) > 1:
                 button.setMenu(self._make_menu())
             else:
                 button.clicked.connect(slot)
-        row.addStretch(1)
         remove = QAction(self.tr("Remove"), self._list)
         remove.setShortcut(QKeySequence(QKeySequence.StandardKey.Delete))
         remove.setShortcutContext(Qt.ShortcutContext.WidgetShortcut)
@@ -128,7 +124,7 @@ class NestedList(QWidget):
         self._layout.setSpacing(4)
         for widget in (self._title, self._list):
             self._layout.addWidget(widget)
-        self._layout.addLayout(row)
+        self._layout.addWidget(ButtonRow(tuple(self._buttons.values()), self))
 
     def _make_menu(self) -> QMenu:
         menu = QMenu(self)

@@ -9,7 +9,6 @@ from PySide6.QtCore import QItemSelectionModel, QModelIndex, Qt, Signal, Slot
 from PySide6.QtGui import QAction, QKeySequence
 from PySide6.QtWidgets import (
     QAbstractItemView,
-    QHBoxLayout,
     QHeaderView,
     QScrollArea,
     QSplitter,
@@ -30,6 +29,7 @@ from kitplanner.ui.models.field_delegate import FieldDelegate
 from kitplanner.ui.models.records_model import RecordsModel
 from kitplanner.ui.panels.record_details import RecordDetails, make_details
 from kitplanner.ui.panels.sections import PLAN_SECTION, Section
+from kitplanner.ui.widgets.button_row import ButtonRow
 from kitplanner.ui.widgets.plain import colour_label, plain_label
 from kitplanner.ui.widgets.small_button import SmallButton
 
@@ -206,7 +206,7 @@ class SectionPanel(QWidget):
         layout.setSpacing(4)
         layout.addWidget(self._hint)
         layout.addWidget(self.table, 1)
-        layout.addLayout(self._build_buttons())
+        layout.addWidget(self._build_buttons())
         splitter = QSplitter(Qt.Orientation.Vertical, self)
         splitter.setChildrenCollapsible(False)
         splitter.addWidget(top)
@@ -216,10 +216,8 @@ class SectionPanel(QWidget):
         self._layout.addWidget(splitter, 1)
         self._fit_rows()
 
-    def _build_buttons(self) -> QHBoxLayout:
+    def _build_buttons(self) -> ButtonRow:
         word = translate("Fields", singular(self.section.key))
-        row = QHBoxLayout()
-        row.setSpacing(4)
         for name, text, help_, slot in (
             ("add", self.tr("Add"), self.tr("Add: {what}"), self.add_one),
             ("several", self.tr("Several…"), self.tr("Add several: {what}"), self._on_several),
@@ -233,9 +231,7 @@ class SectionPanel(QWidget):
             button.setToolTip(help_.format(what=word))
             button.clicked.connect(slot)
             self._buttons[name] = button
-            row.addWidget(button)
-        row.addStretch(1)
-        return row
+        return ButtonRow(tuple(self._buttons.values()), self)
 
     def _fit_rows(self) -> None:
         if self.table is not None:

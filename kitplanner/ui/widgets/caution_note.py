@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from PySide6.QtCore import QEvent, Qt, Signal, Slot
-from PySide6.QtGui import QColor, QPainter, QPaintEvent, QPen
+from PySide6.QtGui import QColor, QPainter, QPaintEvent, QPen, QResizeEvent
 from PySide6.QtWidgets import QCheckBox, QLabel, QSizePolicy, QVBoxLayout, QWidget
 
 from kitplanner.ui import theme
@@ -82,6 +82,18 @@ class CautionNote(QWidget):
             painter.drawRect(self.rect().adjusted(0, 0, -1, -1))
         finally:
             painter.end()
+
+    @guarded()
+    def resizeEvent(self, event: QResizeEvent) -> None:
+        """Ask for the height that the whole text needs at this width; a form's layout forgets to."""
+        super().resizeEvent(event)
+        layout = self.layout()
+        needed = self.heightForWidth(self.width())
+        if layout is not None and needed > 0 and needed != self.minimumHeight():
+            self.setMinimumHeight(needed)
+            # Qt resized the note inside this very event; its layout has to be told once more.
+            layout.invalidate()
+            layout.setGeometry(self.rect())
 
     @guarded()
     def changeEvent(self, event: QEvent) -> None:

@@ -198,6 +198,7 @@ class FlagEditor(QCheckBox):
     def __init__(self, spec: FieldSpec, parent: QWidget | None = None) -> None:
         super().__init__(parent)
         self._spec = spec
+        self.setText(self.tr("yes"))
         self.setMinimumHeight(LEAST_TARGET_PX)
         self.clicked.connect(self._on_clicked)
 
