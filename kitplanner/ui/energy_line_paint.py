@@ -12,6 +12,7 @@ from kitplanner.ui.theme import CATEGORY_FILLS, Colours, text_on, type_font
 LEAD = 18.0
 INNER = 5.0
 TAIL = 9.0
+_MIDDLE = Qt.AlignmentFlag.AlignVCenter | Qt.TextFlag.TextDontClip
 
 
 def ribbon_path(ribbon: Ribbon) -> QPainterPath:
@@ -69,6 +70,8 @@ def mirrored(box: QRectF, width: float) -> QRectF:
 
 
 def _words(painter: QPainter, picture: Picture, scheme: Colours, mirror_width: float) -> None:
+    # Sides are set here, and the direction of letters by the text itself, not by the window.
+    painter.setLayoutDirection(Qt.LayoutDirection.LayoutDirectionAuto)
     swap = {Qt.AlignmentFlag.AlignLeft: Qt.AlignmentFlag.AlignRight}
     swap |= {value: key for key, value in swap.items()}
     for word in picture.words:
@@ -80,7 +83,7 @@ def _words(painter: QPainter, picture: Picture, scheme: Colours, mirror_width: f
         box = mirrored(word.box, mirror_width)
         if word.colour == "gap":
             painter.fillRect(box.adjusted(0, -1, 0, 1), scheme.color("paper"))
-        painter.drawText(box, int(align | Qt.AlignmentFlag.AlignVCenter | Qt.TextFlag.TextDontClip), word.text)
+        painter.drawText(box, int(align | Qt.AlignmentFlag.AlignAbsolute | _MIDDLE), word.text)
 
 
 def _ribbon(painter: QPainter, ribbon: Ribbon, scheme: Colours) -> None:

@@ -19,7 +19,7 @@ from kitplanner.report.wording_balance import evening_sentence, medical_sentence
 from kitplanner.report.wording_effort import range_words
 from kitplanner.ui.guard import guarded
 from kitplanner.ui.pages.chart_frame import plain_label, restyle_labels
-from kitplanner.ui.theme import colours, text_scale, type_font
+from kitplanner.ui.theme import TypeSize, colours, text_scale, type_font
 
 
 def phone_row(plan: Plan, results: Results) -> tuple[Device, EffortRow] | None:
@@ -191,9 +191,10 @@ class VerdictStrip(QFrame):
         detail = self._said[1] if wide else f"{self._said[0]}: {self._said[1]}"
         if self.detail.text() != detail:
             self.detail.setText(detail)
-        for label in (self.detail, self.phone):
-            label.setProperty("type_size", "text" if wide else "small")
-            label.setFont(type_font("text" if wide else "small", bold=not wide and label is self.detail))
+        size: TypeSize = "text" if wide else "small"
+        for label in (self.evening, self.detail, self.phone):
+            label.setProperty("type_size", size)
+            label.setFont(type_font(size, bold=label is self.evening or (not wide and label is self.detail)))
 
     def _phone_words(self, plan: Plan, results: Results | None) -> str:
         found = phone_row(plan, results) if results is not None else None

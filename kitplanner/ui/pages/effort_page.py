@@ -116,7 +116,7 @@ class EffortPage(AnswerPage):
             column.addWidget(label)
             column.addWidget(box)
             choices.append(holder)
-        self.column.addWidget(Columns(choices, 175))
+        self.column.addWidget(Columns(choices, 145))
         self.column.addWidget(self.summary)
         self.column.addWidget(self.matrix)
         self.column.addWidget(self.chosen)
