@@ -74,13 +74,14 @@ def test_calendars_keep_the_required_properties(plan: Plan) -> None:
 
 
 def test_times_float_and_midnight_is_the_next_day(plan: Plan) -> None:
-    first, last = (event for event in events_of(files_of(plan)["station-B-S2.ics"]))
-    assert first["dtstart"].dt == dt.datetime(2026, 7, 14, 8, 30)
-    assert first["dtend"].dt == dt.datetime(2026, 7, 14, 8, 50)
+    first, last = events_of(files_of(plan)["station-B-S2.ics"])
+    assert first["dtstart"].dt.isoformat() == "2026-07-14T08:30:00"
+    assert first["dtend"].dt.isoformat() == "2026-07-14T08:50:00"
     assert "TZID" not in first["dtstart"].params
     assert last["dtstart"].dt.tzinfo is None
     (late,) = events_of(files_of(plan)["station-B-S1.ics"])
-    assert (late["dtstart"].dt, late["dtend"].dt) == (dt.datetime(2026, 7, 16, 23, 40), dt.datetime(2026, 7, 17))
+    assert late["dtstart"].dt.isoformat() == "2026-07-16T23:40:00"
+    assert late["dtend"].dt.isoformat() == "2026-07-17T00:00:00"
 
 
 def test_people_are_numbers_unless_names_are_asked_for(plan: Plan) -> None:
@@ -150,7 +151,7 @@ def test_file_names_are_safe_whatever_the_ids(plan: Plan) -> None:
 
 
 def test_signs_with_a_meaning_in_the_format_come_back_whole(plan: Plan) -> None:
-    name = "Ann; Bo, C\\D: \"x\" é" + "long " * 40
+    name = 'Ann; Bo, C\\D: "x" é' + "long " * 40
     renamed = replace(plan, people=(replace(plan.people[0], name=name), *plan.people[1:]))
     event = events_of(files_of(renamed, names=True)["station-B-S2.ics"])[0]
     assert str(event["summary"]) == f"Unit 1: {name.strip()} turns"
