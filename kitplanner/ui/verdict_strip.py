@@ -26,7 +26,8 @@ def phone_row(plan: Plan, results: Results) -> tuple[Device, EffortRow] | None:
     """Return the plan's largest phone and the typical row of its full charge, directly or else through a store."""
     if results.effort is None:
         return None
-    phones = [device for device in plan.devices if device.kind == "phone" and device.battery_wh]
+    known = results.effort_plan or plan  # minutes arrive a moment after an edit
+    phones = [device for device in known.devices if device.kind == "phone" and device.battery_wh]
     for device in sorted(phones, key=lambda one: -(one.battery_wh or 0.0)):
         for route in ("direct", "store"):
             rows = [
@@ -201,7 +202,8 @@ class VerdictStrip(QFrame):
         if found is None:
             return ""
         device, row = found
-        person = next((plain(one.name) for one in plan.people if one.id == row.person), "")
+        people = results.effort_plan.people if results is not None and results.effort_plan is not None else plan.people
+        person = next((plain(one.name) for one in people if one.id == row.person), "")
         text = self.tr("One full charge, {device}: {time} of turning {range}")
         text = text.format(
             device=plain(device.name), time=minutes_words(row.minutes_p50), range=range_words(row)

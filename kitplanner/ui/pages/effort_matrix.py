@@ -244,8 +244,7 @@ class EffortMatrix(QTableView):
 
     def set_matrix(self, matrix: Matrix) -> None:
         """Show another table, keeping the chosen cell where it still exists."""
-        at = self.currentIndex()
-        place = (at.row(), at.column()) if at.isValid() else (0, 0)
+        place = self._place_again(matrix)
         self._model.set_matrix(matrix)
         self.verticalHeader().setDefaultSectionSize(row_height())
         self._fit_columns()
@@ -254,6 +253,19 @@ class EffortMatrix(QTableView):
             row, column = min(place[0], len(matrix.devices) - 1), min(place[1], len(matrix.stations) - 1)
             self.setCurrentIndex(self._model.index(row, column))
         self.row_chosen.emit(self.chosen_row())
+
+    def _place_again(self, matrix: Matrix) -> tuple[int, int]:
+        """Return where the chosen device and station stand in another table, else the same place."""
+        at, before = self.currentIndex(), self.chosen_row()
+        for number, line in enumerate(matrix.cells):
+            for column, row in enumerate(line):
+                if (
+                    before is not None
+                    and row is not None
+                    and (row.device, row.station) == (before.device, before.station)
+                ):
+                    return number, column
+        return (at.row(), at.column()) if at.isValid() else (0, 0)
 
     def chosen_row(self) -> EffortRow | None:
         """Return the row of the chosen cell."""

@@ -75,6 +75,7 @@ class EffortPage(AnswerPage):
         super().__init__(self.tr("Effort"), parent)
         self._rows: dict[RowKey, EffortRow] = {}
         self._rows_of: EffortResult | None = None
+        self._of_plan: Plan | None = None
         self.person = QComboBox()
         self.route = QComboBox()
         self.charge = QComboBox()
@@ -130,7 +131,9 @@ class EffortPage(AnswerPage):
         effort = results.effort if results is not None else None
         if effort is not self._rows_of:
             self._rows_of, self._rows = effort, rows_by_key(effort)
-        self._fill_people(plan)
+        # Minutes arrive a moment after an edit: until then table, names and curve stay those of the plan they are for.
+        self._of_plan = results.effort_plan if results is not None and results.effort_plan is not None else plan
+        self._fill_people(self._of_plan)
         self._show_matrix()
 
     def _fill_people(self, plan: Plan) -> None:
@@ -149,23 +152,28 @@ class EffortPage(AnswerPage):
 
     @Slot()
     def _on_choice(self) -> None:
-        if self.plan is not None:
+        if self._of_plan is not None:
             self._show_matrix()
 
     def _show_matrix(self) -> None:
-        assert self.plan is not None
+        assert self._of_plan is not None
         person, route, charge = (
             self.person.currentData() or TYPICAL,
             self.route.currentData(),
             self.charge.currentData(),
         )
-        matrix = build_matrix(self.plan, self._rows, person, route, charge)
+        matrix = build_matrix(self._of_plan, self._rows, person, route, charge)
         rows = [row for line in matrix.cells for row in line if row is not None]
         self.matrix.setVisible(bool(rows))
-        self.summary.setText(matrix_sentence(self.plan, rows) if rows else self._why_empty())
+        self.summary.setText(matrix_sentence(self._of_plan, rows) + self._why_old() if rows else self._why_empty())
         self.matrix.set_matrix(matrix)
         self.chosen.setVisible(bool(rows))
         self.curve.setVisible(bool(rows))
+
+    def _why_old(self) -> str:
+        if self.results is None or self.results.is_effort_current:
+            return ""
+        return " " + self.tr("The last change is being worked out.")
 
     def _why_empty(self) -> str:
         if self.results is not None and self.results.has_errors:
@@ -176,16 +184,19 @@ class EffortPage(AnswerPage):
 
     @Slot(object)
     def _on_row_chosen(self, row: EffortRow | None) -> None:
-        if row is None or self.plan is None:
-            self.chosen.setText(self.tr("Choose a cell to see its charge curve.") if self.plan is not None else "")
+        if row is None or self._of_plan is None:
+            self.chosen.setText(self.tr("Choose a cell to see its charge curve."))
         else:
-            self.chosen.setText(effort_sentence(self.plan, row))
+            self.chosen.setText(effort_sentence(self._of_plan, row))
         self._curve_timer.start()
 
     @Slot()
     def _draw_curve(self) -> None:
-        row, plan = self.matrix.chosen_row(), self.plan
-        if row is None or plan is None or not self.isVisible():
+        row, plan = self.matrix.chosen_row(), self._of_plan
+        if not self.isVisible():
+            self._is_stale = True
+            return
+        if row is None or plan is None:
             self.curve.set_content(None, "", TableData((), ()))
             return
         pair = (self._sibling(row, "direct"), self._sibling(row, "store"))

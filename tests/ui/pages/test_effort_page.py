@@ -6,6 +6,8 @@ import pytest
 from msgspec.structs import replace
 from PySide6.QtCore import Qt
 
+from kitplanner.plan.edits import remove_record
+from kitplanner.planners import pipeline
 from kitplanner.planners.effort import charge_curve
 from kitplanner.planners.results import EffortRow
 from kitplanner.report.wording import minutes
@@ -200,3 +202,36 @@ def test_delegate_paints_every_kind_of_cell(qtbot):
     assert isinstance(matrix.itemDelegate(), MinutesDelegate)
     image = matrix.grab().toImage()
     assert len({image.pixelColor(x, y).name() for x in range(150, 480, 3) for y in range(30, 70, 3)}) > 4
+
+
+def test_minutes_of_an_older_plan_keep_their_own_names_until_the_new_ones_come(qtbot, page):
+    plan, results = demo_answers("camp")
+    fewer = remove_record(("stations", plan.stations[0].id))(plan)
+    page.set_answers(fewer, pipeline.run_quick(fewer, results))
+    page.catch_up()
+    assert "being worked out" in page.summary.text()
+    assert plan.stations[0].name in page.matrix.matrix.stations
+    qtbot.wait(80)
+    page.set_answers(fewer, pipeline.run_slow(fewer, None))
+    page.catch_up()
+    assert "being worked out" not in page.summary.text()
+    assert plan.stations[0].name not in page.matrix.matrix.stations
+
+
+def test_chosen_pair_stays_chosen_when_lines_above_go(qtbot, page):
+    plan, _results = demo_answers("camp")
+    page.matrix.setCurrentIndex(page.matrix.model().index(3, 1))
+    before = page.matrix.chosen_row()
+    fewer = replace(plan, devices=plan.devices[1:])
+    page.set_answers(fewer, pipeline.run_slow(fewer, None))
+    page.catch_up()
+    after = page.matrix.chosen_row()
+    assert (after.device, after.station) == (before.device, before.station)
+
+
+def test_curve_is_drawn_again_when_the_page_comes_back(qtbot, page):
+    page.matrix.setCurrentIndex(page.matrix.model().index(1, 0))
+    page.hide()
+    qtbot.wait(60)
+    page.show()
+    qtbot.waitUntil(lambda: page.curve.plot.data is not None and page.curve.sentence.text() != "")
