@@ -6,7 +6,7 @@ Signals: none. `apply` sets the application's style, palette, font and a small s
 
 from __future__ import annotations
 
-from dataclasses import dataclass, fields
+from dataclasses import dataclass
 from typing import Literal
 
 from PySide6.QtCore import QObject, Qt, Slot
@@ -147,11 +147,6 @@ def colours() -> Colours:
     app = QApplication.instance()
     name = app.property(_SCHEME) if app is not None else None
     return {"dark": DARK, "contrast": CONTRAST}.get(str(name), LIGHT)
-
-
-def is_dark() -> bool:
-    """Say whether the scheme in force draws light on dark."""
-    return colours() is DARK
 
 
 def text_scale() -> float:
@@ -301,8 +296,3 @@ def _set(app: QApplication, scheme: Colours, scale: float) -> None:
     app.setStyleSheet(style_sheet(scheme, scale))
     for widget in app.allWidgets():
         widget.update()
-
-
-def colour_names() -> tuple[str, ...]:
-    """Return the names of all colours of a scheme."""
-    return tuple(field.name for field in fields(Colours))

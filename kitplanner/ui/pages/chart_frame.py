@@ -106,11 +106,6 @@ class ChartFrame(QWidget):
         plot.set_cursor(self._cursor)
         self.stack.setCurrentWidget(self.table if self.toggle.isChecked() else plot)
 
-    def set_title(self, title: str) -> None:
-        """Name the chart anew."""
-        self.title.setText(title)
-        self.setAccessibleName(title)
-
     def set_content(self, data: ChartData | None, sentence: str, table: TableData) -> None:
         """Show other figures, in all three forms."""
         self._data = data
