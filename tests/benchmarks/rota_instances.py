@@ -21,9 +21,11 @@ SIZES: dict[str, tuple[int, int, int, int, float]] = {
 WAKING = (Window(start="08:00", end="12:00"), Window(start="13:30", end="17:30"), Window(start="18:30", end="20:30"))
 
 
-def instance(name: str, *, watchers: bool = True, own_hours: bool = False, seed: int = 7) -> Plan:
+def instance(
+    name: str, *, watchers: bool = True, own_hours: bool = False, days: int | None = None, seed: int = 7
+) -> Plan:
     """Return one seeded plan; without `watchers` nobody is a minor and no changeover is lost."""
-    people, pedals, cranks, days, part = SIZES[name]
+    people, pedals, cranks, usual_days, part = SIZES[name]
     rng = random.Random(f"{name} {seed}")
     crowd = tuple(_person(rng, place, watchers=watchers, own_hours=own_hours) for place in range(people))
     stations = (
@@ -40,11 +42,13 @@ def instance(name: str, *, watchers: bool = True, own_hours: bool = False, seed:
     offered = _offered_wh(crowd, stations)
     return Plan(
         title=name,
-        days=days,
+        days=days or usual_days,
         margin_fraction=0.0,
         people=crowd,
         stations=stations,
-        stores=(Store(id="B", name="Store", nominal_wh=max(10.0, offered * 2), start_fraction=0.5, floor_fraction=0.1),),
+        stores=(
+            Store(id="B", name="Store", nominal_wh=max(10.0, offered * 2), start_fraction=0.5, floor_fraction=0.1),
+        ),
         devices=_devices(offered * 0.765 * part),
         blocks=(Block(id="Q", name="Quiet", kind="quiet", windows=(Window(start="21:30", end="07:00"),)),),
     )
