@@ -164,7 +164,7 @@ def gap_words(row: RotaObjective) -> str:
     if row.proved:
         return "proven least"
     if row.bound <= 0.0 and row.unit != "Wh":
-        return "no bound but nothing at all"
+        return "no bound is known"
     if row.name == "greatest_load":
         return plain(row.words)
     left_out = "; the bound leaves out watchers and changeover" if row.relaxed else ""

@@ -162,7 +162,7 @@ def test_unmet_sentences_name_device_amount_time_and_reason(household: Plan) -> 
         ),
         (aim("excess", 0.0, 0.0), "proven least"),
         (OPEN_LOAD, "2.0 slots of 5 min a week above the proven least"),
-        (aim("handovers", 31.0, 0.0, "bouts"), "no bound but nothing at all"),
+        (aim("handovers", 31.0, 0.0, "bouts"), "no bound is known"),
         (replace(aim("handovers", 31.0, 29.0, "bouts"), relaxed=False), "at most 2 bouts above the least possible"),
     ],
 )

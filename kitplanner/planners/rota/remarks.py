@@ -60,10 +60,10 @@ def _stop(problem: RotaProblem) -> RotaRemark | None:
         return RotaRemark(kind="no_people")
     if not problem.stations:
         return RotaRemark(kind="no_stations")
-    if not problem.allowance.any():
-        return RotaRemark(kind="nobody_turns")
     if not problem.units.any():
         return RotaRemark(kind="stations_shut")
+    if not problem.allowance.any():
+        return RotaRemark(kind="nobody_turns")
     return None if _common(problem).any() else RotaRemark(kind="blocked")
 
 
