@@ -68,6 +68,13 @@ class PlanDocument(QObject):
         return self._path
 
     @property
+    def name(self) -> str:
+        """Name for titles and questions: the file's, or the plan's own."""
+        if self._path is not None:
+            return self._path.name
+        return self._plan.title or self.tr("New plan")
+
+    @property
     def is_modified(self) -> bool:
         """True while the plan differs from its file."""
         return not self.stack.isClean()

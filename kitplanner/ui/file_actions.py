@@ -33,12 +33,6 @@ class FileActions(QObject):
         self._settings = settings
         self._window = window
 
-    def name(self) -> str:
-        """Name of the document for titles and questions."""
-        if self._document.path is not None:
-            return self._document.path.name
-        return self._document.plan.title or self.tr("New plan")
-
     @Slot(str)
     def start_new(self, kind: str) -> None:
         """Begin a plan from one of the examples, or an empty one."""
@@ -108,7 +102,7 @@ class FileActions(QObject):
         self._commit_pending()
         if not self._document.is_modified:
             return True
-        answer = ask.ask_save(self._window, self.name())
+        answer = ask.ask_save(self._window, self._document.name)
         if answer is ask.Answer.SAVE:
             return self.save()
         return answer is ask.Answer.DISCARD
@@ -170,7 +164,7 @@ class FileActions(QObject):
         return Path(QStandardPaths.writableLocation(QStandardPaths.StandardLocation.DocumentsLocation))
 
     def _file_name(self) -> str:
-        stem = self._document.path.stem if self._document.path is not None else self.name()
+        stem = self._document.path.stem if self._document.path is not None else self._document.name
         safe = "".join(sign if sign.isalnum() or sign in " -_" else " " for sign in stem)
         return " ".join(safe.split()) or "plan"
 

@@ -32,6 +32,6 @@ def let_go(window) -> None:
 def wait_until_loaded(window, qtbot) -> None:
     """Wait until all pages stand and the slow answers are there."""
     qtbot.waitUntil(
-        lambda: all(window.answers.page(key) is not None for key in ("effort", "balance", "bench")), timeout=30000
+        lambda: all(window.desk.answers.page(key) is not None for key in ("effort", "balance", "bench")), timeout=30000
     )
     qtbot.waitUntil(lambda: not window.recompute.is_busy, timeout=30000)

@@ -67,14 +67,14 @@ def test_the_first_picture_comes_before_charts_and_tables_of_frames(tmp_path):
 
 
 def test_an_edit_reaches_table_line_verdict_and_pages(window, qtbot):
-    window.sections.show_section("devices")
+    window.desk.sections.show_section("devices")
     made = window.energy_line.accessibleDescription()
     words = window.verdict.detail.text()
-    editor = window.sections.panel.details.form.row("count").editor
+    editor = window.desk.sections.panel.details.form.row("count").editor
     editor.setText("40")
     editor.editingFinished.emit()
     assert window.document.stack.undoText() == "Change number of Two-way radio, light traffic"
-    assert window.sections.panel.table.model().index(0, 1).data() == "40"
+    assert window.desk.sections.panel.table.model().index(0, 1).data() == "40"
     assert window.verdict.verdict.text() == "Does not fit"
     assert window.verdict.detail.text() != words
     assert window.energy_line.accessibleDescription() != made
@@ -91,20 +91,20 @@ def test_an_error_stops_the_answers_and_leads_to_its_field(window):
         plan, devices=(replace(plan.devices[0], target_fraction=0.1, start_fraction=0.9, floor_fraction=0.5),)
     )
     window.document.new_plan(wrong)
-    window.sections.show_section("people")
+    window.desk.sections.show_section("people")
     assert window.recompute.results.has_errors == any(
         problem.severity == "error" for problem in window.recompute.results.problems
     )
-    assert window.sections.go_to_next_problem()
-    assert window.sections.current == "devices"
-    assert window.sections.problems.count() > 0
+    assert window.desk.sections.go_to_next_problem()
+    assert window.desk.sections.current == "devices"
+    assert window.desk.sections.problems.count() > 0
 
 
 @pytest.mark.parametrize("section", [section.key for section in SECTIONS])
 def test_every_section_opens_and_undoes_an_added_record(window, section):
-    window.sections.show_section(section)
+    window.desk.sections.show_section(section)
     before = window.document.plan
-    window.sections.panel.add_one()
+    window.desk.sections.panel.add_one()
     if section == "plan":
         assert window.document.plan is before
         return
@@ -115,19 +115,19 @@ def test_every_section_opens_and_undoes_an_added_record(window, section):
 
 def test_the_energy_line_opens_sections_and_shows_a_station_s_chain(window):
     window.energy_line.section_requested.emit("devices")
-    assert window.sections.current == "devices"
+    assert window.desk.sections.current == "devices"
     window.energy_line.station_requested.emit("B-S1")
-    assert window.sections.current == "stations"
-    assert window.sections.panel.current_id == "B-S1"
-    assert window.chain.station == "B-S1"
-    window.sections.show_section("people")
-    assert window.chain.station == ""
+    assert window.desk.sections.current == "stations"
+    assert window.desk.sections.panel.current_id == "B-S1"
+    assert window.desk.chain.station == "B-S1"
+    window.desk.sections.show_section("people")
+    assert window.desk.chain.station == ""
 
 
 def test_a_removed_station_gives_the_line_back_to_the_day(window):
     window.energy_line.station_requested.emit("B-S1")
-    window.editing.remove("stations", ("B-S1", "B-S2"))
-    assert window.chain.station == ""
+    window.desk.editing.remove("stations", ("B-S1", "B-S2"))
+    assert window.desk.chain.station == ""
 
 
 def test_the_title_holds_the_name_and_the_mark(window, tmp_path):
@@ -145,7 +145,7 @@ def test_an_empty_start_shows_the_camp(qtbot):
 
 
 def test_closing_asks_and_stays_on_cancel(window, monkeypatch):
-    window.editing.add("people")
+    window.desk.editing.add("people")
     monkeypatch.setattr(ask, "ask_save", lambda *_: ask.Answer.CANCEL)
     assert not window.close()
     assert window.isVisible()
@@ -154,18 +154,18 @@ def test_closing_asks_and_stays_on_cancel(window, monkeypatch):
 
 def test_unsaved_work_of_a_crash_is_offered_and_restored(qtbot):
     first = make_window()
-    first.editing.add("people", 3)
+    first.desk.editing.add("people", 3)
     plan = first.document.plan
-    first.autosave.write_now()
-    first.autosave.wait()
-    first.autosave._lock.unlock()
+    first.desk.autosave.write_now()
+    first.desk.autosave.wait()
+    first.desk.autosave._lock.unlock()
     second = make_window("household")
     second.show()
-    qtbot.waitUntil(second.recovery.isVisible, timeout=10000)
-    second.recovery.button("restore").click()
+    qtbot.waitUntil(second.desk.recovery.isVisible, timeout=10000)
+    second.desk.recovery.button("restore").click()
     assert second.document.plan == plan
     assert second.isWindowModified()
-    assert not second.recovery.isVisible()
+    assert not second.desk.recovery.isVisible()
     let_go(second)
     let_go(first)
 
@@ -192,34 +192,34 @@ def test_cautions_stand_at_their_places(window):
         "charging_points": {"C3"},
     }
     for section, gates in expected.items():
-        window.sections.show_section(section)
-        shown = window.sections.band
+        window.desk.sections.show_section(section)
+        shown = window.desk.sections.band
         assert {note.caution for note in shown.notes()} <= gates, section
         assert len(shown.notes()) == 1, section
     inline = {"people": "C5", "stores": "C2", "devices": "C13"}
     for section, caution in inline.items():
-        window.sections.show_section(section)
-        assert caution in {note.caution for note in window.sections.panel.details.form.notes()}
-    window.sections.show_section("plan")
-    assert "C7" in {note.caution for note in window.sections.panel.details.conditions.notes()}
-    assert {note.caution for note in window.answers.band("bench").notes()} == {"C8"}
+        window.desk.sections.show_section(section)
+        assert caution in {note.caution for note in window.desk.sections.panel.details.form.notes()}
+    window.desk.sections.show_section("plan")
+    assert "C7" in {note.caution for note in window.desk.sections.panel.details.conditions.notes()}
+    assert {note.caution for note in window.desk.answers.band("bench").notes()} == {"C8"}
 
 
 def test_the_medical_caution_is_ticked_once_for_all_its_places(window):
-    window.sections.show_section("devices")
-    window.sections.band.notes()[0].box().click()
-    window.sections.show_section("people")
-    assert {note.caution for note in window.sections.band.notes()} == {"C6"}
+    window.desk.sections.show_section("devices")
+    window.desk.sections.band.notes()[0].box().click()
+    window.desk.sections.show_section("people")
+    assert {note.caution for note in window.desk.sections.band.notes()} == {"C6"}
 
 
 def test_every_control_that_takes_the_keyboard_has_a_name(window):
     nameless = []
     for key in ("effort", "balance", "bench"):
-        window.answers.choose(key)
+        window.desk.answers.choose(key)
         QApplication.processEvents()
-        nameless += _nameless(window.answers)
+        nameless += _nameless(window.desk.answers)
     for section in SECTIONS:
-        window.sections.show_section(section.key)
+        window.desk.sections.show_section(section.key)
         QApplication.processEvents()
         nameless += _nameless(window)
     assert nameless == []
@@ -243,9 +243,9 @@ def _nameless(root: QWidget) -> list[str]:
 def test_targets_are_large_enough(window):
     small = []
     for section in SECTIONS:
-        window.sections.show_section(section.key)
+        window.desk.sections.show_section(section.key)
         QApplication.processEvents()
-        for widget in window.sections.findChildren(QWidget):
+        for widget in window.desk.sections.findChildren(QWidget):
             if not widget.isVisible() or widget.focusPolicy() == Qt.FocusPolicy.NoFocus:
                 continue
             if isinstance(widget, QAbstractItemView) or widget.objectName().startswith("qt_"):
@@ -257,10 +257,10 @@ def test_targets_are_large_enough(window):
 
 @pytest.mark.parametrize("percent", [100, 150, 200])
 def test_the_window_fits_a_small_screen_at_every_text_size(window, qtbot, percent):
-    window.view.choose_text_percent(percent)
+    window.desk.view.choose_text_percent(percent)
     window.resize(1280, 800)
     for section in SECTIONS:
-        window.sections.show_section(section.key)
+        window.desk.sections.show_section(section.key)
     QApplication.processEvents()
     assert window.width() <= 1280
     assert window.height() <= 800
@@ -271,41 +271,41 @@ def test_the_window_fits_a_small_screen_at_every_text_size(window, qtbot, percen
 
 @pytest.mark.parametrize("percent", [100, 200])
 def test_no_text_of_the_left_side_is_cut(window, qtbot, percent):
-    window.view.choose_text_percent(percent)
+    window.desk.view.choose_text_percent(percent)
     for section in SECTIONS:
-        window.sections.show_section(section.key)
+        window.desk.sections.show_section(section.key)
         qtbot.waitUntil(lambda: _cut_texts(window) == [], timeout=5000)
 
 
 def _cut_texts(window) -> list[str]:
-    labels = [label for label in window.sections.findChildren(QLabel) if label.isVisible() and label.wordWrap()]
+    labels = [label for label in window.desk.sections.findChildren(QLabel) if label.isVisible() and label.wordWrap()]
     return [label.text() for label in labels if label.heightForWidth(label.width()) > label.height() + 1]
 
 
 def test_large_text_changes_to_the_box_of_sections_and_back(window):
     window.resize(1280, 800)
-    assert window.sections.switch.list.isVisible()
-    window.view.choose_text_percent(200)
-    assert window.sections.switch.box.isVisible()
-    assert not window.sections.switch.list.isVisible()
-    window.view.choose_text_percent(100)
-    assert window.sections.switch.list.isVisible()
+    assert window.desk.sections.switch.list.isVisible()
+    window.desk.view.choose_text_percent(200)
+    assert window.desk.sections.switch.box.isVisible()
+    assert not window.desk.sections.switch.list.isVisible()
+    window.desk.view.choose_text_percent(100)
+    assert window.desk.sections.switch.list.isVisible()
 
 
 @pytest.mark.parametrize("scheme", ["light", "dark", "contrast"])
 def test_colours_change_at_once_and_are_kept(window, scheme):
-    window.view.choose_scheme(scheme)
+    window.desk.view.choose_scheme(scheme)
     assert AppSettings().scheme == scheme
-    window.view.choose_scheme("light")
+    window.desk.view.choose_scheme("light")
 
 
 def test_no_label_of_the_left_side_reads_markup(window):
-    window.editing.enter(
+    window.desk.editing.enter(
         ("people", "L1", "name"),
-        window.sections.panel.details.form.row("name").spec,
+        window.desk.sections.panel.details.form.row("name").spec,
         "<img src='file:///etc/hostname'>",
     )
-    labels = window.sections.findChildren(QLabel)
+    labels = window.desk.sections.findChildren(QLabel)
     assert all(label.textFormat() == Qt.TextFormat.PlainText for label in labels)
 
 
@@ -335,14 +335,14 @@ def test_sizes_and_choices_come_back_in_the_next_window(qtbot):
     first = make_window()
     first.show()
     first.resize(796, 555)
-    first.sections.show_section("stores")
-    first.answers.choose("balance")
+    first.desk.sections.show_section("stores")
+    first.desk.answers.choose("balance")
     let_go(first)
     second = make_window()
     second.show()
     assert (second.width(), second.height()) == (796, 555)
-    assert second.sections.current == "stores"
-    assert second.answers.current == "balance"
+    assert second.desk.sections.current == "stores"
+    assert second.desk.answers.current == "balance"
     let_go(second)
 
 
@@ -356,5 +356,6 @@ def test_a_file_given_at_the_start_is_opened_and_remembered(qtbot, tmp_path):
     settings = AppSettings()
     window = MainWindow(document, settings)
     assert window.windowTitle() == "row.kitplan[*]"
+    window.load_workbench()
     assert settings.recent_files == (Path(path),)
     let_go(window)
