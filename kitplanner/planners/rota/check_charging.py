@@ -88,8 +88,10 @@ def attended_parts(plan: Plan, day: int) -> tuple[Part, ...]:
 
 
 def outlets_at(plan: Plan, day: int, span: Part) -> int:
-    """Return the outlets of a stretch of a day: of the charging points then attended, else of the stores."""
+    """Return the outlets of a stretch of a day: of the charging points then attended, else of stores or stations."""
     if not plan.charging_points:
+        if not plan.stores:
+            return sum(station.count for station in plan.stations)
         return sum(store.count * store.outlets for store in plan.stores)
     return sum(
         point.outlets for point in plan.charging_points if is_inside(*span, parts_of(point.hours) or waking(plan, day))
