@@ -20,6 +20,8 @@ from kitplanner.app.cli_bench import run_bench
 from kitplanner.app.cli_effort import run_effort
 from kitplanner.app.cli_output import EXIT_ANSWERED, EXIT_PROBLEMS, EXIT_WRONG_CALL, CommandError
 from kitplanner.app.cli_plan import run_check, run_new
+from kitplanner.app.cli_print import PAPERS, SIZES, run_print
+from kitplanner.app.cli_rota import run_rota
 from kitplanner.app.main import open_window
 from kitplanner.plan.catalogue import PLAN_KINDS
 from kitplanner.planners.bench import BenchError
@@ -27,9 +29,10 @@ from kitplanner.planners.effort_rows import EffortError
 from kitplanner.planners.stations import StationError
 from kitplanner.report.wording import plain
 
-COMMANDS = ("new", "check", "effort", "balance", "bench")
+COMMANDS = ("new", "check", "effort", "balance", "rota", "bench", "print")
 EXIT_INTERRUPTED = 130
 _LARGEST_NUMBER = 1e6
+_LONGEST_COUNT = 9
 
 
 def main(argv: Sequence[str] | None = None) -> int:
@@ -107,7 +110,9 @@ def _parser() -> argparse.ArgumentParser:
     commands = parser.add_subparsers(metavar="COMMAND", title="commands")
     _add_plan_commands(commands)
     _add_effort(commands)
+    _add_rota(commands)
     _add_bench(commands)
+    _add_print(commands)
     return parser
 
 
@@ -151,6 +156,25 @@ def _add_effort(commands: Commands[argparse.ArgumentParser]) -> None:
     parser.set_defaults(run=run_effort)
 
 
+def _add_rota(commands: Commands[argparse.ArgumentParser]) -> None:
+    parser = _add(
+        commands,
+        "rota",
+        "Who turns which station when, and what is on charge when",
+        "kitplanner rota camp.kitplan --seconds 20 --adopt",
+    )
+    _add_plan_argument(parser)
+    parser.add_argument("--work", type=_whole, metavar="N", help="steps of the search; 0 gives the first legal rota")
+    parser.add_argument("--seconds", type=_positive, metavar="S", help="ceiling on time; a rota cut off by it says so")
+    shape = parser.add_mutually_exclusive_group()
+    _add_json(shape)
+    shape.add_argument("--csv", type=Path, metavar="FILE", help="write bouts to FILE, charging beside it")
+    shape.add_argument("--ics", type=Path, metavar="FOLDER", help="write a calendar for each person and station")
+    parser.add_argument("--names", action="store_true", help="people's names in CSV and calendars, else ids or numbers")
+    parser.add_argument("--adopt", action="store_true", help="write the rota into the plan file")
+    parser.set_defaults(run=run_rota)
+
+
 def _add_bench(commands: Commands[argparse.ArgumentParser]) -> None:
     parser = _add(
         commands,
@@ -166,12 +190,29 @@ def _add_bench(commands: Commands[argparse.ArgumentParser]) -> None:
     parser.set_defaults(run=run_bench)
 
 
+def _add_print(commands: Commands[argparse.ArgumentParser]) -> None:
+    parser = _add(commands, "print", "A paper as PDF", "kitplanner print camp.kitplan rota -o rota.pdf --size Letter")
+    _add_plan_argument(parser)
+    parser.add_argument("paper", choices=tuple(PAPERS), metavar="PAPER", help=f"which paper: {', '.join(PAPERS)}")
+    parser.add_argument("-o", "--output", type=Path, required=True, metavar="FILE", help="PDF to write")
+    parser.add_argument("--size", choices=SIZES, default="A4", help="size of the sheet")
+    parser.set_defaults(run=run_print)
+
+
 def _add_plan_argument(parser: argparse.ArgumentParser) -> None:
     parser.add_argument("plan", type=Path, metavar="PLAN", help="plan file (.kitplan)")
 
 
-def _add_json(parser: argparse.ArgumentParser) -> None:
+def _add_json(parser: argparse.ArgumentParser | argparse._MutuallyExclusiveGroup) -> None:
     parser.add_argument("--json", action="store_true", help="answer as one JSON object")
+
+
+def _whole(text: str) -> int:
+    """Return a whole number from zero."""
+    value = int(text) if text.isascii() and text.isdigit() and len(text) <= _LONGEST_COUNT else -1
+    if value < 0:
+        raise argparse.ArgumentTypeError(f"{text!a} is not a whole number of at most {_LONGEST_COUNT} digits")
+    return value
 
 
 def _positive(text: str) -> float:

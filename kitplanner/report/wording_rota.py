@@ -68,8 +68,9 @@ def unit_words(station: Station, unit: int) -> str:
 
 
 def verdict_lines(plan: Plan, answer: RotaAnswer) -> tuple[str, ...]:
-    """Return the verdict of a rota: what is met, whether every rule is kept, how far the fullest share goes."""
-    lines = [_met_sentence(plan, answer)]
+    """Return the verdict of a rota: an unmet evening guarantee first, what is met, whether every rule is kept."""
+    lines = [_evening_sentence(answer)] if answer.evening else []
+    lines.append(_met_sentence(plan, answer))
     if answer.violations:
         broken = counted(len(answer.violations), "rule is broken", "rules are broken")
         lines.append(sentence(f"{broken}, see below"))
@@ -77,6 +78,12 @@ def verdict_lines(plan: Plan, answer: RotaAnswer) -> tuple[str, ...]:
         seconds = number(answer.solution.seconds, 1)
         lines.append(f"The search was cut off after {seconds} s; with more time the rota may get better.")
     return tuple(lines)
+
+
+def _evening_sentence(answer: RotaAnswer) -> str:
+    first = plain(answer.evening[0].text).rstrip(".")
+    more = len(answer.evening) - 1
+    return sentence(f"evening guarantee not met: {first}{f', and {more} times more' if more else ''}")
 
 
 def _met_sentence(plan: Plan, answer: RotaAnswer) -> str:

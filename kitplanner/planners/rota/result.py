@@ -123,7 +123,11 @@ class StoreLevels(Struct, frozen=True, kw_only=True):
 
 
 class RotaAnswer(Struct, frozen=True, kw_only=True):
-    """A whole rota: bouts, charging table, what stays unmet and why, levels, and the judge's findings."""
+    """A whole rota: bouts, charging table, what stays unmet and why, levels, and the judge's findings.
+
+    `evening` are the evenings at whose lights-out no phone or radio, or no lamp, is ready (rule "evening");
+    `wasted_wh` is energy made at S that found every store full.
+    """
 
     solution: RotaSolution
     charging: tuple[RotaCharge, ...]
@@ -132,3 +136,5 @@ class RotaAnswer(Struct, frozen=True, kw_only=True):
     unmet_margin_wh: float
     levels: StoreLevels
     violations: tuple[Violation, ...]
+    evening: tuple[Violation, ...] = ()
+    wasted_wh: float = 0.0
