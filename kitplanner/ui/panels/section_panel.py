@@ -108,7 +108,7 @@ class SectionPanel(QWidget):
         self._model.set_records(records)
         self._model.set_problems({path: text for path, text in problems.items() if path[:1] == (self.section.key,)})
         if not self.current_id and records:
-            self.table.setCurrentIndex(self._model.index(0, 0))
+            self._select_row(0)
         if before is not plan or not same_problems:
             self._show_details()
         self._hint.setVisible(not records)
@@ -129,7 +129,7 @@ class SectionPanel(QWidget):
         row = self._model.row_of(record_id) if self.table is not None else -1
         if row < 0 or self.table is None:
             return False
-        self.table.setCurrentIndex(self._model.index(row, 0))
+        self._select_row(row)
         return True
 
     def focus_field(self, path: Path) -> bool:
@@ -169,7 +169,7 @@ class SectionPanel(QWidget):
         records = self._model.records
         ids = tuple(records[row].id for row in rows if row < len(records))
         if ids and self._editing.remove(self.section.key, ids) is None and self._model.rowCount():
-            self.table.setCurrentIndex(self._model.index(min(rows[0], self._model.rowCount() - 1), 0))
+            self._select_row(min(rows[0], self._model.rowCount() - 1))
 
     def _build_table(self) -> None:
         columns = tuple(spec for spec in FIELDS[self.section.kind] if spec.column)
@@ -198,6 +198,7 @@ class SectionPanel(QWidget):
         remove.setShortcutContext(Qt.ShortcutContext.WidgetShortcut)
         remove.triggered.connect(self.remove_chosen)
         self.table.addAction(remove)
+        self.table.setContextMenuPolicy(Qt.ContextMenuPolicy.ActionsContextMenu)
         self._hint = plain_label(translate("Sections", self.section.hint), wrap=True)
         self._hint.setContentsMargins(8, 4, 8, 4)
         top = QWidget(self)
@@ -304,8 +305,12 @@ class SectionPanel(QWidget):
 
     def _move(self, steps: int) -> None:
         chosen = self.current_id
-        if chosen and self._editing.move((self.section.key, chosen), steps) is None and self.table is not None:
-            row = self._model.row_of(chosen)
+        if chosen and self._editing.move((self.section.key, chosen), steps) is None:
+            self._select_row(self._model.row_of(chosen))
+
+    def _select_row(self, row: int) -> None:
+        """Make a row the only selected one, whatever keys are held for the shortcut that led here."""
+        if self.table is not None:
             flags = QItemSelectionModel.SelectionFlag.ClearAndSelect | QItemSelectionModel.SelectionFlag.Rows
             self.table.selectionModel().setCurrentIndex(self._model.index(row, 0), flags)
 

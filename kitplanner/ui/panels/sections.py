@@ -2,13 +2,12 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from msgspec import Struct
 
 from kitplanner.plan.fields import QT_TRANSLATE_NOOP
 
 
-@dataclass(frozen=True)
-class Section:
+class Section(Struct, frozen=True):
     """One entry of the section switch.
 
     `key` is the plan's collection ("" for the plan's own fields), `kind` the key in FIELDS, `hint` one
