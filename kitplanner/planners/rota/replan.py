@@ -18,11 +18,12 @@ from kitplanner.plan.edits import Edit, chain
 from kitplanner.plan.edits_replan import Now, events_edit, put_rota
 from kitplanner.plan.records import Bout, ChargeSpell, Plan, Rota
 from kitplanner.planners.rota.check import judge
-from kitplanner.planners.rota.draft import Placed
+from kitplanner.planners.rota.draft import Draft
 from kitplanner.planners.rota.replan_fill import Filler
 from kitplanner.planners.rota.replan_now import grid_of, problem_from, spared_heat
 from kitplanner.planners.rota.replan_posted import Posted, place_posted
-from kitplanner.planners.rota.replan_records import PersonChange, bout_record, changes_of
+from kitplanner.planners.rota.replan_records import PersonChange, bout_record, changes_of, turn_of
+from kitplanner.planners.rota.replan_remake import remade
 from kitplanner.planners.rota.result import ObjectiveName, RotaObjective, RotaSolution
 from kitplanner.planners.rota.search import Search
 from kitplanner.planners.rota.solver import Effort, bouts_of
@@ -41,7 +42,9 @@ class ReplanAnswer(Struct, frozen=True, kw_only=True):
 
     `plan` holds what has happened and still the old rota; `bouts` are those of the new one, unchanged ones as the very
     records adopted; `changes` lists who has other turns than before; `lost_locks` are locked bouts that what has
-    happened does not allow. Unmet use and margin are the solver's, at O, before the charging table is made.
+    happened does not allow; `remade` tells that holding on to posted turns would have left more use unserved, so that
+    all but begun and locked turns were found afresh. Unmet use and margin are the solver's, at O, before the charging
+    table is made.
     """
 
     plan: Plan
@@ -52,6 +55,7 @@ class ReplanAnswer(Struct, frozen=True, kw_only=True):
     unmet_wh: float
     unmet_margin_wh: float
     solution: RotaSolution
+    remade: bool = False
 
 
 def replan(plan: Plan, now: Now, effort: Effort | None = None) -> ReplanAnswer:
@@ -98,7 +102,13 @@ def replan(plan: Plan, now: Now, effort: Effort | None = None) -> ReplanAnswer:
         lambda draft: len(posted.lost) + len(draft.bouts) - len(posted.kept),
     )
     Filler(search, posted).run()
-    return _answer(changed, plan.rota, now, (posted, search), time.monotonic() - began)
+    afresh = False
+    if search.value.unmet_mwh[-1] > 0 and not search.cut_off:
+        again, other = remade(changed, problem, plan.rota, now, search)
+        if other.value.unmet_mwh < search.value.unmet_mwh:
+            posted, search, afresh = again, other, True
+    answer = _answer(changed, plan.rota, now, (posted, search), time.monotonic() - began)
+    return structs.replace(answer, remade=True) if afresh else answer
 
 
 def _refuse_contradictory_locks(plan: Plan, rota: Rota, now: Now) -> None:
@@ -127,28 +137,39 @@ def _answer(plan: Plan, rota: Rota, now: Now, found: tuple[Posted, Search], seco
         lost_locks=posted.lost_locks,
         unmet_wh=float(unmet[-1]),
         unmet_margin_wh=margin,
-        solution=_solution(posted, search, bouts, (float(unmet[-1]), margin), seconds),
+        solution=_solution(posted, search, rota, bouts, seconds),
     )
 
 
 def _records(rota: Rota, posted: Posted) -> tuple[Bout, ...]:
     """Return kept bouts as their records and new ones with ids the rota never had, by day and time."""
     draft = posted.draft
-    taken = {bout.id for bout in rota.bouts}
-    free = (f"b{number}" for number in itertools.count(1) if f"b{number}" not in taken)
-    fresh = sorted((key for key in draft.bouts if key not in posted.kept), key=lambda key: _place_of(draft.bouts[key]))
-    records = [*posted.outside, *posted.kept.values(), *(bout_record(draft, key, next(free)) for key in fresh)]
+    adopted = {turn_of(bout): bout for bout in rota.bouts}
+    free = (f"b{number}" for number in itertools.count(1) if f"b{number}" not in {bout.id for bout in rota.bouts})
+    records = [*posted.outside, *posted.kept.values()]
+    for key in sorted((key for key in draft.bouts if key not in posted.kept), key=lambda key: _place_of(draft, key)):
+        found = bout_record(draft, key, "")
+        same = adopted.get(turn_of(found))
+        # A turn found again is the one that is posted, whoever watches now.
+        records.append(
+            structs.replace(found, id=next(free)) if same is None else structs.replace(same, watcher=found.watcher)
+        )
     return tuple(sorted(records, key=lambda bout: (bout.day, bout.start, bout.station, bout.unit, bout.id)))
 
 
-def _place_of(bout: Placed) -> tuple[int, int, int]:
+def _place_of(draft: Draft, key: int) -> tuple[int, int, int]:
+    bout = draft.bouts[key]
     return (bout.start, bout.station, bout.unit)
 
 
-def _solution(
-    posted: Posted, search: Search, bouts: tuple[Bout, ...], missed: tuple[float, float], seconds: float
-) -> RotaSolution:
-    """Return the draft as the solver's record; bounds are the plain ones, nothing missed and only what must change."""
+def _changed_bouts(rota: Rota, bouts: tuple[Bout, ...]) -> int:
+    """Return how many bouts differ: gone, new, or with another watcher."""
+    return len(set(rota.bouts) ^ set(bouts))
+
+
+def _solution(posted: Posted, search: Search, rota: Rota, bouts: tuple[Bout, ...], seconds: float) -> RotaSolution:
+    """Return the draft as the solver's record; bounds are the plain ones: nothing missed, nothing changed."""
+    unmet, margin = missed_wh(posted.draft.problem, posted.draft.made)
     locked = {(bout.person, bout.day, bout.start) for bout in bouts if bout.locked}
     rows = tuple(
         structs.replace(row, locked=(row.person, row.day, clock(row.start_min)) in locked)
@@ -158,9 +179,9 @@ def _solution(
         slot_min=posted.draft.problem.slot_min,
         bouts=rows,
         objectives=(
-            _aim("unmet", missed[0], 0.0, "Wh", "use that cannot be served"),
-            _aim("margin", missed[1], 0.0, "Wh", "part of the margin that is missing"),
-            _aim("change", float(search.value.changed), float(len(posted.lost)), "bouts", "bouts that differ"),
+            _aim("unmet", float(unmet[-1]), 0.0, "Wh", "use that cannot be served"),
+            _aim("margin", margin, 0.0, "Wh", "part of the margin that is missing"),
+            _aim("change", float(_changed_bouts(rota, bouts)), 0.0, "bouts", "bouts gone, new or with another watcher"),
         ),
         made_wh=sum(row.output_wh for row in rows),
         made_bound_wh=math.nan,

@@ -49,7 +49,7 @@ class Posted:
         return tuple(bout for bout in self.lost if bout.locked)
 
 
-def place_posted(plan: Plan, problem: RotaProblem, rota: Rota, now: Now) -> Posted:
+def place_posted(plan: Plan, problem: RotaProblem, rota: Rota, now: Now, *, locked_only: bool = False) -> Posted:
     """Return a draft with the adopted bouts: intact ones first, so that no stand-in takes a place that is still held.
 
     Parameters
@@ -62,6 +62,8 @@ def place_posted(plan: Plan, problem: RotaProblem, rota: Rota, now: Now) -> Post
         The adopted rota.
     now : Now
         The moment.
+    locked_only : bool
+        Of the bouts to come put back only the locked ones.
 
     Returns
     -------
@@ -76,7 +78,7 @@ def place_posted(plan: Plan, problem: RotaProblem, rota: Rota, now: Now) -> Post
         begun = ((bout.day - 1) * DAY_MIN + int(minutes_of_day(bout.start))) // problem.slot_min < first
         if begun:
             _enter_begun(posted, placed, bout, now, first)
-        elif placed is None:
+        elif placed is None or (locked_only and not bout.locked):
             posted.lost.append(bout)
         else:
             to_come.append((placed, bout))

@@ -34,9 +34,9 @@ def changes_of(before: Iterable[Bout], after: Iterable[Bout]) -> tuple[PersonCha
     [('M4', '16:00')]
     """
     old, new = tuple(before), tuple(after)
-    turns_old, turns_new = {_turn(bout): bout for bout in old}, {_turn(bout): bout for bout in new}
-    watch_old = {(bout.watcher, *_turn(bout)): bout for bout in old if bout.watcher}
-    watch_new = {(bout.watcher, *_turn(bout)): bout for bout in new if bout.watcher}
+    turns_old, turns_new = {turn_of(bout): bout for bout in old}, {turn_of(bout): bout for bout in new}
+    watch_old = {(bout.watcher, *turn_of(bout)): bout for bout in old if bout.watcher}
+    watch_new = {(bout.watcher, *turn_of(bout)): bout for bout in new if bout.watcher}
     gone = [bout for key, bout in turns_old.items() if key not in turns_new]
     added = [bout for key, bout in turns_new.items() if key not in turns_old]
     unwatched = [bout for key, bout in watch_old.items() if key not in watch_new]
@@ -59,7 +59,8 @@ def changes_of(before: Iterable[Bout], after: Iterable[Bout]) -> tuple[PersonCha
     )
 
 
-def _turn(bout: Bout) -> tuple[int, str, str, str, int, str]:
+def turn_of(bout: Bout) -> tuple[int, str, str, str, int, str]:
+    """Return what makes a turn the same turn: when, where and who, not who watches."""
     return (bout.day, bout.start, bout.end, bout.station, bout.unit, bout.person)
 
 
