@@ -18,6 +18,7 @@ from kitplanner import __version__
 from kitplanner.app.cli_balance import run_balance
 from kitplanner.app.cli_bench import run_bench
 from kitplanner.app.cli_effort import run_effort
+from kitplanner.app.cli_levers import run_levers
 from kitplanner.app.cli_output import EXIT_ANSWERED, EXIT_PROBLEMS, EXIT_WRONG_CALL, CommandError
 from kitplanner.app.cli_plan import run_check, run_new
 from kitplanner.app.cli_print import PAPERS, SIZES, run_print
@@ -29,7 +30,7 @@ from kitplanner.planners.effort_rows import EffortError
 from kitplanner.planners.stations import StationError
 from kitplanner.report.wording import plain
 
-COMMANDS = ("new", "check", "effort", "balance", "rota", "bench", "print")
+COMMANDS = ("new", "check", "effort", "balance", "rota", "levers", "bench", "print")
 EXIT_INTERRUPTED = 130
 _LARGEST_NUMBER = 1e6
 _LONGEST_COUNT = 9
@@ -134,7 +135,10 @@ def _add_plan_commands(commands: Commands[argparse.ArgumentParser]) -> None:
     balance = _add(
         commands, "balance", "Does it fit, by how much, and what limits", "kitplanner balance home.kitplan --json"
     )
-    for parser, run in ((check, run_check), (balance, run_balance)):
+    levers = _add(
+        commands, "levers", "What would make it fit: each lever alone, then together", "kitplanner levers home.kitplan"
+    )
+    for parser, run in ((check, run_check), (balance, run_balance), (levers, run_levers)):
         _add_plan_argument(parser)
         _add_json(parser)
         parser.set_defaults(run=run)
