@@ -3,9 +3,9 @@
 from __future__ import annotations
 
 from collections.abc import Callable
-from dataclasses import dataclass
 from typing import Any
 
+from msgspec import Struct
 from PySide6.QtCore import QTimer, Signal, Slot
 from PySide6.QtWidgets import QTabWidget, QVBoxLayout, QWidget
 
@@ -36,8 +36,7 @@ def _bench_page() -> QWidget:
     return BenchPage()
 
 
-@dataclass(frozen=True)
-class PageEntry:
+class PageEntry(Struct, frozen=True):
     """One tab: its key, its title, and how its page is made."""
 
     key: str

@@ -6,8 +6,8 @@ A word that does not fit gives way: first to a shorter form, then to nothing (th
 from __future__ import annotations
 
 from collections.abc import Callable
-from dataclasses import dataclass, field
 
+from msgspec import Struct
 from PySide6.QtCore import QRectF, Qt
 
 from kitplanner.ui.energy_line_text import StageText
@@ -17,8 +17,7 @@ MARGIN = 18.0
 LEFT, RIGHT, CENTRE = Qt.AlignmentFlag.AlignLeft, Qt.AlignmentFlag.AlignRight, Qt.AlignmentFlag.AlignHCenter
 
 
-@dataclass(frozen=True)
-class Ribbon:
+class Ribbon(Struct, frozen=True):
     """A band between two places; `fill` names a colour of the scheme or a category number."""
 
     key: str
@@ -30,8 +29,7 @@ class Ribbon:
     hatch: str = "none"
 
 
-@dataclass(frozen=True)
-class Hook:
+class Hook(Struct, frozen=True):
     """A strip that leaves the flow downward (a loss) or comes into it from below (a join)."""
 
     key: str
@@ -41,8 +39,7 @@ class Hook:
     joins: bool
 
 
-@dataclass(frozen=True)
-class Word:
+class Word(Struct, frozen=True):
     """A text in its box; `size` is a type size of the theme."""
 
     box: QRectF
@@ -53,8 +50,7 @@ class Word:
     align: Qt.AlignmentFlag = LEFT
 
 
-@dataclass(frozen=True)
-class Chip:
+class Chip(Struct, frozen=True):
     """A two-letter code in a small box with its category's fill and hatch, or a level letter."""
 
     box: QRectF
@@ -63,8 +59,7 @@ class Chip:
     hatch: str = "none"
 
 
-@dataclass(frozen=True)
-class Spot:
+class Spot(Struct, frozen=True):
     """A place that answers to pointer and keys: what it says and what choosing it means."""
 
     key: str
@@ -74,21 +69,19 @@ class Spot:
     station_ids: tuple[str, ...] = ()
 
 
-@dataclass
-class Picture:
+class Picture(Struct):
     """Everything to paint, in order, and everything that answers."""
 
-    ribbons: list[Ribbon] = field(default_factory=list)
-    hooks: list[Hook] = field(default_factory=list)
-    words: list[Word] = field(default_factory=list)
-    chips: list[Chip] = field(default_factory=list)
-    marks: list[tuple[float, float, float]] = field(default_factory=list)
-    stages: list[Spot] = field(default_factory=list)
-    spots: list[Spot] = field(default_factory=list)
+    ribbons: list[Ribbon] = []
+    hooks: list[Hook] = []
+    words: list[Word] = []
+    chips: list[Chip] = []
+    marks: list[tuple[float, float, float]] = []
+    stages: list[Spot] = []
+    spots: list[Spot] = []
 
 
-@dataclass(frozen=True)
-class Frame:
+class Frame(Struct, frozen=True):
     """Sizes that follow from the widget and the type: columns, rows, room for words."""
 
     width: float

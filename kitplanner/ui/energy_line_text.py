@@ -2,8 +2,7 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
-
+from msgspec import Struct
 from PySide6.QtCore import QCoreApplication
 
 from kitplanner.planners.results import BenchPoint, EnergyFlow, FlowBand
@@ -25,8 +24,7 @@ def watts(value: float) -> str:
     return f"{value:.1f}" if abs(value) >= 9.995 else f"{value:.2f}"
 
 
-@dataclass(frozen=True)
-class StageText:
+class StageText(Struct, frozen=True):
     """Words of one stage: `titles` from the fullest to the shortest, likewise `values`."""
 
     level: str

@@ -3,9 +3,9 @@
 from __future__ import annotations
 
 from collections.abc import Callable
-from dataclasses import dataclass
 from pathlib import Path
 
+from msgspec import Struct
 from PySide6.QtCore import QObject, Signal, Slot
 from PySide6.QtGui import QAction, QActionGroup, QKeySequence, QUndoStack
 from PySide6.QtWidgets import QMainWindow, QMenu
@@ -18,8 +18,7 @@ Key = QKeySequence.StandardKey
 Handler = Callable[[], object]
 
 
-@dataclass(frozen=True)
-class Item:
+class Item(Struct, frozen=True):
     """One menu line; an empty name is a rule between lines."""
 
     name: str = ""

@@ -6,9 +6,9 @@ Signals: none. `apply` sets the application's style, palette, font and a small s
 
 from __future__ import annotations
 
-from dataclasses import dataclass
 from typing import Literal
 
+from msgspec import Struct
 from PySide6.QtCore import QObject, Qt, Slot
 from PySide6.QtGui import QColor, QFont, QFontDatabase, QPalette
 from PySide6.QtWidgets import QApplication
@@ -30,8 +30,7 @@ _SCALE = "kitplanner_text_scale"
 CATEGORY_FILLS = ("#7d225a", "#596a01", "#9063fd", "#35b581", "#edaedb", "#ddee07")
 
 
-@dataclass(frozen=True)
-class Colours:
+class Colours(Struct, frozen=True):
     """Named colours of one scheme; text on `paper`, `panel` and `field` keeps at least 4.5:1."""
 
     ink: str

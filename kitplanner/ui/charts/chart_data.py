@@ -6,19 +6,18 @@ Colours are names of the theme, so the same data is drawn again when the scheme 
 from __future__ import annotations
 
 import math
-from dataclasses import dataclass
 from typing import Literal
 
 import numpy as np
 import numpy.typing as npt
+from msgspec import Struct
 
 FloatArray = npt.NDArray[np.float64]
 Dash = Literal["solid", "dashed", "dotted"]
 MOST_POINTS = 300
 
 
-@dataclass(frozen=True)
-class Axis:
+class Axis(Struct, frozen=True):
     """One axis: its words with the unit, its range and its few ticks (value, text)."""
 
     label: str
@@ -27,8 +26,7 @@ class Axis:
     ticks: tuple[tuple[float, str], ...]
 
 
-@dataclass(frozen=True)
-class Line:
+class Line(Struct, frozen=True):
     """A curve with its name written at its end; `dash` tells it apart without colour."""
 
     x: FloatArray
@@ -39,8 +37,7 @@ class Line:
     dots: bool = False
 
 
-@dataclass(frozen=True)
-class Band:
+class Band(Struct, frozen=True):
     """The range between two curves."""
 
     x: FloatArray
@@ -49,8 +46,7 @@ class Band:
     colour: str = "line"
 
 
-@dataclass(frozen=True)
-class Bars:
+class Bars(Struct, frozen=True):
     """Bars over x; `hollow` bars are outlined only, which tells them apart without colour."""
 
     x: FloatArray
@@ -62,8 +58,7 @@ class Bars:
     texts: tuple[str, ...] = ()
 
 
-@dataclass(frozen=True)
-class Shade:
+class Shade(Struct, frozen=True):
     """A shaded stretch of the x axis with its words at the top; `hatched` says that something fails there."""
 
     low: float
@@ -73,8 +68,7 @@ class Shade:
     hatched: bool = False
 
 
-@dataclass(frozen=True)
-class Mark:
+class Mark(Struct, frozen=True):
     """A line across the chart with its words: `at` on the x axis, or on the y axis if `level`.
 
     Words stand at the top, or at the foot of the chart if `foot`.
@@ -87,8 +81,7 @@ class Mark:
     foot: bool = False
 
 
-@dataclass(frozen=True)
-class ChartData:
+class ChartData(Struct, frozen=True):
     """One chart."""
 
     x: Axis

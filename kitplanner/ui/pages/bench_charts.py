@@ -2,9 +2,8 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
-
 import numpy as np
+from msgspec import Struct
 
 from kitplanner.planners.results import BenchPoint, BenchState, BenchSweep
 from kitplanner.report.wording import number
@@ -23,8 +22,7 @@ from kitplanner.ui.charts.chart_data import (
 from kitplanner.ui.pages.plain_table import TableData
 
 
-@dataclass(frozen=True)
-class BenchLook:
+class BenchLook(Struct, frozen=True):
     """What frames every chart of the bench: comfort band with its words, volts to hold, torque limit."""
 
     comfort: tuple[float, float]
@@ -33,8 +31,7 @@ class BenchLook:
     torque_max_nm: float | None = None
 
 
-@dataclass(frozen=True)
-class Curve:
+class Curve(Struct, frozen=True):
     """One curve of a small chart: values, name, colour, dash."""
 
     y: FloatArray

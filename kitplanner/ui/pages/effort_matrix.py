@@ -3,9 +3,9 @@
 from __future__ import annotations
 
 import math
-from dataclasses import dataclass
 from typing import Any
 
+from msgspec import Struct
 from PySide6.QtCore import QAbstractTableModel, QModelIndex, QPersistentModelIndex, QRectF, QSize, Qt, Signal, Slot
 from PySide6.QtGui import QFontMetricsF, QGuiApplication, QKeyEvent, QKeySequence, QPainter, QPainterPath, QPen
 from PySide6.QtWidgets import (
@@ -35,8 +35,7 @@ SHADE_ROLE = Qt.ItemDataRole.UserRole + 2
 SHADE_LOW_MIN, SHADE_HIGH_MIN = 60.0, 600.0
 
 
-@dataclass(frozen=True)
-class Matrix:
+class Matrix(Struct, frozen=True):
     """Names down and across, and a row or None for each cell."""
 
     devices: tuple[str, ...] = ()

@@ -2,9 +2,9 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
 from typing import Any
 
+from msgspec import Struct
 from PySide6.QtCore import QAbstractTableModel, QModelIndex, QPersistentModelIndex, QSize, Qt
 from PySide6.QtGui import QFontMetricsF, QGuiApplication, QKeyEvent, QKeySequence, QResizeEvent
 from PySide6.QtWidgets import QAbstractItemView, QHeaderView, QSizePolicy, QTableView, QWidget
@@ -16,8 +16,7 @@ from kitplanner.ui.widgets.plain import as_tool_tip
 Index = QModelIndex | QPersistentModelIndex
 
 
-@dataclass(frozen=True)
-class TableData:
+class TableData(Struct, frozen=True):
     """Headers and rows as texts; the first column names the row, the others are figures."""
 
     headers: tuple[str, ...]

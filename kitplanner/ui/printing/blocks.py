@@ -3,8 +3,8 @@
 from __future__ import annotations
 
 from collections.abc import Callable, Iterator
-from dataclasses import dataclass, field
 
+from msgspec import Struct
 from PySide6.QtCore import Qt
 from PySide6.QtGui import QColor, QFont, QPainter
 
@@ -20,8 +20,7 @@ _ALIGN = {
 }
 
 
-@dataclass
-class Piece:
+class Piece(Struct):
     """Something of a fixed height; `keep` says it must not be the last on its page, `repeat` what heads a page."""
 
     height_mm: float
@@ -32,11 +31,10 @@ class Piece:
     after_mm: float = 0.0
 
 
-@dataclass
-class Sheet:
+class Sheet(Struct):
     """One page: pieces with their place from the top of the printed area."""
 
-    pieces: list[tuple[float, Piece]] = field(default_factory=list)
+    pieces: list[tuple[float, Piece]] = []
 
 
 def text_lines(  # noqa: PLR0917 - place, words and their look
