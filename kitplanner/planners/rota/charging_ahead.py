@@ -10,10 +10,10 @@ from __future__ import annotations
 
 import numpy as np
 
-from kitplanner.planners.rota.charging_inputs import ChargingInputs, FloatArray, IntArray
+from kitplanner.planners.rota.charging_inputs import BoolArray, ChargingInputs, FloatArray, IntArray
 
-# Times looked at ahead; every slot of short plans, every few of long ones.
-MOST_TIMES = 600
+# Times looked at ahead: all that can bind in the near future, every few of them beyond.
+NEAR_TIMES, FAR_TIMES = 240, 240
 # Bisection steps of the shared fraction: 1e-9 of the use.
 _HALVINGS = 30
 
@@ -25,8 +25,9 @@ class Ahead:
         """Prepare the curves."""
         lines = inputs.lines
         slots = inputs.slots
-        stride = -(-slots // MOST_TIMES)
-        self.times: IntArray = np.unique(np.append(np.arange(stride, slots + 1, stride), slots))
+        # Needs only grow, so slack is least just before energy comes in, or at the end.
+        self.times: IntArray = np.append(np.flatnonzero(np.diff(inputs.coming_wh) > 0.0), slots)
+        self._far = np.arange(len(self.times))[:: -max(1, len(self.times) // FAR_TIMES)][::-1]
         devices = len(lines.count)
         self.used = np.zeros((devices, slots + 1))
         np.cumsum(lines.use_wh, axis=1, out=self.used[:, 1:])
@@ -38,37 +39,67 @@ class Ahead:
         self._coming = inputs.coming_wh
         self._coming_then = inputs.coming_wh[self.times]
         self._eta = lines.eta
-        self._rank = lines.rank
-        self.ranks = int(lines.rank.max(initial=0)) + 1
+        # Row 0 sums no line, row 1 + c the lines of class c and better.
+        self._up_to = (lines.rank[None, :] < np.arange(int(lines.rank.max(initial=0)) + 2)[:, None]).astype(float)
         self.phi = np.ones(devices)
+        self._lights_out = inputs.lights_out
+        guaranteed = {line for line in (inputs.calling, inputs.lamp) if line >= 0 and lines.whole_wh[line] > 0.0}
+        self._last_before = {
+            line: {dark: _end_of_last(lines.chargeable[line], dark) for dark in inputs.lights_out}
+            for line in sorted(guaranteed)
+        }
 
     def wanted(self, slot: int, headroom: FloatArray) -> FloatArray:
-        """Return what each line must still draw by each later time, at O, shape (devices, times from `first`).
+        """Return what each line must still draw by each later time, at O, shape (devices, columns).
 
         `headroom` is what each line holds above what must stay in it [Wh at D].
         """
         return self._wanted(slot, headroom, self.phi)
 
     def _wanted(self, slot: int, headroom: FloatArray, phi: FloatArray) -> FloatArray:
-        first = self.first(slot)
         anchor = self._anchor[:, slot]
         kept = np.maximum(0.0, headroom - phi * (anchor - self.used[:, slot]))
-        ahead = phi[:, None] * (self.due[:, first:] - anchor[:, None])
+        ahead = phi[:, None] * (self.due[:, self.columns(slot)] - anchor[:, None])
         return np.asarray(np.maximum(0.0, ahead - kept[:, None]) / self._eta[:, None])
 
-    def first(self, slot: int) -> int:
-        """Return the first of `times` after a slot."""
-        return int(np.searchsorted(self.times, slot, side="right"))
+    def columns(self, slot: int) -> IntArray:
+        """Return which of `times` are looked at from a slot: those after it, all near ones and some far ones."""
+        first = int(np.searchsorted(self.times, slot, side="right"))
+        near = np.arange(first, min(first + NEAR_TIMES, len(self.times)))
+        return np.concatenate((near, self._far[self._far >= first + NEAR_TIMES]))
 
-    def slack(self, slot: int, stored_wh: float, wanted: FloatArray) -> FloatArray:
-        """Return the slack of each class and all better ones at each later time, at O, shape (classes, times).
+    def times_after(self, slot: int) -> IntArray:
+        """Return the times looked at from a slot."""
+        return self.times[self.columns(slot)]
 
-        `stored_wh` includes what came in during the slot itself.
+    def promised(self, slot: int, level: FloatArray, kept: FloatArray) -> dict[int, FloatArray]:
+        """Return what the lines of the evening guarantee must still draw for the next lights-out, at O, by line.
+
+        It is due at the end of the last slot before lights-out in which the line may be charged.
         """
-        by_class = np.zeros((self.ranks, wanted.shape[1]))
-        np.add.at(by_class, self._rank, wanted)
-        coming = self._coming_then[self.first(slot) :] - self._coming[slot + 1]
-        return np.asarray(stored_wh + coming - np.cumsum(by_class, axis=0))
+        promised: dict[int, FloatArray] = {}
+        for line, dark in self._guarantee(slot):
+            until = float(self.phi[line] * (self.used[line, dark] - self.used[line, slot]))
+            short = float(kept[line]) + until - float(level[line])
+            last = self._last_before[line][dark]
+            if short > 0.0 and last > slot:
+                due = self.times_after(slot) >= last
+                promised[line] = np.where(due, short / float(self._eta[line]), 0.0)
+        return promised
+
+    def _guarantee(self, slot: int) -> list[tuple[int, int]]:
+        dark = next((each for each in self._lights_out if each > slot), None)
+        return [] if dark is None else [(line, dark) for line in self._last_before]
+
+    def slack(self, slot: int, stored_wh: float, wanted: FloatArray, promised: dict[int, FloatArray]) -> FloatArray:
+        """Return the slack at each later time, at O: of the evening guarantee first, then of each class and all better.
+
+        `stored_wh` includes what came in during the slot itself; the shape is (1 + classes, times).
+        """
+        slack = stored_wh + self._coming_then[self.columns(slot)] - self._coming[slot + 1] - self._up_to @ wanted
+        for needed in promised.values():
+            slack[0] -= needed
+        return np.asarray(slack)
 
     def share_out(self, slot: int, stored_wh: float, headroom: FloatArray) -> None:
         """Set `phi` to the greatest fraction that all lines can be served alike until the end.
@@ -77,7 +108,7 @@ class Ahead:
         """
         rest = self.used[:, -1] - self.used[:, slot]
         own = np.divide(headroom, rest, out=np.ones_like(rest), where=rest > 0.0)
-        coming = self._coming_then[self.first(slot) :] - self._coming[slot]
+        coming = self._coming_then[self.columns(slot)] - self._coming[slot]
 
         def served(fraction: float) -> FloatArray:
             return np.maximum(fraction, np.minimum(1.0, own))
@@ -96,7 +127,13 @@ class Ahead:
         self.phi = served(low)
 
 
-def next_slots(allowed: np.ndarray[tuple[int, int], np.dtype[np.bool_]]) -> IntArray:
+def _end_of_last(allowed: BoolArray, dark: int) -> int:
+    """Return the end of the last allowed slot before a time, 0 where there is none."""
+    found = np.flatnonzero(allowed[:dark])
+    return int(found[-1]) + 1 if len(found) else 0
+
+
+def next_slots(allowed: BoolArray) -> IntArray:
     """Return for each line and slot the first allowed slot at or after it, the end where there is none.
 
     Examples

@@ -11,6 +11,7 @@ from dataclasses import dataclass
 import numpy as np
 
 from kitplanner.planners.rota.charging_ahead import Ahead
+from kitplanner.planners.rota.charging_gifts import Gifts
 from kitplanner.planners.rota.charging_inputs import BoolArray, ChargingInputs, FloatArray, IntArray
 from kitplanner.planners.rota.charging_stores import Stores
 
@@ -132,17 +133,22 @@ class _Run:
         room = np.maximum(0.0, self.lines.target_wh - self.level + use)
         on = able & self._begins(slot, room, wanted)
         deadline = self._deadline(slot, wanted)
-        wish_d, units = self._plug_in(slot, on, room, gain, deadline)
-        wish = np.where(fed, use, wish_d / self.lines.eta)
+        could_d = np.where(on, np.minimum(room, gain * self.lines.count), 0.0)
+        wish = np.where(fed, use, could_d / self.lines.eta)
         gift = self._gifts(slot, wish, wanted, deadline)
-        self._tell_cause(able, on, wish, gift, np.minimum(room, gain * self.lines.count) / self.lines.eta, room)
-        self._deliver(slot, gift, fed, gain, units)
+        cause = np.where(could_d < room - _NOTHING_WH, ACCEPTANCE, NOT_ATTENDED)
+        cause[gift < wish - _NOTHING_WH] = EMPTY
+        units = self._plug_in(slot, gift * self.lines.eta * self.battery, gain, deadline)
+        most = np.where(self.battery, units * gain / self.lines.eta, np.inf)
+        cause[gift > most + _NOTHING_WH] = OUTLETS
+        np.copyto(self.cause, cause, where=able & on)
+        self._deliver(slot, np.minimum(gift, most), fed, units)
 
     def _begins(self, slot: int, room: FloatArray, wanted: FloatArray) -> BoolArray:
         """Return which lines go or stay on charge, if they may."""
         whole = self.lines.whole_wh
-        soon = self.ahead.first(slot + LOOK_MIN // self.inputs.slot_min)
-        column = min(soon - self.ahead.first(slot), wanted.shape[1] - 1)
+        soon = np.searchsorted(self.ahead.times_after(slot), slot + LOOK_MIN // self.inputs.slot_min)
+        column = min(int(soon), wanted.shape[1] - 1)
         begins = (room >= BEGIN_MISSING_FRACTION * whole) | (wanted[:, column] > _NOTHING_WH)
         begins |= self.level < self.kept - _NOTHING_WH
         if self.stores.is_spilling():
@@ -154,7 +160,7 @@ class _Run:
         """Return how soon each line would go below its floor, in steps, the plan's end where never."""
         needs = wanted > _NOTHING_WH
         column = np.where(needs.any(axis=1), needs.argmax(axis=1), wanted.shape[1] - 1)
-        wait = self.ahead.times[self.ahead.first(slot) + column] - slot
+        wait = self.ahead.times_after(slot)[column] - slot
         return np.asarray(wait * self.inputs.slot_min // NEED_STEP_MIN)
 
     def _order(self, deadline: IntArray) -> IntArray:
@@ -162,87 +168,36 @@ class _Run:
         low = self.level < self.kept - _NOTHING_WH
         return np.lexsort((self.units_on == 0, self.lines.rank, deadline, ~low))
 
-    def _plug_in(
-        self, slot: int, on: BoolArray, room: FloatArray, gain: FloatArray, deadline: IntArray
-    ) -> tuple[FloatArray, IntArray]:
-        """Return how much lines on charge would take in a slot at D, and how many of their units are plugged in."""
-        takes = on & (gain > 0.0)
-        asked = np.ceil(np.divide(room, gain, out=np.zeros_like(room), where=takes) - 1e-9)
+    def _plug_in(self, slot: int, gift_d: FloatArray, gain: FloatArray, deadline: IntArray) -> IntArray:
+        """Return how many units of each line find an outlet; units once plugged in stay so until their charge ends."""
+        takes = (gift_d > _NOTHING_WH) & (gain > 0.0)
+        asked = np.ceil(np.divide(gift_d, gain, out=np.zeros_like(gift_d), where=takes) - 1e-9)
         units = np.minimum(np.maximum(asked.astype(np.int64), self.units_on), self.lines.count) * takes
         order = self._order(deadline)
         before = np.cumsum(units[order]) - units[order]
         units[order] = np.clip(int(self.inputs.outlets[slot]) - before, 0, units[order])
-        return np.minimum(room, units * gain), units
+        return units
 
     def _gifts(self, slot: int, wish: FloatArray, wanted: FloatArray, deadline: IntArray) -> FloatArray:
         """Return what each line is given, at O, so that no better class loses more than it must."""
         stored = self.stores.outlet_wh() + self.stores.direct_wh
-        spare = self.ahead.slack(slot, stored, wanted)
+        promised = self.ahead.promised(slot, self.level, self.kept)
+        slack = self.ahead.slack(slot, stored, wanted, promised)
         total = float(wish.sum())
-        if total <= stored and total <= float(spare.min(initial=np.inf)):
-            return wish
-        # What is lost already is lost; from here on nothing may be added to it.
-        spare += np.maximum(0.0, -spare.min(axis=1, initial=0.0))[:, None]
-        gift = np.zeros_like(wish)
+        if total <= stored and total <= float(slack.min(initial=np.inf)):
+            return wish.copy()
+        gifts = Gifts(stored, slack, wanted, promised, self.lines.rank)
         order = [int(line) for line in self._order(deadline) if wish[line] > 0.0]
-        for line, least in self._guaranteed(slot, wish).items():
-            gift[line] = min(least, stored)
-            stored -= gift[line]
-            self._book(spare, wanted[line], int(self.lines.rank[line]), float(gift[line]))
-        for is_beyond in (False, True):
-            for line in sorted(order, key=lambda each: 0 if is_beyond else int(self.lines.rank[each])):
-                rank = int(self.lines.rank[line])
-                need = float(wanted[line, -1]) - float(gift[line]) if wanted.shape[1] else 0.0
-                ask = float(wish[line]) - float(gift[line])
-                if not is_beyond:
-                    ask = min(ask, max(0.0, need))
-                if ask <= 0.0 or stored <= 0.0:
-                    continue
-                most = self._most(spare, np.maximum(0.0, wanted[line] - gift[line]), rank, is_beyond)
-                part = min(ask, stored, most)
-                if part > 0.0:
-                    left = np.maximum(0.0, wanted[line] - gift[line])
-                    self._book(spare, left, rank, part)
-                    gift[line] += part
-                    stored -= part
-        return gift
+        for line in order:
+            if line in promised:
+                gifts.give_promised(line, float(wish[line]))
+        for line in sorted(order, key=lambda each: int(self.lines.rank[each])):
+            gifts.give_needed(line, float(wish[line]))
+        for line in order:
+            gifts.give_beyond(line, float(wish[line]))
+        return gifts.given
 
-    def _most(self, spare: FloatArray, wanted: FloatArray, rank: int, is_beyond: bool) -> float:
-        """Return the most a line may be given without adding to what any class loses."""
-        if is_beyond:
-            return float(spare.min(initial=np.inf))
-        above = float(spare[:rank].min(initial=np.inf))
-        return max(0.0, min(above, float((wanted + spare[rank:]).min(initial=np.inf))))
-
-    def _book(self, spare: FloatArray, wanted: FloatArray, rank: int, part: float) -> None:
-        """Take a gift off the slack: all of it for better classes, only what was not needed by then for the others."""
-        spare -= part
-        spare[rank:] += np.minimum(part, wanted)
-
-    def _guaranteed(self, slot: int, wish: FloatArray) -> dict[int, float]:
-        """Return what the lines of the evening guarantee must have before anything else, at O."""
-        least: dict[int, float] = {}
-        dark = next((each for each in self.inputs.lights_out if each > slot), None)
-        for line in {self.inputs.calling, self.inputs.lamp}:
-            if line < 0 or dark is None or not self.battery[line] or wish[line] <= 0.0:
-                continue
-            until = float(self.ahead.used[line, dark] - self.ahead.used[line, slot]) * float(self.ahead.phi[line])
-            short = float(self.kept[line]) + until - float(self.level[line])
-            if short > 0.0:
-                least[line] = min(float(wish[line]), short / float(self.lines.eta[line]))
-        return least
-
-    def _tell_cause(
-        self, able: BoolArray, on: BoolArray, wish: FloatArray, gift: FloatArray, could: FloatArray, room: FloatArray
-    ) -> None:
-        """Note why each line that may charge now did not get all it has room for."""
-        cause = np.full(len(wish), NOT_ATTENDED)
-        cause[could < room / self.lines.eta - _NOTHING_WH] = ACCEPTANCE
-        cause[wish < could - _NOTHING_WH] = OUTLETS
-        cause[gift < wish - _NOTHING_WH] = EMPTY
-        np.copyto(self.cause, cause, where=able & on)
-
-    def _deliver(self, slot: int, gift: FloatArray, fed: BoolArray, gain: FloatArray, units: IntArray) -> None:
+    def _deliver(self, slot: int, gift: FloatArray, fed: BoolArray, units: IntArray) -> None:
         """Draw what is given from the stores and put it into the lines."""
         together = self.fits_all | (gift <= 0.0)
         whole = float(gift[together].sum())

@@ -2,7 +2,7 @@
 
 Part of the judge (`check.py`): imports plan and domain only. The rota does not say from which store a row draws, nor
 when within its time, so the judge takes the kindest case: all stores as one, the best way into it, and each row
-served as early as there is energy. What does not work even so cannot be worked by any store.
+served at its end, or earlier from what would run over. What does not work even so cannot be worked by any store.
 """
 
 from __future__ import annotations
@@ -31,8 +31,8 @@ class Inflow:
 def check_energy(plan: Plan, turns: Iterable[Turn], rows: Iterable[Charging]) -> Iterator[Violation]:
     """Yield charging rows that take more than stores and bouts can have given by their end.
 
-    Each stretch of time: pool = min(full, pool + in - out), pool >= 0, energy above the floor at O; rows that end first
-    are served first.
+    Each stretch of time: pool = pool + in - out, 0 <= pool <= full, energy above the floor at O. Energy keeps, so a row
+    is best served at its end; what would run over goes to the rows that end first.
 
     Parameters
     ----------
@@ -59,16 +59,17 @@ def check_energy(plan: Plan, turns: Iterable[Turn], rows: Iterable[Charging]) ->
             place += 1
         active.sort(key=lambda pair: pair[0].until)
         pool += max(0.0, power) * (until - since) / 60.0
-        pool, left = _serve(pool, active)
-        pool = min(pool, full)
-        for row, missing in left:
-            if row.until <= until and missing > ROUNDING_WH + ROUNDING_FRACTION * row.energy_wh:
+        # What nobody on charge takes either is wasted.
+        _, active = _serve(max(0.0, pool - full), active)
+        pool, ended = _serve(min(pool, full), [pair for pair in active if pair[0].until <= until])
+        active = [pair for pair in active if pair[0].until > until]
+        for row, missing in ended:
+            if missing > ROUNDING_WH + ROUNDING_FRACTION * row.energy_wh:
                 text = (
                     f"{named(row.device)} is to get {row.energy_wh:.2f} Wh {row.when}; the stores and those who turn "
                     f"can give {missing:.3g} Wh less."
                 )
                 yield row.broken("energy", text)
-        active = [(row, missing) for row, missing in left if row.until > until]
 
 
 def _serve(pool: float, active: list[tuple[Charging, float]]) -> tuple[float, list[tuple[Charging, float]]]:
