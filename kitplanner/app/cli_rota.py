@@ -248,6 +248,7 @@ def _sums(answer: RotaAnswer) -> str:
             ("made", f"{energy(solution.made_wh, 'S')}: {proven}"),
             ("use that cannot be met", energy(answer.unmet_wh, "O")),
             ("margin that is missing", energy(answer.unmet_margin_wh, "O")),
+            ("made while every store was full", energy(answer.wasted_wh, "S")),
             ("searched", f"{counted(solution.steps, 'step', 'steps')}, {number(solution.seconds, 1)} s"),
         )
     )

@@ -161,7 +161,7 @@ def _value(row: RotaObjective, value: float) -> str:
         case "fraction":
             return percent(value, 1)
         case "Wh":
-            return energy(value)
+            return energy(value if value > LEAST_WH else 0.0)
         case _:
             return f"{round(value)} {row.unit}"
 

@@ -125,6 +125,13 @@ def test_verdict_tells_broken_rules_and_a_search_cut_off(household: Plan) -> Non
     assert violation_sentence(broken) == "Oruun rests 5 min[2J."
 
 
+def test_an_evening_without_its_guarantee_comes_first(household: Plan) -> None:
+    miss = Violation(rule="evening", text="On day 2 no lamp is ready at lights-out, 22:00.", day=2, start_min=1320)
+    lines = verdict_lines(household, answer(LOAD, evening=(miss, miss, miss)))
+    assert lines[0] == ("Evening guarantee not met: On day 2 no lamp is ready at lights-out, 22:00, and 2 times more.")
+    assert lines[1].startswith("Every need is met")
+
+
 def test_verdict_of_a_saved_rota_without_bounds(household: Plan) -> None:
     assert verdict_lines(household, answer()) == ("Every need is met and every rule is kept.",)
 

@@ -84,7 +84,7 @@ def _assembled(
 
 
 def _exact(row: RotaObjective, value_wh: float) -> RotaObjective:
-    """Return an aim with what the charging table really leaves; its bound holds for every charging table."""
+    """Return an aim with what the charging table really leaves, against the bound of all stores taken as one."""
     gap = max(0.0, value_wh - row.bound)
     return structs.replace(row, value=value_wh, gap=gap, proved=gap <= _PROVED_WH)
 
