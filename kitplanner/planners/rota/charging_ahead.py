@@ -14,6 +14,8 @@ from kitplanner.planners.rota.charging_inputs import BoolArray, ChargingInputs, 
 
 # Times looked at ahead: all that can bind in the near future, every few of them beyond.
 NEAR_TIMES, FAR_TIMES = 240, 240
+# The evening guarantee is seen to this many slots before its last chance.
+SPARE_SLOTS = 2
 # Bisection steps of the shared fraction: 1e-9 of the use.
 _HALVINGS = 30
 
@@ -38,6 +40,7 @@ class Ahead:
         self._anchor = np.take_along_axis(self.used, self.next, axis=1)
         self._coming = inputs.coming_wh
         self._coming_then = inputs.coming_wh[self.times]
+        self._slot, self._columns, self._times = -1, self._far, self.times
         self._eta = lines.eta
         # Row 0 sums no line, row 1 + c the lines of class c and better.
         self._up_to = (lines.rank[None, :] < np.arange(int(lines.rank.max(initial=0)) + 2)[:, None]).astype(float)
@@ -64,13 +67,18 @@ class Ahead:
 
     def columns(self, slot: int) -> IntArray:
         """Return which of `times` are looked at from a slot: those after it, all near ones and some far ones."""
-        first = int(np.searchsorted(self.times, slot, side="right"))
-        near = np.arange(first, min(first + NEAR_TIMES, len(self.times)))
-        return np.concatenate((near, self._far[self._far >= first + NEAR_TIMES]))
+        if slot != self._slot:
+            first = int(np.searchsorted(self.times, slot, side="right"))
+            near = np.arange(first, min(first + NEAR_TIMES, len(self.times)))
+            far = self._far[np.searchsorted(self._far, first + NEAR_TIMES) :]
+            self._slot, self._columns = slot, np.concatenate((near, far)) if len(far) else near
+            self._times = self.times[self._columns]
+        return self._columns
 
     def times_after(self, slot: int) -> IntArray:
         """Return the times looked at from a slot."""
-        return self.times[self.columns(slot)]
+        self.columns(slot)
+        return self._times
 
     def promised(self, slot: int, level: FloatArray, kept: FloatArray) -> dict[int, FloatArray]:
         """Return what the lines of the evening guarantee must still draw for the next lights-out, at O, by line.
@@ -86,6 +94,19 @@ class Ahead:
                 due = self.times_after(slot) >= last
                 promised[line] = np.where(due, short / float(self._eta[line]), 0.0)
         return promised
+
+    def must_now(self, slot: int, promised: FloatArray, wish: float) -> float:
+        """Return how much of a promise cannot wait: what later energy will not cover, all of it when time runs short.
+
+        `wish` is what the line takes in one slot.
+        """
+        whole = float(promised.max(initial=0.0))
+        if whole <= 0.0:
+            return 0.0
+        due = int(self.times_after(slot)[int(np.argmax(promised > 0.0))])
+        if wish <= 0.0 or (due - slot) <= whole / wish + SPARE_SLOTS:
+            return whole
+        return max(0.0, whole - float(self._coming[due] - self._coming[slot + 1]))
 
     def _guarantee(self, slot: int) -> list[tuple[int, int]]:
         dark = next((each for each in self._lights_out if each > slot), None)

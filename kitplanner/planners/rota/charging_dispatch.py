@@ -190,7 +190,7 @@ class _Run:
         order = [int(line) for line in self._order(deadline) if wish[line] > 0.0]
         for line in order:
             if line in promised:
-                gifts.give_promised(line, float(wish[line]))
+                gifts.give_promised(line, min(float(wish[line]), self.ahead.must_now(slot, promised[line], wish[line])))
         for line in sorted(order, key=lambda each: int(self.lines.rank[each])):
             gifts.give_needed(line, float(wish[line]))
         for line in order:

@@ -38,18 +38,21 @@ class Gifts:
 
     def give_needed(self, line: int, wish: float) -> None:
         """Give a line what it needs until the end, as far as its own class and the better ones can spare it."""
-        left = self._left(line)
         row = int(self._row[line])
-        most = float((self._spare[row:] + left).min(initial=np.inf))
-        if row > 1:
-            most = min(most, float(self._spare[1:row].min(initial=np.inf)))
-        need = float(left[-1]) if len(left) else 0.0
-        self._give(line, min(wish - float(self.given[line]), need, most, self._first_row(line)))
+        above = float(self._spare[1:row].min(initial=np.inf))
+        if above <= 0.0 or self._stored <= 0.0:
+            return
+        left = self._left(line)
+        need = min(wish - float(self.given[line]), float(left[-1]) if len(left) else 0.0)
+        if need > 0.0:
+            most = min(above, float((self._spare[row:] + left).min(initial=np.inf)))
+            self._give(line, min(need, most, self._first_row(line)))
 
     def give_beyond(self, line: int, wish: float) -> None:
         """Fill a line further, from what nobody needs."""
         most = float(self._spare[1:].min(initial=np.inf))
-        self._give(line, min(wish - float(self.given[line]), most, self._first_row(line)))
+        if most > 0.0 and wish > self.given[line]:
+            self._give(line, min(wish - float(self.given[line]), most, self._first_row(line)))
 
     def _left(self, line: int) -> FloatArray:
         return np.asarray(np.maximum(0.0, self._wanted[line] - self.given[line]))

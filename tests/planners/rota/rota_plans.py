@@ -1,4 +1,4 @@
-"""Random plans in which somebody usually turns: those of `tests/strategies.py` with people, stations and needs tamed."""
+"""Random plans in which somebody often turns: those of `tests/strategies.py`, people and stations tamed."""
 
 from __future__ import annotations
 
