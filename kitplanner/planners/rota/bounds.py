@@ -6,6 +6,7 @@ as may be, and watchers only in sum over a block. No rota can do better than its
 
 from __future__ import annotations
 
+from collections.abc import Callable
 from dataclasses import dataclass
 
 import numpy as np
@@ -20,6 +21,11 @@ FloatArray = npt.NDArray[np.float64]
 
 _SLACK_WH = 1e-6
 _SLACK_SLOTS = 1e-6
+
+
+def never() -> bool:
+    """Never stop."""
+    return False
 
 
 @dataclass(frozen=True, slots=True)
@@ -233,8 +239,11 @@ class CoarseRota:
                 self.model.add_row(both, np.ones(len(both)), worst, INFINITE)
                 reached = worst
 
-    def solve(self) -> Bounds:
-        """Return bounds in the order of aims, and the even coarse rota that reaches them."""
+    def solve(self, over: Callable[[], bool] = never) -> Bounds:
+        """Return bounds in the order of aims, and the even coarse rota that reaches them.
+
+        Once `over` says so the search for the least greatest load ends with what is proven by then.
+        """
         unmet = np.array([self._least_of(int(column)) for column in self._unmet])
         margin = self._least_of(self._margin)
         total = int(self._made[-1]) if len(self._made) else None
@@ -242,7 +251,7 @@ class CoarseRota:
         if total is not None:
             # Whole bouts overshoot a little; fairness is judged with that much room.
             self.model.set_column_upper(total, made * 1.01 + _SLACK_WH)
-        load = self._least_load()
+        load = self._least_load(over)
         solution = self._even()
         return Bounds(
             unmet_wh=unmet,
@@ -263,18 +272,18 @@ class CoarseRota:
         self.model.set_column_upper(column, least + _SLACK_WH)
         return max(0.0, least)
 
-    def _least_load(self) -> float:
+    def _least_load(self, over: Callable[[], bool]) -> float:
         """Return the least greatest load among whole slots of people, by bisection over its steps."""
         steps = load_steps(self.problem)
         low, high = 0, len(steps) - 1
-        while low < high:
+        while low < high and not over():
             middle = (low + high) // 2
             self._hold_load(steps[middle])
             if self.model.minimise({}) is None:
                 low = middle + 1
             else:
                 high = middle
-        self._hold_load(steps[low])
+        self._hold_load(steps[high])
         return float(steps[low])
 
     def _hold_load(self, load: float) -> None:
@@ -338,9 +347,9 @@ def slots_at(problem: RotaProblem, load: float) -> IntArray:
     return np.asarray(np.floor(problem.allowance * load + _SLACK_SLOTS), dtype=np.int64)
 
 
-def bounds(problem: RotaProblem) -> Bounds:
+def bounds(problem: RotaProblem, over: Callable[[], bool] = never) -> Bounds:
     """Return the proven bounds of a problem; one without people or stations has nothing to turn."""
-    return CoarseRota(problem).solve()
+    return CoarseRota(problem).solve(over)
 
 
 __all__ = ["Bounds", "Classes", "CoarseRota", "bounds", "load_steps", "slots_at"]

@@ -19,8 +19,10 @@ def objectives_of(problem: RotaProblem, limits: Bounds, search: Search) -> tuple
     unmet, margin = missed_wh(problem, draft.made)
     best_unmet = float(limits.unmet_wh[-1])
     over = max(0.0, excess_wh(draft, float(unmet[-1]) + margin))
+    # The least energy is proven for the least missed; a rota that misses more may make less.
+    reached = float(unmet[-1]) <= best_unmet + _PROVED_WH and margin <= limits.margin_wh + _PROVED_WH
     needed = max(0.0, draft.total_wh() - over)
-    least_over = max(0.0, limits.made_wh - needed) if margin <= limits.margin_wh + _PROVED_WH else 0.0
+    least_over = max(0.0, limits.made_wh - needed) if reached else 0.0
     rows = [
         _energy("unmet", float(unmet[-1]), best_unmet, "use that cannot be served"),
         _energy("margin", margin, limits.margin_wh, "part of the margin that is missing"),

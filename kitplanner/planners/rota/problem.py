@@ -17,8 +17,9 @@ from kitplanner.domain.capacity import ADULT_AGE
 from kitplanner.domain.heat import HeatRule
 from kitplanner.domain.units import minutes_of_day
 from kitplanner.plan.records import Person, Plan, Spell, Station
+from kitplanner.planners.balance_output import output_table
 from kitplanner.planners.balance_windows import DAY_MIN, Part, day_parts, merged, outside
-from kitplanner.planners.people import age_of, allowed_stations, heat_rule_at, limb_of, person_limits, person_output
+from kitplanner.planners.people import age_of, allowed_stations, heat_rule_at, limb_of, person_limits
 from kitplanner.planners.rota.grid import BoolArray, day_mask, grid_min, touched_mask
 from kitplanner.planners.rota.need import NeedCurves, need_curves
 from kitplanner.planners.supply import fed_stores, open_parts, station_to_outlet_fraction
@@ -111,7 +112,7 @@ def build(plan: Plan) -> RotaProblem:
     slot_min = grid_min(plan)
     limits = [_PersonDays.of(plan, person, slot_min) for person in plan.people]
     cap = np.array([each.cap for each in limits], dtype=np.int64).reshape(len(limits), plan.days)
-    watts = _output_w(plan)
+    watts, _ = output_table(plan)
     able = (watts > 0.0).any(axis=1) if plan.stations else np.zeros(len(limits), dtype=bool)
     cap[~able] = 0
     slots = plan.days * (DAY_MIN // slot_min)
@@ -240,18 +241,6 @@ def spell_parts(spells: Iterable[Spell], day: int) -> tuple[Part, ...]:
     return tuple(
         (int(minutes_of_day(spell.start)), int(minutes_of_day(spell.end))) for spell in spells if spell.day == day
     )
-
-
-def _output_w(plan: Plan) -> FloatArray:
-    """Return watts at S of each person at each station, 0 where not allowed."""
-    watts = np.zeros((len(plan.people), len(plan.stations)))
-    column = {station.id: place for place, station in enumerate(plan.stations)}
-    for row, person in enumerate(plan.people):
-        if person_limits(plan, person).cap_min <= 0:
-            continue
-        for station in allowed_stations(plan, person):
-            watts[row, column[station.id]] = person_output(plan, person, station).station_output_w or 0.0
-    return watts
 
 
 def _needs_watcher(plan: Plan) -> BoolArray:

@@ -62,7 +62,7 @@ class Search:
         """
         if self.steps >= self.work:
             raise SearchEndedError
-        if self.steps % 16 == 0 and (self.cancelled() or time.monotonic() - self.began > self.seconds):
+        if self.cancelled() or time.monotonic() - self.began > self.seconds:
             self.cut_off = True
             raise SearchEndedError
         self.steps += 1

@@ -7,9 +7,10 @@ from collections.abc import Callable
 from dataclasses import dataclass
 from typing import Protocol
 
+from kitplanner.domain.units import minutes_of_day
 from kitplanner.plan.records import Plan
-from kitplanner.planners.rota.bounds import Bounds, bounds
-from kitplanner.planners.rota.draft import Draft
+from kitplanner.planners.rota.bounds import Bounds, bounds, never
+from kitplanner.planners.rota.draft import Draft, Placed
 from kitplanner.planners.rota.exact import Enumeration
 from kitplanner.planners.rota.improve import Improver
 from kitplanner.planners.rota.objectives import objectives_of
@@ -55,10 +56,15 @@ class WalkAndImprove:
     def solve(self, plan: Plan, effort: Effort) -> RotaSolution:
         """Return the best rota found."""
         began = time.monotonic()
+
+        def over() -> bool:
+            return effort.cancelled() or time.monotonic() - began > effort.seconds
+
         problem = build(plan)
-        limits = bounds(problem)
+        limits = bounds(problem, over)
         effort.progress(RotaProgress(seconds=time.monotonic() - began, steps=0, stage="bounds", value=0.0, bound=0.0))
-        draft = best_start(problem, limits)
+        locked = locked_bouts(problem, plan)
+        draft = best_start(problem, limits, locked, over)
         search = Search(
             draft,
             excess_step_wh(problem),
@@ -67,14 +73,40 @@ class WalkAndImprove:
             effort.cancelled,
             effort.progress,
         )
-        if not _solved_exactly(problem, search):
+        search.cut_off = over()
+        if not search.cut_off and not _solved_exactly(problem, search, locked):
             Improver(search, limits.greatest_load).run()
         return solution_of(problem, limits, search, time.monotonic() - began)
 
 
-def _solved_exactly(problem: RotaProblem, search: Search) -> bool:
+def locked_bouts(problem: RotaProblem, plan: Plan) -> tuple[Placed, ...]:
+    """Return the locked bouts of the adopted rota as they stand on the grid, widened to whole slots."""
+    person = {each: place for place, each in enumerate(problem.people)}
+    station = {each: place for place, each in enumerate(problem.stations)}
+    found = []
+    for bout in plan.rota.bouts if plan.rota is not None else ():
+        if not bout.locked:
+            continue
+        first = (bout.day - 1) * problem.per_day + int(minutes_of_day(bout.start)) // problem.slot_min
+        last = (bout.day - 1) * problem.per_day - (-int(minutes_of_day(bout.end)) // problem.slot_min)
+        watcher = -1 if bout.watcher is None else person[bout.watcher]
+        found.append(
+            Placed(first, last - first, station[bout.station], bout.unit - 1, person[bout.person], watcher, locked=True)
+        )
+    return tuple(found)
+
+
+def _with(problem: RotaProblem, locked: tuple[Placed, ...]) -> Draft:
+    draft = Draft(problem)
+    for bout in locked:
+        draft.put(bout)
+    draft.forget()
+    return draft
+
+
+def _solved_exactly(problem: RotaProblem, search: Search, locked: tuple[Placed, ...]) -> bool:
     """Put the optimum of a tiny problem into the search; False where there are too many rotas to look at."""
-    alone = Search(Draft(problem), search.step_wh, search.work, changed=search.changed)
+    alone = Search(_with(problem, locked), search.step_wh, search.work, changed=search.changed)
     enumeration = Enumeration(alone)
     if search.work <= 0 or not enumeration.run():
         return False
@@ -83,12 +115,16 @@ def _solved_exactly(problem: RotaProblem, search: Search) -> bool:
     return True
 
 
-def best_start(problem: RotaProblem, limits: Bounds) -> Draft:
+def best_start(
+    problem: RotaProblem, limits: Bounds, locked: tuple[Placed, ...] = (), over: Callable[[], bool] = never
+) -> Draft:
     """Return the best of a few walks that start energy earlier or later before it is due."""
     longest = int(problem.bout.max(initial=1))
     step = excess_step_wh(problem)
     ways = (False, True) if problem.changeover_min.any() else (False,)
-    walks = [first_rota(problem, limits, longest, spaced=spaced) for spaced in ways]
+    walks = [
+        first_rota(problem, limits, longest, spaced=spaced, fixed=_with(problem, locked), over=over) for spaced in ways
+    ]
     return min(walks, key=lambda draft: value_of(draft, step))
 
 

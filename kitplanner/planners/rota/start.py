@@ -2,10 +2,12 @@
 
 from __future__ import annotations
 
+from collections.abc import Callable
+
 import numpy as np
 import numpy.typing as npt
 
-from kitplanner.planners.rota.bounds import Bounds, slots_at
+from kitplanner.planners.rota.bounds import Bounds, never, slots_at
 from kitplanner.planners.rota.draft import Draft
 from kitplanner.planners.rota.problem import RotaProblem
 
@@ -61,12 +63,17 @@ class Walk:
         self.started = float(draft.made.sum())
         self.unwatched = -1
 
-    def run(self, ahead: int) -> None:
-        """Walk all slots; a bout starts while what has been started stays below the target `ahead` slots on."""
+    def run(self, ahead: int, over: Callable[[], bool] = never) -> None:
+        """Walk all slots; a bout starts while what has been started stays below the target `ahead` slots on.
+
+        Once `over` says so the walk ends where it is: what stands is legal.
+        """
         problem = self.problem
         for slot in np.flatnonzero((problem.units > 0).any(axis=0)):
             day_end = (int(slot) // problem.per_day + 1) * problem.per_day
             goal = float(self.target_wh[min(int(slot) + ahead, day_end)])
+            if over():
+                return
             if self.started < goal:
                 self._fill_slot(int(slot), goal)
 
@@ -131,7 +138,13 @@ class Walk:
 
 
 def first_rota(
-    problem: RotaProblem, limits: Bounds, ahead: int, *, spaced: bool = False, fixed: Draft | None = None
+    problem: RotaProblem,
+    limits: Bounds,
+    ahead: int,
+    *,
+    spaced: bool = False,
+    fixed: Draft | None = None,
+    over: Callable[[], bool] = never,
 ) -> Draft:
     """Return a legal rota that follows the coarse one.
 
@@ -147,6 +160,8 @@ def first_rota(
         Leave units idle for the changeover.
     fixed : Draft, optional
         Bouts that stand already; the draft is filled in place.
+    over : callable
+        Asked at every slot; True ends the walk with what stands.
 
     Returns
     -------
@@ -154,6 +169,6 @@ def first_rota(
         Bouts that keep every hard rule.
     """
     draft = Draft(problem) if fixed is None else fixed
-    Walk(draft, limits, slots_at(problem, limits.greatest_load), spaced=spaced).run(ahead)
+    Walk(draft, limits, slots_at(problem, limits.greatest_load), spaced=spaced).run(ahead, over)
     draft.forget()
     return draft
