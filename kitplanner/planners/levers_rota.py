@@ -7,8 +7,8 @@ from collections.abc import Callable
 from kitplanner.plan.records import Plan
 from kitplanner.planners.rota.solver import Effort, WalkAndImprove
 
-# Enough to place what the balance says is there; the full search is for the rota that is adopted.
-WORK = 60
+# Enough to place what the balance says is there, margin included; more only shares it out better.
+WORK = 300
 
 
 def never() -> bool:

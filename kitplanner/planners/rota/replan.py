@@ -20,7 +20,7 @@ from kitplanner.plan.records import Bout, ChargeSpell, Plan, Rota
 from kitplanner.planners.rota.check import judge
 from kitplanner.planners.rota.draft import Draft
 from kitplanner.planners.rota.replan_fill import Filler
-from kitplanner.planners.rota.replan_now import grid_of, problem_from, spared_heat
+from kitplanner.planners.rota.replan_now import grid_of, problem_from, shortfall_wh, spared_heat
 from kitplanner.planners.rota.replan_posted import Posted, place_posted
 from kitplanner.planners.rota.replan_records import PersonChange, bout_record, changes_of, turn_of
 from kitplanner.planners.rota.replan_remake import remade
@@ -89,8 +89,8 @@ def replan(plan: Plan, now: Now, effort: Effort | None = None) -> ReplanAnswer:
     _refuse_contradictory_locks(plan, plan.rota, now)
     changed = events_edit(now)(plan)
     slot_min = grid_of(plan.rota)
-    problem = problem_from(changed, now, slot_min)
-    posted = place_posted(changed, problem, plan.rota, now)
+    problem = problem_from(changed, now, slot_min, shortfall_wh(plan, plan.rota, now))
+    posted = place_posted(problem, plan.rota, now)
     posted.draft.problem = spared_heat(posted.draft.problem, now)
     search = Search(
         posted.draft,
@@ -104,7 +104,7 @@ def replan(plan: Plan, now: Now, effort: Effort | None = None) -> ReplanAnswer:
     Filler(search, posted).run()
     afresh = False
     if search.value.unmet_mwh[-1] > 0 and not search.cut_off:
-        again, other = remade(changed, problem, plan.rota, now, search)
+        again, other = remade(problem, plan.rota, now, search)
         if other.value.unmet_mwh < search.value.unmet_mwh:
             posted, search, afresh = again, other, True
     answer = _answer(changed, plan.rota, now, (posted, search), time.monotonic() - began)

@@ -1,4 +1,4 @@
-"""The rota problem seen from a moment on: the past closed, needs counted from what the stores really hold."""
+"""The rota problem seen from a moment on: the past closed, supply set right by what the stores really hold."""
 
 from __future__ import annotations
 
@@ -13,7 +13,8 @@ from kitplanner.domain.units import minutes_of_day
 from kitplanner.plan.edits_replan import Now
 from kitplanner.plan.records import Plan, Rota
 from kitplanner.planners.balance_windows import DAY_MIN
-from kitplanner.planners.rota.need import NeedCurves
+from kitplanner.planners.rota.answer import rota_bouts
+from kitplanner.planners.rota.charging import charging_table
 from kitplanner.planners.rota.problem import RotaProblem, build
 from kitplanner.planners.supply import store_wh
 
@@ -37,7 +38,7 @@ def now_slot(now: Now, slot_min: int) -> int:
     return ((now.day - 1) * DAY_MIN + now.minute + slot_min - 1) // slot_min
 
 
-def problem_from(plan: Plan, now: Now, slot_min: int) -> RotaProblem:
+def problem_from(plan: Plan, now: Now, slot_min: int, missing_wh: float = 0.0) -> RotaProblem:
     """Return the problem of a plan in which nobody turns or watches any more before now.
 
     Parameters
@@ -45,9 +46,11 @@ def problem_from(plan: Plan, now: Now, slot_min: int) -> RotaProblem:
     plan : Plan
         The plan with what has happened entered.
     now : Now
-        The moment, and the stores' states of charge where they were read.
+        The moment.
     slot_min : int
         The rota's grid [min].
+    missing_wh : float
+        What the stores hold less than planned, at O [Wh].
 
     Returns
     -------
@@ -59,7 +62,9 @@ def problem_from(plan: Plan, now: Now, slot_min: int) -> RotaProblem:
     may_turn, may_watch = problem.may_turn.copy(), problem.may_watch.copy()
     may_turn[:, :first] = False
     may_watch[:, :first] = False
-    return replace(problem, may_turn=may_turn, may_watch=may_watch)
+    later = np.arange(problem.slots + 1) >= first
+    need = replace(problem.need, supply=problem.need.supply - missing_wh * later)
+    return replace(problem, may_turn=may_turn, may_watch=may_watch, need=need)
 
 
 def spared_heat(problem: RotaProblem, now: Now) -> RotaProblem:
@@ -71,49 +76,31 @@ def spared_heat(problem: RotaProblem, now: Now) -> RotaProblem:
     return replace(problem, may_turn=may_turn)
 
 
-def need_from(plan: Plan, need: NeedCurves, now: Now, first: int, made_before_wh: float) -> NeedCurves:
-    """Return the needs from now on, counted against what the stores hold now.
+def shortfall_wh(plan: Plan, rota: Rota, now: Now) -> float:
+    """Return how much less the stores that were read hold than the adopted rota and its charging would have left there.
 
-    supply(t) = level now + other sources since - made before; due(t) = due(t) - due(now)
-
-    A store that was not read counts as planned: what came in less what was due by now, within empty and full.
+    sum over stores read of planned level - level read, at O; negative where they hold more
 
     Parameters
     ----------
     plan : Plan
-        The plan.
-    need : NeedCurves
-        Needs of the whole horizon.
+        The plan before anything happened.
+    rota : Rota
+        The adopted rota.
     now : Now
-        The states of charge that were read; without any the needs stay as they are.
-    first : int
-        First slot that has not begun before now.
-    made_before_wh : float
-        Made before now, at O [Wh].
+        The moment and the states of charge read.
 
     Returns
     -------
-    NeedCurves
-        Needs that start at nothing now.
+    float
+        Missing energy at O [Wh].
     """
     if not now.store_fractions:
-        return need
-    at_start = sum(store_wh(store, store.start_fraction) for store in plan.stores)
-    full = sum(store_wh(store, 1.0) for store in plan.stores)
-    planned = float(need.supply[first]) + made_before_wh - float(need.plain[-1][first])
-    share = min(1.0, max(0.0, planned / full)) if full > 0.0 else 0.0
-    level = sum(
-        store_wh(store, now.store_fractions[store.id])
-        if store.id in now.store_fractions
-        else share * store_wh(store, 1.0)
+        return 0.0
+    levels = charging_table(plan, rota_bouts(plan, rota), rota.slot_min).levels
+    slot = ((now.day - 1) * DAY_MIN + now.minute) // levels.slot_min
+    return sum(
+        float(levels.stores_wh[store.id][slot]) - store_wh(store, now.store_fractions[store.id])
         for store in plan.stores
-    )
-    later = np.arange(len(need.supply)) >= first
-    other = need.supply - at_start
-    supply = np.where(later, level + other - other[first] - made_before_wh, need.supply)
-    return replace(
-        need,
-        plain=np.where(later, need.plain - need.plain[:, first : first + 1], 0.0),
-        with_margin=np.where(later, need.with_margin - need.with_margin[first], 0.0),
-        supply=supply,
+        if store.id in now.store_fractions
     )

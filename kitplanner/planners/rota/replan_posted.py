@@ -9,11 +9,11 @@ from msgspec import structs
 
 from kitplanner.domain.units import clock, minutes_of_day
 from kitplanner.plan.edits_replan import Now
-from kitplanner.plan.records import Bout, Plan, Rota
+from kitplanner.plan.records import Bout, Rota
 from kitplanner.planners.balance_windows import DAY_MIN
 from kitplanner.planners.rota.draft import Draft, Placed
 from kitplanner.planners.rota.problem import RotaProblem
-from kitplanner.planners.rota.replan_now import need_from, now_slot
+from kitplanner.planners.rota.replan_now import now_slot
 
 
 @dataclass(slots=True)
@@ -49,15 +49,13 @@ class Posted:
         return tuple(bout for bout in self.lost if bout.locked)
 
 
-def place_posted(plan: Plan, problem: RotaProblem, rota: Rota, now: Now, *, locked_only: bool = False) -> Posted:
+def place_posted(problem: RotaProblem, rota: Rota, now: Now, *, locked_only: bool = False) -> Posted:
     """Return a draft with the adopted bouts: intact ones first, so that no stand-in takes a place that is still held.
 
     Parameters
     ----------
-    plan : Plan
-        The plan with what has happened entered.
     problem : RotaProblem
-        The problem from now on.
+        The problem from now on, with what has happened.
     rota : Rota
         The adopted rota.
     now : Now
@@ -82,8 +80,6 @@ def place_posted(plan: Plan, problem: RotaProblem, rota: Rota, now: Now, *, lock
             posted.lost.append(bout)
         else:
             to_come.append((placed, bout))
-    made_before = float(posted.draft.made[:first].sum())
-    posted.draft.problem = replace(problem, need=need_from(plan, problem.need, now, first, made_before))
     to_come.sort(key=lambda pair: (not pair[1].locked, pair[0].start))
     broken = [(placed, bout) for placed, bout in to_come if not _keep_intact(posted, placed, bout)]
     for placed, bout in broken:
@@ -111,7 +107,7 @@ def _enter_begun(posted: Posted, placed: Placed | None, bout: Bout, now: Now, fi
     if placed is None:
         posted.outside.append(bout)
         return
-    if placed.end > first and _left(posted.draft.problem, placed, bout, now, first):
+    if placed.end > first and _left(posted.draft.problem, placed, now, first):
         posted.lost.append(bout)
         ended = ((now.day - 1) * DAY_MIN + now.minute) // posted.draft.problem.slot_min
         placed = replace(placed, length=ended - placed.start)
@@ -125,10 +121,16 @@ def _end_clock(problem: RotaProblem, bout: Bout, placed: Placed) -> str:
     return clock((placed.end - (bout.day - 1) * problem.per_day) * problem.slot_min)
 
 
-def _left(problem: RotaProblem, placed: Placed, bout: Bout, now: Now, first: int) -> bool:
-    """Tell whether a bout under way cannot go on: its person has left or its unit is out."""
-    gone = {*now.absent, *now.gone}
-    return bout.person in gone or int(problem.units[placed.station, first : placed.end].min()) <= placed.unit
+def _left(problem: RotaProblem, placed: Placed, now: Now, first: int) -> bool:
+    """Tell whether a bout under way cannot go on: person or watcher has left, its unit is out, or it is too hot."""
+    rest = slice(first, placed.end)
+    if int(problem.units[placed.station, rest].min()) <= placed.unit:
+        return True
+    if not problem.may_turn[placed.person, rest].all():
+        return True
+    if placed.watcher >= 0 and not problem.may_watch[placed.watcher, rest].all():
+        return True
+    return now.air_degc is not None and placed.length > problem.bout[placed.person, placed.start // problem.per_day]
 
 
 def _keep_intact(posted: Posted, placed: Placed, bout: Bout) -> bool:

@@ -10,7 +10,7 @@ from dataclasses import replace
 import numpy as np
 
 from kitplanner.plan.edits_replan import Now
-from kitplanner.plan.records import Plan, Rota
+from kitplanner.plan.records import Rota
 from kitplanner.planners.rota.bounds import bounds, slots_at
 from kitplanner.planners.rota.draft import Draft
 from kitplanner.planners.rota.improve import Improver
@@ -40,13 +40,13 @@ def still_to_find(draft: Draft) -> RotaProblem:
     )
 
 
-def remade(plan: Plan, problem: RotaProblem, rota: Rota, now: Now, search: Search) -> tuple[Posted, Search]:
+def remade(problem: RotaProblem, rota: Rota, now: Now, search: Search) -> tuple[Posted, Search]:
     """Return the rest of a rota made afresh.
 
     Parameters
     ----------
-    plan, problem : Plan, RotaProblem
-        The plan with what has happened, and its problem from now on.
+    problem : RotaProblem
+        The problem from now on, with what has happened.
     rota : Rota
         The adopted rota: its begun and locked bouts stay.
     now : Now
@@ -59,7 +59,7 @@ def remade(plan: Plan, problem: RotaProblem, rota: Rota, now: Now, search: Searc
     Posted, Search
         The draft with what became of the adopted bouts, and the search that made it.
     """
-    tried = _walked(plan, problem, rota, now)
+    tried = _walked(problem, rota, now)
     searches = [_search(posted, search) for posted in tried]
     place = 0 if searches[0].value <= searches[1].value else 1
     again = searches[place]
@@ -70,9 +70,9 @@ def remade(plan: Plan, problem: RotaProblem, rota: Rota, now: Now, search: Searc
     return tried[place], again
 
 
-def _walked(plan: Plan, problem: RotaProblem, rota: Rota, now: Now) -> tuple[Posted, Posted]:
+def _walked(problem: RotaProblem, rota: Rota, now: Now) -> tuple[Posted, Posted]:
     """Return two walks beside what stands: one that leaves units idle for the changeover, one that does not."""
-    packed, spaced = (place_posted(plan, problem, rota, now, locked_only=True) for _ in range(2))
+    packed, spaced = (place_posted(problem, rota, now, locked_only=True) for _ in range(2))
     for posted in (packed, spaced):
         posted.draft.problem = spared_heat(posted.draft.problem, now)
     left = still_to_find(packed.draft)
