@@ -159,7 +159,7 @@ class NestedList(QWidget):
 
     def _show_form(self) -> None:
         part = self._current()
-        shown = None if part is None else kind_of(part)
+        shown = "" if part is None else kind_of(part)
         for name in ("remove", "up", "down"):
             self._buttons[name].setEnabled(part is not None)
         if part is not None and shown not in self._forms:

@@ -50,6 +50,7 @@ class SectionsPane(QWidget):
         self._problems: tuple[Problem, ...] = ()
         self._panels: dict[str, SectionPanel] = {}
         self._is_open = False
+        self._last_place: Path | None = None
         self.switch = SectionSwitch(self)
         self.band = CautionBand(gates, self)
         self.problems = ProblemList(self)
@@ -101,9 +102,10 @@ class SectionsPane(QWidget):
         places = [problem.place for problem in self._problems if problem.severity != "note"]
         if not places:
             return False
-        index = (places.index(self._last_place) + 1) % len(places) if self._last_place in places else 0
-        self._last_place = places[index]
-        self.go_to(self._last_place)
+        last = self._last_place
+        place = places[0] if last is None or last not in places else places[(places.index(last) + 1) % len(places)]
+        self._last_place = place
+        self.go_to(place)
         return True
 
     def use_wide(self, wide: bool) -> None:
@@ -118,7 +120,6 @@ class SectionsPane(QWidget):
             panel.recolour()
 
     def _build(self) -> None:
-        self._last_place: Path | None = None
         for label in (self._title, self._count):
             label.setSizePolicy(QSizePolicy.Policy.Preferred, QSizePolicy.Policy.Fixed)
         head = QHBoxLayout()

@@ -42,6 +42,9 @@ _FIELD_OF_CAUTION: Mapping[str, tuple[str, ...]] = MappingProxyType(
 )
 
 
+_SHORT_UNIT_CHARS = 4
+
+
 class FieldRow(QWidget):
     """Editor of one field with unit, origin and problem.
 
@@ -176,8 +179,7 @@ class RecordForm(QWidget):
                 continue
             hazard, words = translate("Cautions", shown.caution.hazard), translate("Cautions", shown.text)
             note = CautionNote(shown.caution.id, f"{hazard}. {words}", gate=False)
-            row, _ = self._layout.getWidgetPosition(self._rows[key])
-            self._layout.insertRow(row + 1, note)
+            self._layout.insertRow(_row_of(self._layout, self._rows[key]) + 1, note)
             self._notes.append(note)
 
     def notes(self) -> tuple[CautionNote, ...]:
@@ -211,7 +213,9 @@ class RecordForm(QWidget):
         self._align_units()
 
     def _align_units(self) -> None:
-        width = max((row.unit_width() for row in self._rows.values()), default=0)
+        # A rare long unit takes its room from its own editor, not from all of them.
+        most = _SHORT_UNIT_CHARS * self.fontMetrics().averageCharWidth()
+        width = max((row.unit_width() for row in self._rows.values() if row.unit_width() <= most), default=0)
         for row in self._rows.values():
             row.set_unit_width(width)
 
@@ -250,3 +254,9 @@ class RecordForm(QWidget):
             for row in self._rows.values():
                 row.recolour()
             self._align_units()
+
+
+def _row_of(layout: QFormLayout, widget: QWidget) -> int:
+    """Return the row of a form in which a widget stands."""
+    position: Any = layout.getWidgetPosition(widget)
+    return int(position[0])

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from PySide6.QtCore import QLocale, Signal, Slot
+from PySide6.QtCore import QDateTime, QLocale, Signal, Slot
 from PySide6.QtWidgets import QHBoxLayout, QPushButton, QSizePolicy, QWidget
 
 from kitplanner.session.autosave import Recovered
@@ -63,7 +63,7 @@ class RecoveryBand(QWidget):
             return
         first = self._waiting[0]
         name = first.original.name if first.original is not None else first.recovery.plan.title or self.tr("a new plan")
-        when = QLocale().toString(first.recovery.saved_at.astimezone(), QLocale.FormatType.ShortFormat)
+        when = QLocale().toString(_moment(first), QLocale.FormatType.ShortFormat)
         sentence = self.tr("Unsaved work on {name} from {when} was found.").format(name=name, when=when)
         if first.original_changed:
             sentence = f"{sentence} {self.tr('The file itself has changed since; compare before you save.')}"
@@ -90,3 +90,8 @@ class RecoveryBand(QWidget):
         """Go on to the next piece."""
         self._waiting = self._waiting[1:]
         self._show_first()
+
+
+def _moment(recovered: Recovered) -> QDateTime:
+    """Return when the work was kept, in local time."""
+    return QDateTime.fromSecsSinceEpoch(int(recovered.recovery.saved_at.timestamp()))
