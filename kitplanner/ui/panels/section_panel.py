@@ -151,7 +151,7 @@ class SectionPanel(QWidget):
             self.table.setFocus(Qt.FocusReason.ShortcutFocusReason)
         else:
             self.open_details()
-            self.details.form.focus_field(self.details.form.keys()[0])
+            self.details.form.focus_field(self.details.form.field_keys()[0])
 
     @Slot()
     def add_one(self) -> None:

@@ -154,7 +154,7 @@ class RecordForm(QWidget):
         """The row of a field."""
         return self._rows[key]
 
-    def keys(self) -> tuple[str, ...]:
+    def field_keys(self) -> tuple[str, ...]:
         """Keys of all fields, shown or not."""
         return tuple(self._rows)
 

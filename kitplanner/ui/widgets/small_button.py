@@ -21,12 +21,15 @@ class SmallButton(QPushButton):
     @guarded(QSize(_LEAST_PX, _LEAST_PX))
     def sizeHint(self) -> QSize:
         """Return the room for the text and, with a menu, its arrow."""
-        metrics = self.fontMetrics()
-        arrow = 2 * metrics.averageCharWidth() if self.menu() is not None else 0
-        width = metrics.horizontalAdvance(self.text()) + 2 * metrics.averageCharWidth() + 8 + arrow
-        return QSize(max(_LEAST_PX, width), max(_LEAST_PX, metrics.height() + 8))
+        return self._needed()
 
     @guarded(QSize(_LEAST_PX, _LEAST_PX))
     def minimumSizeHint(self) -> QSize:
         """Return the same: the text is never cut."""
-        return self.sizeHint()
+        return self._needed()
+
+    def _needed(self) -> QSize:
+        metrics = self.fontMetrics()
+        arrow = 2 * metrics.averageCharWidth() if self.menu() is not None else 0
+        width = metrics.horizontalAdvance(self.text()) + 2 * metrics.averageCharWidth() + 8 + arrow
+        return QSize(max(_LEAST_PX, width), max(_LEAST_PX, metrics.height() + 8))
