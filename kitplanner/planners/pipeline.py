@@ -14,7 +14,6 @@ from msgspec.structs import replace
 from kitplanner.plan.checks import Problem, check, has_errors
 from kitplanner.plan.records import Plan
 from kitplanner.planners.balance import balance
-from kitplanner.planners.effort import effort
 from kitplanner.planners.flow import energy_flow
 from kitplanner.planners.results import BalanceResult, EffortResult, EnergyFlow
 from kitplanner.planners.stations import StationError
@@ -142,6 +141,8 @@ def run_slow(plan: Plan, before: Results | None, cancelled: Cancelled | None = N
     quick = run_quick(plan, before)
     if quick.has_errors or quick.is_effort_current or (cancelled is not None and cancelled()):
         return quick
+    from kitplanner.planners.effort import effort  # much code, first needed after the window's first picture
+
     try:
         rows = effort(plan, cancelled=cancelled)
     except CancelledError:
