@@ -48,7 +48,8 @@ def value_words(value: float, unit: str) -> str:
     """Return a lever's value with its unit; shares as percent."""
     if unit.startswith("of its"):
         return f"{percent(value)} {unit}"
-    return f"{_short(value)} {unit.partition(',')[0]}"
+    words = unit.partition(",")[0]
+    return "1 day" if value == 1.0 and words == "days" else f"{_short(value)} {words}"
 
 
 def _short(value: float) -> str:

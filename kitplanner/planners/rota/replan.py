@@ -30,6 +30,8 @@ from kitplanner.planners.rota.solver import Effort, bouts_of
 from kitplanner.planners.rota.value import excess_step_wh, missed_wh
 
 _PROVED_WH = 0.0015
+# People wait at the board: enough for every turn that falls away among 200, at about half a millisecond each.
+DEFAULT_WORK = 4_000
 _NO_ROTA = "No rota is adopted that could be changed; find one and adopt it first."
 
 
@@ -68,7 +70,7 @@ def replan(plan: Plan, now: Now, effort: Effort | None = None) -> ReplanAnswer:
     now : Now
         The moment and what has happened.
     effort : Effort, optional
-        Steps and seconds that may be spent.
+        Steps and seconds that may be spent; `DEFAULT_WORK` steps without it.
 
     Returns
     -------
@@ -83,7 +85,7 @@ def replan(plan: Plan, now: Now, effort: Effort | None = None) -> ReplanAnswer:
         The moment or a record named is not in the plan.
     """
     began = time.monotonic()
-    allowed = effort or Effort()
+    allowed = effort or Effort(work=DEFAULT_WORK)
     if plan.rota is None:
         raise ReplanError(_NO_ROTA)
     _refuse_contradictory_locks(plan, plan.rota, now)

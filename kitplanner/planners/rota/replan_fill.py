@@ -85,7 +85,7 @@ class Filler:
         most = min(int(self.problem.bout[old.person, day]), old.length + self._longest(old.person, day))
         for length in range(most, old.length, -1):
             longer = dataclasses.replace(old, length=length)
-            if self.search.attempt(lambda longer=longer: self._swap(key, longer)):  # type: ignore[misc]
+            if self.search.attempt(lambda longer=longer: self._swap(key, longer)):
                 new = next(reversed(self.draft.bouts))
                 del self.posted.kept[key]
                 self.posted.kept[new] = changed_record(self.problem, record, longer)
