@@ -5,12 +5,14 @@ from __future__ import annotations
 import argparse
 
 from kitplanner.app.cli_output import EXIT_ANSWERED, read_sound_plan, show, show_json
+from kitplanner.plan.cautions import CAUTIONS
 from kitplanner.plan.records import Plan
 from kitplanner.planners.levers import levers
 from kitplanner.planners.levers_records import LeverRow, LeversResult
 from kitplanner.planners.levers_rota import rota_unmet_wh
 from kitplanner.report.tables import aligned
-from kitplanner.report.wording import number, percent
+from kitplanner.report.wording import number as number_words
+from kitplanner.report.wording import percent
 from kitplanner.report.wording_levers import (
     ask_first_sentence,
     combination_sentence,
@@ -35,8 +37,18 @@ def _blocks(plan: Plan, result: LeversResult) -> list[str]:
     head = verdict_sentence(result)
     if result.fits:
         return [head]
-    combined = "\n".join(combination_sentence(plan, row) for row in result.combinations)
-    return [head, _singles(plan, result), combined, _cuts(result), ask_first_sentence(result)]
+    combined = "\n".join(
+        f"{number}. {combination_sentence(plan, row)}" for number, row in enumerate(result.combinations, start=1)
+    )
+    last = "\n".join(line for line in (ask_first_sentence(result), _lamps_caution(plan, result)) if line)
+    return [head, _singles(plan, result), combined, _cuts(result), last]
+
+
+def _lamps_caution(plan: Plan, result: LeversResult) -> str:
+    """Return the caution that belongs beside cut light; empty where no lever touches a lamp."""
+    lamps = {device.id for device in plan.devices if device.kind == "light"}
+    touched = {row.lever.partition(":")[2] for row in result.singles}
+    return CAUTIONS["C10"].text if lamps & touched else ""
 
 
 def _singles(plan: Plan, result: LeversResult) -> str:
@@ -52,7 +64,7 @@ def _what(plan: Plan, row: LeverRow) -> str:
 
 
 def _span(row: LeverRow) -> tuple[str, str]:
-    before = percent(row.from_value) if row.unit.startswith("of its") else number(row.from_value)
+    before = percent(row.from_value) if row.unit.startswith("of its") else number_words(row.from_value)
     return before, value_words(row.to, row.unit)
 
 

@@ -97,7 +97,7 @@ def character_words(character: Character) -> str:
     """Return what sets a combination apart."""
     match character:
         case "mildest":
-            return "mildest of all"
+            return "mildest with the stations there are"
         case "cuts_only":
             return "without more minutes"
         case "alike":

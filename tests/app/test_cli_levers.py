@@ -57,9 +57,10 @@ def test_text_names_levers_combinations_and_cuts(capsys, monkeypatch):
     assert err == ""
     assert out.startswith("As given 51 % are covered; no cut alone is enough.")
     assert "C-D1 Resident phone, one top-up a day" in out
-    assert "Mildest of all: with" in out
+    assert "Mildest with the stations there are: with" in out
     assert "strict cut" in out
     assert "ask the people first" in out
+    assert "lamps, not candles" in out
 
 
 @pytest.mark.parametrize("name", ["household", "camp"])
