@@ -25,6 +25,8 @@ from kitplanner.planners.demand import use_wh_per_day
 from kitplanner.planners.levers import levers
 from kitplanner.planners.levers_mix import PRIORITY_WEIGHTS, Option, cheapest
 from kitplanner.planners.levers_rota import rota_unmet_wh
+from kitplanner.planners.rota.charging import charging_table
+from kitplanner.planners.rota.solver import Effort, WalkAndImprove
 
 # Half the hall lamps for 4 h, 1 h of laptop, 4 h of network, no tablets, a sixth of a phone a day.
 PRINTED = (
@@ -166,6 +168,12 @@ def test_the_printed_combination_leaves_no_use_unserved(shelter):
     assert balance(edited).coverage_fraction == pytest.approx(1.06, abs=0.01)
     assert rota_unmet_wh(edited) == pytest.approx(0.0, abs=1e-6)
     assert rota_unmet_wh(shelter) > 2000.0
+
+
+def test_the_printed_combination_leaves_none_unserved_in_the_exact_charging_table_either(shelter):
+    edited = levers_edit(PRINTED)(shelter)
+    found = WalkAndImprove().solve(edited, Effort(work=300))
+    assert charging_table(edited, found.bouts, found.slot_min).unmet_wh == pytest.approx(0.0, abs=1e-6)
 
 
 def test_combinations_are_tried_on_a_rota(shelter):

@@ -30,8 +30,8 @@ from kitplanner.planners.rota.solver import Effort, bouts_of
 from kitplanner.planners.rota.value import excess_step_wh, missed_wh
 
 _PROVED_WH = 0.0015
-# People wait at the board: enough for every turn that falls away among 200, at about half a millisecond each.
-DEFAULT_WORK = 4_000
+# People wait at the board: enough for two stands out among 200 people, at about half a millisecond each.
+DEFAULT_WORK = 10_000
 _NO_ROTA = "No rota is adopted that could be changed; find one and adopt it first."
 
 
