@@ -59,7 +59,7 @@ def test_only_fields_that_mean_something_are_shown(qtbot, kind, section, plan):
 
 
 def test_every_editor_has_name_and_buddy(person):
-    for key in person.form.keys():
+    for key in person.form.field_keys():
         row = person.form.row(key)
         assert row.editor.accessibleName() == row.label.text()
         assert row.label.buddy() is row.editor
