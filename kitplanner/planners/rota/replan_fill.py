@@ -56,13 +56,13 @@ class Filler:
 
     def _fill(self) -> None:
         """Add turns before the first need that is missed, else at any later time, until nothing can be added."""
-        done: set[int] = set()
+        # Who finds no opening before a slot finds none before an earlier one either: openings only grow fewer.
+        failed = np.full(len(self.problem.people), -1)
         while not self._met():
             short = self.improver.missing()
             due = int(np.argmax(short > _SLACK_WH))
-            if self._add_before(due, set()) or (due < len(short) - 1 and self._add_before(len(short) - 1, done)):
-                continue
-            return
+            if not self._add_before(due, failed) and not self._add_before(len(short) - 1, failed):
+                return
 
     def _lengthen(self) -> None:
         """Let posted turns to come go on a little longer, least loaded people first, while anything is missing."""
@@ -113,15 +113,13 @@ class Filler:
     def _met(self) -> bool:
         return bool(self.improver.missing().max() <= _SLACK_WH)
 
-    def _add_before(self, due: int, done: set[int]) -> bool:
-        """Add one turn before a slot; people in `done` have no opening left and are not asked again."""
+    def _add_before(self, due: int, failed: IntArray) -> bool:
+        """Add one turn before a slot; `failed` holds up to which slot each person had no opening."""
         able = (self.problem.allowance > 0) & (self.draft.load < self.problem.allowance)
-        for person in self._least_loaded(able):
-            if person in done:
-                continue
+        for person in self._least_loaded(able & (failed < due)):
             if self._add_for(person, due):
                 return True
-            done.add(person)
+            failed[person] = due
         return False
 
     def _add_for(self, person: int, due: int) -> bool:
