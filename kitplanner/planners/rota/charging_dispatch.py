@@ -19,6 +19,8 @@ from kitplanner.planners.rota.charging_stores import Stores
 EMPTY, NOT_ATTENDED, OUTLETS, ACCEPTANCE, CONNECTOR = range(5)
 # A charge begins when a fifth of the battery is missing, or when the coming day needs it; it ends when full.
 BEGIN_MISSING_FRACTION, END_MISSING_FRACTION, LOOK_MIN = 0.2, 0.005, 1440
+# Where energy would run over, a charge begins sooner, yet not for a trifle at every slot.
+OVERFLOW_MISSING_FRACTION = 0.05
 # Needs are told apart in steps of two hours, so that lines do not change places at every slot.
 NEED_STEP_MIN = 120
 _NOTHING_WH = 1e-9
@@ -152,7 +154,7 @@ class _Run:
         begins = (room >= BEGIN_MISSING_FRACTION * whole) | (wanted[:, column] > _NOTHING_WH)
         begins |= self.level < self.kept - _NOTHING_WH
         if self.stores.is_spilling():
-            begins |= room > _NOTHING_WH
+            begins |= room >= OVERFLOW_MISSING_FRACTION * whole
         stays = (self.units_on > 0) & (room > END_MISSING_FRACTION * whole)
         return np.asarray((begins | stays) & (room > _NOTHING_WH))
 

@@ -75,7 +75,9 @@ def simulate(plan: Plan, bouts: tuple[RotaBout, ...], slot: int) -> list[Line]:
     coming = [factor * sum(made[:t]) for t in range(slots + 1)]
     binding = [t for t in range(slots) if made[t] > 0.0] + [slots]
     for t in range(slots):
-        stored = min(full, stored + made[t] * store.eta_in)
+        stored += made[t] * store.eta_in
+        over = max(0.0, stored - full)
+        stored -= over
         times = [tau for tau in binding if tau > t]
         wanted = [[need(line, use[i], open_[i], t, tau) for tau in times] for i, line in enumerate(lines)]
         gifts = share(
@@ -90,9 +92,10 @@ def simulate(plan: Plan, bouts: tuple[RotaBout, ...], slot: int) -> list[Line]:
                 stored * store.eta_out,
                 point.outlets if attended(point.hours, t, per_day, slot) else 0,
                 slot,
+                over > 0.0,
             ),
         )
-        stored -= sum(gifts) / store.eta_out
+        stored = min(full, stored - sum(gifts) / store.eta_out + over)
         for i, line in enumerate(lines):
             line.given.append(gifts[i])
             if line.device.battery_wh:
@@ -134,10 +137,10 @@ def share(
     wanted: list[list[float]],
     use: list[float],
     open_: list[bool],
-    now: tuple[int, list[int], list[float], float, int, int],
+    now: tuple[int, list[int], list[float], float, int, int, bool],
 ) -> list[float]:
     """Who gets what in one slot, at O."""
-    t, times, coming, stored, outlets, slot = now
+    t, times, coming, stored, outlets, slot, is_over = now
     wish, gains = [0.0] * len(lines), [0.0] * len(lines)
     for i, line in enumerate(lines):
         if not open_[i]:
@@ -147,7 +150,7 @@ def share(
             continue
         gains[i] = gain(line, slot)
         room = max(0.0, line.whole * line.device.target_fraction - line.level + use[i])
-        if goes_on(line, room, wanted[i], times, t, slot):
+        if goes_on(line, room, wanted[i], times, t + 1440 // slot) or (is_over and room >= 0.05 * line.whole):
             wish[i] = min(room, gains[i] * line.device.count) / line.eta
     ranks = sorted({line.device.priority for line in lines})
     slack = [
@@ -230,9 +233,9 @@ def plug_in(lines: list[Line], gifts: list[float], gains: list[float], order: li
     return final
 
 
-def goes_on(line: Line, room: float, wanted: list[float], times: list[int], t: int, slot: int) -> bool:
+def goes_on(line: Line, room: float, wanted: list[float], times: list[int], tomorrow: int) -> bool:
     """Whether a charge begins or goes on: a fifth missing, the coming day needs it, or it is not yet full."""
-    column = next((k for k, tau in enumerate(times) if tau >= t + 1440 // slot), len(times) - 1)
+    column = next((k for k, tau in enumerate(times) if tau >= tomorrow), len(times) - 1)
     begins = room >= 0.2 * line.whole or wanted[column] > NOTHING
     stays = line.units_on > 0 and room > 0.005 * line.whole
     return (begins or stays) and room > NOTHING

@@ -22,7 +22,7 @@ def rota_plans(draw: st.DrawFn, days: int = 3) -> Plan:
     groups = [group.id for group in plan.groups]
     people = tuple(draw(a_person(f"people-{place}", groups)) for place in range(draw(st.integers(1, 4))))
     stations = tuple(draw(a_station(f"stations-{place}")) for place in range(draw(st.integers(1, 2))))
-    devices = tuple(draw(a_device(f"devices-{place}")) for place in range(draw(st.integers(0, 3))))
+    devices = tuple(draw(a_device(f"devices-{place}")) for place in range(draw(st.integers(1, 3))))
     stores = tuple(draw(a_store(f"stores-{place}")) for place in range(draw(st.integers(0, 2))))
     sources = tuple(structs.replace(one, wh_per_day=min(one.wh_per_day, 30.0)) for one in plan.other_sources)
     points = tuple(structs.replace(one, attendant=None) for one in plan.charging_points)
@@ -31,6 +31,7 @@ def rota_plans(draw: st.DrawFn, days: int = 3) -> Plan:
         days=min(plan.days, days),
         grid_min=draw(st.sampled_from(GRIDS_MIN)),
         margin_fraction=min(plan.margin_fraction, 0.5),
+        blocks=plan.blocks if draw(st.booleans()) else (),
         people=people,
         stations=stations,
         devices=devices,
@@ -82,7 +83,7 @@ def a_device(draw: st.DrawFn, own_id: str) -> Device:
         "count": draw(st.integers(1, 5)),
         "battery_wh": draw(st.sampled_from((None, 2.0, 11.0, 50.0))),
         "use_by": "wh_per_day",
-        "use_wh_per_day": draw(st.floats(0.0, 20.0)),
+        "use_wh_per_day": draw(st.floats(1.0, 20.0)),
         "charge_w": draw(st.sampled_from((None, 2.0, 15.0))),
         "charge_rate_per_h": draw(st.floats(0.2, 2.0)),
         "taper_end_per_h": 0.05,
@@ -91,7 +92,7 @@ def a_device(draw: st.DrawFn, own_id: str) -> Device:
         "eta": draw(st.floats(0.5, 1.0)),
         "floor_fraction": draw(st.floats(0.0, 0.3)),
         "target_fraction": draw(st.floats(0.5, 1.0)),
-        "start_fraction": draw(st.floats(0.0, 1.0)),
+        "start_fraction": draw(st.sampled_from((0.0, 0.1, 0.5, 1.0))),
         "charge_windows": device.charge_windows if draw(st.booleans()) else (),
     }
     return structs.replace(device, **changes)
@@ -105,7 +106,7 @@ def a_store(draw: st.DrawFn, own_id: str) -> Store:
         count=draw(st.integers(1, 3)),
         nominal_wh=draw(st.floats(1.0, 300.0)),
         health_fraction=draw(st.floats(0.5, 1.0)),
-        start_fraction=draw(st.floats(0.0, 1.0)),
+        start_fraction=draw(st.sampled_from((0.0, 0.1, 0.3, 0.9))),
         floor_fraction=draw(st.floats(0.0, 0.4)),
         eta_in=draw(st.floats(0.5, 1.0)),
         eta_out=draw(st.floats(0.5, 1.0)),

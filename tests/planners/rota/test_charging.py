@@ -334,7 +334,7 @@ def simple_plans(draw: st.DrawFn) -> tuple[Plan, tuple[RotaBout, ...]]:
         for place in range(draw(st.integers(1, 3)))
     )
     store = bank(
-        draw(st.floats(0.0, 20.0)),
+        draw(st.floats(0.0, 25.0)),
         nominal_wh=draw(st.sampled_from((30.0, 200.0))),
         eta_in=draw(st.sampled_from((1.0, 0.9))),
         eta_out=draw(st.sampled_from((1.0, 0.85))),
@@ -443,6 +443,7 @@ def test_judge_finds_nothing_in_solved_plans(plan: Plan) -> None:
 
 
 @pytest.mark.long
+@pytest.mark.timeout(3600)
 @settings(max_examples=1000, deadline=None, suppress_health_check=list(HealthCheck))
 @given(rota_plans())
 def test_judge_finds_nothing_in_a_thousand_solved_plans(plan: Plan) -> None:
