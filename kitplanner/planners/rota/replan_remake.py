@@ -52,7 +52,7 @@ def remade(problem: RotaProblem, rota: Rota, now: Now, search: Search) -> tuple[
     now : Now
         The moment.
     search : Search
-        The search so far; the new one takes what is left of its work and time.
+        The search so far; the new one may spend as many steps and takes what is left of its time.
 
     Returns
     -------
@@ -92,7 +92,7 @@ def _search(posted: Posted, before: Search) -> Search:
     return Search(
         posted.draft,
         excess_step_wh(posted.draft.problem),
-        max(0, before.work - before.steps),
+        before.work,
         before.seconds,
         before.cancelled,
         before.progress,
