@@ -8,6 +8,7 @@ from __future__ import annotations
 
 import math
 from collections.abc import Callable
+from dataclasses import dataclass
 
 import numpy as np
 import numpy.typing as npt
@@ -15,6 +16,7 @@ import numpy.typing as npt
 from kitplanner.domain.chain_model import Chain, regulating_stage
 from kitplanner.domain.chain_solver import ANY_SINK, Question, charging_point, operating_point
 from kitplanner.domain.converter import SwitchingConverter
+from kitplanner.domain.hand_load import LEG_BEST_RPM, cadence_factor
 from kitplanner.domain.operating_point import STATES, OperatingPoint
 from kitplanner.domain.regulator import LinearRegulator
 from kitplanner.domain.roots import FloatArray
@@ -32,12 +34,21 @@ _FOLLOWS_CRANK = ("dropout",)
 Merit = Callable[[FloatArray], tuple[FloatArray, FloatArray]]
 
 
+@dataclass(frozen=True)
+class PacedWatts:
+    """Watts that people give at their best cadence, and what they lose away from it, see `cadence_factor`."""
+
+    watts: Question
+    best_rpm: Question = LEG_BEST_RPM
+    loss: Question = 0.0
+
+
 def best_cadence(
     chain: Chain,
     band_rpm: tuple[float, float],
     sink: UsbSink,
     *,
-    human_w: Question = math.inf,
+    human_w: Question | PacedWatts = math.inf,
     torque_max_nm: Question = math.inf,
     plug_w: Question = math.inf,
 ) -> OperatingPoint:
@@ -51,8 +62,8 @@ def best_cadence(
         Lowest and highest comfortable cadence [rpm].
     sink : UsbSink
         The device.
-    human_w : float or array
-        What each person gives at the crank [W].
+    human_w : float, array or PacedWatts
+        What each person gives at the crank, alike at every cadence or best at one [W].
     torque_max_nm : float or array
         Greatest torque at the crank [N.m].
     plug_w : float or array
@@ -77,15 +88,18 @@ def best_cadence(
     >>> [round(float(amps), 2) for amps in best.plug_a]
     [0.61, 1.0]
     """
-    persons = np.asarray(human_w, np.float64)
-    torque = np.asarray(torque_max_nm, np.float64)
-    accepted = np.asarray(plug_w, np.float64)
-    shape = np.broadcast_shapes(persons.shape, torque.shape, accepted.shape)
+    paced = human_w if isinstance(human_w, PacedWatts) else PacedWatts(human_w)
+    given = (paced.watts, paced.best_rpm, paced.loss, torque_max_nm, plug_w)
+    limits = [np.asarray(limit, np.float64) for limit in given]
+    shape = np.broadcast_shapes(*(limit.shape for limit in limits))
 
     def point(rpm: FloatArray) -> OperatingPoint:
         extra = rpm.ndim - len(shape)
-        wide = [np.broadcast_to(limit, shape).reshape(shape + (1,) * extra) for limit in (persons, torque, accepted)]
-        return charging_point(chain, rpm, sink, human_w=wide[0], torque_max_nm=wide[1], plug_w=wide[2])
+        watts, best_rpm, loss, torque, accepted = (
+            np.broadcast_to(limit, shape).reshape(shape + (1,) * extra) for limit in limits
+        )
+        at_pace_w = watts * cadence_factor(rpm, best_rpm, loss) if loss.any() else watts
+        return charging_point(chain, rpm, sink, human_w=at_pace_w, torque_max_nm=torque, plug_w=accepted)
 
     def merit(rpm: FloatArray) -> tuple[FloatArray, FloatArray]:
         found = point(rpm)

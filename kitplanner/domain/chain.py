@@ -8,7 +8,7 @@ turn, `meter_band` which volts to hold on a panel meter.
 from __future__ import annotations
 
 from kitplanner.domain.cable import Cable
-from kitplanner.domain.cadence import best_cadence, best_fraction_cadence, meter_band, regulating_rpm
+from kitplanner.domain.cadence import PacedWatts, best_cadence, best_fraction_cadence, meter_band, regulating_rpm
 from kitplanner.domain.chain_model import Chain, Comfort
 from kitplanner.domain.chain_solver import charging_point, operating_point
 from kitplanner.domain.converter import SwitchingConverter
@@ -33,6 +33,7 @@ __all__ = [
     "GearBox",
     "LinearRegulator",
     "OperatingPoint",
+    "PacedWatts",
     "Stage",
     "SwitchingConverter",
     "SynchronousRectifier",

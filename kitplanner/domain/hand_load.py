@@ -2,9 +2,13 @@
 
 from __future__ import annotations
 
+from dataclasses import dataclass
+from typing import Literal
+
 import numpy as np
 import numpy.typing as npt
 
+from kitplanner.domain.capacity import OLDER_AGE
 from kitplanner.domain.units import rad_s_from_rpm
 
 FloatArray = npt.NDArray[np.float64]
@@ -24,7 +28,46 @@ LEG_PACE_LOSS, ARM_PACE_LOSS = 0.19, 0.20
 LEAST_RPM, MOST_RPM = 25.0, 110.0
 
 
-def cadence_factor(rpm: npt.ArrayLike, best_rpm: float = LEG_BEST_RPM, loss: float = LEG_PACE_LOSS) -> FloatArray:
+@dataclass(frozen=True)
+class Pace:
+    """Cadence at which somebody turns with least effort [rpm], and the loss away from it [-]; 0: any pace alike."""
+
+    best_rpm: float = LEG_BEST_RPM
+    loss: float = 0.0
+
+
+def pace_of(limb: Literal["legs", "arms"], age: float) -> Pace:
+    """Pace of least effort of a limb at an age.
+
+    Parameters
+    ----------
+    limb : str
+        "legs" or "arms".
+    age : float
+        Age [years].
+
+    Returns
+    -------
+    Pace
+        Best cadence [rpm] and loss away from it [-].
+
+    References
+    ----------
+    See the module's constants.
+
+    Examples
+    --------
+    >>> pace_of("legs", 40), pace_of("legs", 70).best_rpm
+    (Pace(best_rpm=60.0, loss=0.19), 50.0)
+    """
+    if limb == "arms":
+        return Pace(ARM_BEST_RPM, ARM_PACE_LOSS)
+    return Pace(OLDER_LEG_BEST_RPM if age >= OLDER_AGE else LEG_BEST_RPM, LEG_PACE_LOSS)
+
+
+def cadence_factor(
+    rpm: npt.ArrayLike, best_rpm: npt.ArrayLike = LEG_BEST_RPM, loss: npt.ArrayLike = LEG_PACE_LOSS
+) -> FloatArray:
     """Share of the watts left away from the pace of least effort.
 
     eta_n = 1 - k ((n - n0)/n0)^2, n kept between 25 and 110 rpm, never below 0
@@ -33,9 +76,9 @@ def cadence_factor(rpm: npt.ArrayLike, best_rpm: float = LEG_BEST_RPM, loss: flo
     ----------
     rpm : array_like
         Cadence [rpm].
-    best_rpm : float
+    best_rpm : array_like
         Pace of least effort [rpm].
-    loss : float
+    loss : array_like
         k [-].
 
     Returns
@@ -53,7 +96,8 @@ def cadence_factor(rpm: npt.ArrayLike, best_rpm: float = LEG_BEST_RPM, loss: flo
     [1.0, 0.9156]
     """
     n = np.clip(np.asarray(rpm, dtype=float), LEAST_RPM, MOST_RPM)
-    return np.asarray(np.maximum(0.0, 1.0 - loss * np.square((n - best_rpm) / best_rpm)))
+    n0 = np.asarray(best_rpm, dtype=float)
+    return np.asarray(np.maximum(0.0, 1.0 - np.asarray(loss, dtype=float) * np.square((n - n0) / n0)))
 
 
 def handle_torque_nm(radius_m: npt.ArrayLike, force_n: npt.ArrayLike = HANDLE_FORCE_N) -> FloatArray:

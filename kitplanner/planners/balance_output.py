@@ -11,7 +11,7 @@ from collections.abc import Sequence
 
 import numpy as np
 
-from kitplanner.domain.chain import UsbSink, best_cadence
+from kitplanner.domain.chain import PacedWatts, UsbSink, best_cadence
 from kitplanner.plan.records import Person, Plan, Station
 from kitplanner.planners.effort_source import STORE_HOLD_FRACTION, nominal_v
 from kitplanner.planners.people import PersonOutput, allowed_stations, person_limits, person_output
@@ -85,18 +85,23 @@ def _solved(station: Station, outputs: Sequence[PersonOutput]) -> tuple[FloatArr
     sink = UsbSink(hold_v=STORE_HOLD_FRACTION * nominal_v(station))
     limits = np.array(
         [
-            (output.person_power_w, math.inf if output.torque_cap_nm is None else output.torque_cap_nm)
+            (
+                output.person_power_w,
+                math.inf if output.torque_cap_nm is None else output.torque_cap_nm,
+                output.pace.best_rpm,
+                output.pace.loss,
+            )
             for output in outputs
         ]
     )
-    # Many people share the same watts: each pair is solved once.
-    pairs, place = np.unique(limits, axis=0, return_inverse=True)
+    # Many people share the same watts and pace: each is solved once.
+    alike, place = np.unique(limits, axis=0, return_inverse=True)
     point = best_cadence(
         chain,
         (chain.comfort.low_rpm, chain.comfort.high_rpm),
         sink,
-        human_w=pairs[:, 0],
-        torque_max_nm=np.minimum(pairs[:, 1], chain.comfort.torque_max_nm),
+        human_w=PacedWatts(alike[:, 0], alike[:, 2], alike[:, 3]),
+        torque_max_nm=np.minimum(alike[:, 1], chain.comfort.torque_max_nm),
     )
     works = point.charges & np.isfinite(point.plug_w)
     place = place.reshape(-1)

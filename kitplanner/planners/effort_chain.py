@@ -10,7 +10,8 @@ from collections.abc import Sequence
 
 import numpy as np
 
-from kitplanner.domain.chain import BINDINGS, Chain, OperatingPoint, UsbSink, best_cadence
+from kitplanner.domain.chain import BINDINGS, Chain, OperatingPoint, PacedWatts, UsbSink, best_cadence
+from kitplanner.domain.hand_load import Pace, cadence_factor
 from kitplanner.domain.spread import lognormal_factors
 from kitplanner.plan.records import Station
 from kitplanner.planners.effort_source import Source, Work
@@ -20,7 +21,6 @@ from kitplanner.planners.results import EffortLimit, FloatArray
 from kitplanner.planners.stations import chain_of
 
 _CURVE_POINTS = 49
-_WIDEST_FACTOR = 4.0
 
 
 def chain_sources(
@@ -51,18 +51,22 @@ def chain_sources(
         One per person
     """
     chain = chain_of(station)
-    found: dict[tuple[float, float | None, bytes], Source] = {}
+    found: dict[tuple[float, float | None, Pace, bytes], Source] = {}
     keys = [
-        (out.person_power_w, out.torque_cap_nm, tries.tobytes()) for out, tries in zip(outputs, factors, strict=True)
+        (out.person_power_w, out.torque_cap_nm, out.pace, tries.tobytes())
+        for out, tries in zip(outputs, factors, strict=True)
     ]
     for torque_nm in dict.fromkeys(out.torque_cap_nm for out in outputs):
         here = [i for i, out in enumerate(outputs) if out.torque_cap_nm == torque_nm]
         watts = np.array([outputs[i].person_power_w for i in here])
-        point = best_cadence(chain, _band(chain), sink, human_w=watts, torque_max_nm=_torque(chain, torque_nm))
+        best_rpm, loss = np.array([(outputs[i].pace.best_rpm, outputs[i].pace.loss) for i in here]).T
+        paced = PacedWatts(watts, best_rpm, loss)
+        point = best_cadence(chain, _band(chain), sink, human_w=paced, torque_max_nm=_torque(chain, torque_nm))
+        at_pace_w = watts * cadence_factor(point.rpm, best_rpm, loss)
         work = work_curve(chain, sink, torque_nm)
         for place, i in enumerate(here):
             if keys[i] not in found:
-                found[keys[i]] = _source(point, place, work, watts[place] * factors[i], sink, sample)
+                found[keys[i]] = _source(point, place, work, at_pace_w[place] * factors[i], sink, sample)
     return [found[key] for key in keys]
 
 

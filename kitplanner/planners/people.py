@@ -19,8 +19,10 @@ from kitplanner.domain.hand_load import (
     LONG_DAY_MIN,
     POCKET_CRANK_RPM,
     POCKET_RADIUS_M,
+    Pace,
     handle_torque_nm,
     p_crank_cap_w,
+    pace_of,
 )
 from kitplanner.domain.heat import REST_W, HeatRule, heat_rule, ramp_up_fraction
 from kitplanner.domain.human_power import DEVICE_FACTOR, Limb
@@ -230,9 +232,9 @@ class PersonOutput(Struct, frozen=True, kw_only=True):
 
     `station_output_w` (S) is None for a station described by its parts: its chain gives the output. `person_power_w`
     (M) is what turning costs the person at a measured or labelled station, and what the person can give at one
-    described by parts, where `torque_cap_nm` also binds (None: no limit). `capped`: the station's rating or label,
-    not the person, sets the output. `force_capped`: the hand's force sets it. `spread_fraction` joins the person's
-    and the station's own.
+    described by parts at `pace`, where `torque_cap_nm` also binds (None: no limit). `capped`: the station's rating or
+    label, not the person, sets the output. `force_capped`: the hand's force sets it. `spread_fraction` joins the
+    person's and the station's own.
     """
 
     station_output_w: float | None
@@ -243,6 +245,7 @@ class PersonOutput(Struct, frozen=True, kw_only=True):
     station_spread_fraction: float
     force_capped: bool = False
     torque_cap_nm: float | None = None
+    pace: Pace = Pace()
 
 
 def person_output(plan: Plan, person: Person, station: Station) -> PersonOutput:
@@ -307,7 +310,15 @@ def person_output(plan: Plan, person: Person, station: Station) -> PersonOutput:
         station_spread_fraction=rated,
         force_capped=given is None and watts < free_w,
         torque_cap_nm=torque_nm,
+        pace=_pace(person, limb),
     )
+
+
+def _pace(person: Person, limb: Limb) -> Pace:
+    """Return the cadence of least effort and the loss away from it; own watts hold at the person's own station."""
+    if person.watts_by == "own" and given_for(person, limb) is not None:
+        return Pace()
+    return pace_of(limb, age_of(person))
 
 
 def _given_share(person: Person, limb: Limb, limits: Limits) -> float | None:

@@ -161,7 +161,7 @@ def station_output(plan: Plan, _results: Results, ids: Sequence[str]) -> Trace:
 
 def _output_formula(person: Person, station: Station) -> str:
     if station.described_by == "parts":
-        return "greatest plug watts in the comfort band that the person's watts and the torque allow"
+        return "greatest plug watts in the comfort band that the person's watts at that pace and the torque allow"
     if station.described_by == "label":
         return "output = min(label, efficiency * person's watts)"
     if person.watts_by == "share":

@@ -15,6 +15,7 @@ from kitplanner.domain.chain import (
     FixedLoss,
     GearBox,
     LinearRegulator,
+    PacedWatts,
     UsbSink,
     best_cadence,
     best_fraction_cadence,
@@ -23,6 +24,7 @@ from kitplanner.domain.chain import (
     operating_point,
     regulating_rpm,
 )
+from kitplanner.domain.hand_load import cadence_factor
 from tests.domain.chain_sets import A_BUCK, C_5V, C_12V, SMALL, A, B
 
 
@@ -148,3 +150,32 @@ def test_best_share_where_every_cadence_has_a_state_prefers_a_following_regulato
     assert best.states_at() == ("dropout",)
     row = charging_point(A, np.linspace(80.0, 150.0, 2001), UsbSink(limit_a=1.0))
     assert float(best.crank_to_plug_fraction) == pytest.approx(row.crank_to_plug_fraction.max(), rel=1e-4)
+
+
+def test_best_cadence_passes_by_what_would_overheat_the_regulator() -> None:
+    """Turned as fast as the band allows, the bare regulator would give more and pass 125 degC."""
+    poor = dataclasses.replace(A, stages=(A.stages[0], LinearRegulator(theta_c_per_w=110.0), A.stages[2]))
+    hottest = charging_point(poor, 300.0, UsbSink(limit_a=0.5))
+    assert bool(hottest.flags["overtemp"])
+    found = best_cadence(poor, (80.0, 300.0), UsbSink(limit_a=0.5))
+    assert bool(found.charges)
+    assert not bool(found.flags["overtemp"])
+
+
+@pytest.mark.parametrize(("best_rpm", "loss"), [(55.0, 0.20), (50.0, 0.19), (70.0, 0.0)])
+def test_a_person_loses_watts_away_from_the_pace_of_least_effort(best_rpm: float, loss: float) -> None:
+    """Against a dense row of cadences, each with the watts left at that pace."""
+    watts = 12.0
+    found = best_cadence(B, (40.0, 80.0), UsbSink(), human_w=PacedWatts(watts, best_rpm, loss))
+    row = np.linspace(40.0, 80.0, 4001)
+    dense = charging_point(B, row, UsbSink(), human_w=watts * cadence_factor(row, best_rpm, loss))
+    assert float(found.plug_w) == pytest.approx(float(np.nanmax(dense.plug_w)), rel=1e-6)
+    assert float(found.human_w) <= watts * float(cadence_factor(found.rpm, best_rpm, loss)) * (1.0 + 1e-9)
+
+
+def test_people_with_paces_of_their_own_are_solved_as_if_alone() -> None:
+    watts, best, loss = np.array([8.0, 8.0, 20.0]), np.array([50.0, 60.0, 55.0]), np.array([0.19, 0.19, 0.20])
+    together = best_cadence(B, (40.0, 80.0), UsbSink(), human_w=PacedWatts(watts, best, loss))
+    for i in range(3):
+        alone = best_cadence(B, (40.0, 80.0), UsbSink(), human_w=PacedWatts(watts[i], best[i], loss[i]))
+        assert together.plug_w[i] == pytest.approx(float(alone.plug_w), rel=1e-9)

@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+import dataclasses
+
 import numpy as np
 import pytest
 from hypothesis import given
@@ -12,10 +14,12 @@ from kitplanner.domain.hand_load import (
     ARM_PACE_LOSS,
     DEFAULT_RADIUS_M,
     OLDER_LEG_BEST_RPM,
+    Pace,
     cadence_factor,
     hand_activity_level,
     handle_torque_nm,
     p_crank_cap_w,
+    pace_of,
     peak_force_limits,
 )
 
@@ -67,3 +71,10 @@ def test_hand_activity_at_its_ends():
     assert hand_activity_level(0.0, 80.0) == 0.0
     assert hand_activity_level(1.0, 0.0) == 0.0
     assert peak_force_limits(12.0) == (0.0, 0.0)
+
+
+def test_pace_of_limbs_and_ages() -> None:
+    """Sacchetti et al. 2010: older riders are most efficient nearer 50 rpm; from 65 years here."""
+    assert [pace_of("legs", age).best_rpm for age in (40, 64, 65)] == [60.0, 60.0, 50.0]
+    assert pace_of("arms", 70) == Pace(55.0, 0.20)
+    assert float(cadence_factor(110.0, *dataclasses.astuple(Pace()))) == 1.0

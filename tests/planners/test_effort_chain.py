@@ -212,3 +212,26 @@ def test_a_better_gear_never_takes_more_minutes(watts: float, eta: float, gain: 
     slow, quick = a_row(worse, watts, "day"), a_row(better, watts, "day")
     if slow.minutes_p50 is not None:
         assert quick.minutes_p50 <= slow.minutes_p50 * (1.0 + 1e-6)
+
+
+def test_a_weak_day_below_the_least_current_counts_as_never_full() -> None:
+    """At 10.4 W the phone just gets its ampere; a good tenth of days give less, and then it takes none."""
+    picky = replace(PHONE, input_least_a=1.0)
+    row = a_row(STATIONS["B"], 10.4, "day", devices=(picky,))
+    assert row.minutes_p50 is not None
+    assert row.minutes_p90 is None
+    assert a_row(STATIONS["B"], 10.4, "day").minutes_p90 is not None
+
+
+def test_an_estimate_loses_watts_at_a_crank_that_wants_fast_turning() -> None:
+    """Arms are best near 55 turns a minute; set A charges from about 97 on, so the same watts bring less there."""
+    estimated = person_output(Plan(), Person(id="P", name="any", age=40), STATIONS["A"])
+    outputs = [replace(estimated, person_power_w=7.0), person_output(Plan(), turner(7.0), STATIONS["A"])]
+    sample = draws()
+    sure = [np.ones(sample.person.size)] * 2
+    paced, steady = chain_sources(STATIONS["A"], UsbSink(), outputs, sure, sample)
+    assert steady.human_w == pytest.approx(7.0, rel=1e-3)
+    assert paced.human_w <= 0.90 * 7.0
+    assert paced.output_w < 0.90 * steady.output_w
+    # The sample lies around the solved point, with the watts that are left at its pace.
+    assert float(np.median(paced.sample_w)) == pytest.approx(paced.output_w, rel=0.02)

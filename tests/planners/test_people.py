@@ -9,6 +9,7 @@ import pytest
 from hypothesis import given
 from hypothesis import strategies as st
 
+from kitplanner.domain.hand_load import pace_of
 from kitplanner.domain.heat import HeatRule
 from kitplanner.plan.records import Conditions, Note, Person, Plan, Station, Window
 from kitplanner.planners.people import (
@@ -256,6 +257,23 @@ class TestOutput:
         for adult in (person(age=40), person(watts_by="share", share_arms_fraction=1.0)):
             assert person_output(PLAN, adult, crank).station_output_w == pytest.approx(20.0)
             assert not person_output(PLAN, adult, crank).force_capped
+
+    def test_hand_force_is_taken_at_the_middle_of_a_measured_cranks_band(self):
+        """30 N at 0.15 m is 4.5 N m: 28.3 W at 60 turns a minute, the middle of 40 to 80."""
+        strong = Person(id="p", name="Oruun", age=40, watts_by="own", own_arms_w=80.0)
+        crank = Station(id="s", name="Crank", described_by="label", label_w=90.0, eta_fraction=1.0)
+        banded = msgspec.structs.replace(crank, comfort_low_rpm=40.0, comfort_high_rpm=80.0)
+        for station in (crank, banded):
+            assert person_output(PLAN, strong, station).station_output_w == pytest.approx(28.27, rel=1e-3)
+
+    def test_pace_holds_for_estimates_and_not_for_own_watts(self):
+        parts = Station(id="s", name="Crank", described_by="parts")
+        known = Person(id="p", name="Oruun", age=40, watts_by="own", own_arms_w=20.0)
+        assert person_output(PLAN, known, parts).pace.loss == 0.0
+        assert person_output(PLAN, Person(id="q", name="Ilve", age=40), parts).pace == pace_of("arms", 40)
+        # Nothing stated for the legs: they are estimated.
+        stand = msgspec.structs.replace(parts, kind="pedal")
+        assert person_output(PLAN, known, stand).pace == pace_of("legs", 40)
 
     def test_hand_force_counts_for_both_sides_of_the_drag_law(self):
         """At 0.05 m 30 N are 9.42 W: strong and reference adult alike; 6 W give (6/9.42 - 0.1)/0.9 of the rating."""
