@@ -338,7 +338,8 @@ def charge_ceiling_rate_per_h(degc: npt.ArrayLike, chemistry: str = "li_ion") ->
     return np.asarray(np.take(np.asarray(rates, dtype=float), step))
 
 
-_LITHIUM = ((0.0, 5.0, 15.0, 55.0), (0.0, 0.1, 0.2, 0.5, 0.0))
+LI_ION_COLDEST_DEGC = 0.0
+_LITHIUM = ((LI_ION_COLDEST_DEGC, 5.0, 15.0, 55.0), (0.0, 0.1, 0.2, 0.5, 0.0))
 _CEILINGS: Mapping[str, tuple[tuple[float, ...], tuple[float, ...]]] = MappingProxyType(
     {
         "li_ion": _LITHIUM,

@@ -9,10 +9,11 @@ import math
 
 import numpy as np
 
+from kitplanner.domain.battery import LI_ION_COLDEST_DEGC
 from kitplanner.domain.cadence import best_fraction_cadence
 from kitplanner.domain.chain import STATES, Chain, OperatingPoint, charging_point, meter_band, operating_point
 from kitplanner.plan.records import Plan, Station, TestLoad
-from kitplanner.planners.bench_stages import bench_stages, charges_cell, stored_w
+from kitplanner.planners.bench_stages import bench_stages, charges_cell, known, stored_w
 from kitplanner.planners.results import BenchPoint, BenchState, BenchSweep, FloatArray
 from kitplanner.planners.stations import StationError, chain_of, sink_of_test_load
 
@@ -81,17 +82,17 @@ def bench_point(plan: Plan, station_id: str, rpm: float | None = None, amps: flo
     return BenchPoint(
         station=station.id,
         rpm=float(point.rpm),
-        human_w=_known(human_w),
-        torque_nm=_known(point.torque_nm),
+        human_w=known(human_w),
+        torque_nm=known(point.torque_nm),
         stages=bench_stages(point, load),
-        stored_w=_known(into_cell_w),
-        crank_to_usb_fraction=_known(_share(float(point.plug_w), human_w)),
-        crank_to_battery_fraction=_known(_share(into_cell_w, human_w)),
-        regulator_degc=_known(point.junction_degc),
-        meter_low_v=_known(low_v),
-        meter_high_v=_known(high_v),
-        plug_v=_known(point.plug_v),
-        plug_a=_known(point.plug_a),
+        stored_w=known(into_cell_w),
+        crank_to_usb_fraction=known(_share(float(point.plug_w), human_w)),
+        crank_to_battery_fraction=known(_share(into_cell_w, human_w)),
+        regulator_degc=known(point.junction_degc),
+        meter_low_v=known(low_v),
+        meter_high_v=known(high_v),
+        plug_v=known(point.plug_v),
+        plug_a=known(point.plug_a),
         states=_states(point, load),
     )
 
@@ -167,17 +168,16 @@ def _check_number(value: float | None, what: str, unit: str, example: str) -> No
 def _states(point: OperatingPoint, load: TestLoad, place: tuple[int, ...] = ()) -> tuple[BenchState, ...]:
     """Return the failure states of one point, the cell's last."""
     found = tuple(name for name in _STATE_NAMES if bool(point.flags[name][place]))
-    return (*found, "cold") if not charges_cell(load) else found
+    if charges_cell(load):
+        return found
+    if load.cell_degc < LI_ION_COLDEST_DEGC:
+        return (*found, "cold")
+    # Too hot a cell is left alone by its charger.
+    return found if "not_charging" in found else (*found, "not_charging")
 
 
 def _share(part_w: float, whole_w: float) -> float:
     return part_w / whole_w if whole_w > 0.0 else math.nan
-
-
-def _known(value: float | FloatArray) -> float | None:
-    """Return a number, None for NaN."""
-    number = float(value)
-    return number if math.isfinite(number) else None
 
 
 def _fixed(values: FloatArray) -> FloatArray:

@@ -7,12 +7,11 @@ from types import MappingProxyType
 
 import numpy as np
 
+from kitplanner.domain.battery import charge_ceiling_rate_per_h
 from kitplanner.domain.chain import OperatingPoint
 from kitplanner.plan.records import TestLoad
 from kitplanner.planners.results import BenchStage, FloatArray
 
-# Below this a lithium cell must not be charged: pack data sheets.
-CELL_COLD_DEGC = 0.0
 # The three steps every chain has, in the words of the table.
 _OWN_STEPS = MappingProxyType({0: "gear", 1: "friction and iron", 2: "copper and brush"})
 
@@ -22,14 +21,14 @@ def charges_cell(load: TestLoad) -> bool:
 
     Examples
     --------
-    >>> charges_cell(TestLoad()), charges_cell(TestLoad(cell_degc=-3.0))
-    (True, False)
+    >>> [charges_cell(TestLoad(cell_degc=degc)) for degc in (20.0, -3.0, 60.0)]
+    [True, False, False]
     """
-    return load.cell_degc >= CELL_COLD_DEGC
+    return float(charge_ceiling_rate_per_h(load.cell_degc)) > 0.0
 
 
 def stored_w(point: OperatingPoint, load: TestLoad) -> FloatArray:
-    """Return the watts that stay in the cell [W]; 0 where the current is too small or the cell too cold.
+    """Return the watts that stay in the cell [W]; 0 where the current is too small or the cell too cold or hot.
 
     P = eta_charger eta_cell P_plug
 
@@ -68,13 +67,13 @@ def bench_stages(point: OperatingPoint, load: TestLoad) -> tuple[BenchStage, ...
     rows = [
         BenchStage(
             name=_OWN_STEPS.get(place, name),
-            in_w=_known(point.stage_in_w[place]),
-            out_w=_known(point.stage_out_w[place]),
-            in_v=_known(point.stage_in_v[place]),
-            in_a=_known(point.stage_in_a[place]),
-            out_v=_known(point.stage_out_v[place]),
-            out_a=_known(point.stage_out_a[place]),
-            loss_w=None if bool(point.failed) else _known(point.stage_loss_w[place]),
+            in_w=known(point.stage_in_w[place]),
+            out_w=known(point.stage_out_w[place]),
+            in_v=known(point.stage_in_v[place]),
+            in_a=known(point.stage_in_a[place]),
+            out_v=known(point.stage_out_v[place]),
+            out_a=known(point.stage_out_a[place]),
+            loss_w=None if bool(point.failed) else known(point.stage_loss_w[place]),
         )
         for place, name in enumerate(point.stage_names)
     ]
@@ -83,31 +82,31 @@ def bench_stages(point: OperatingPoint, load: TestLoad) -> tuple[BenchStage, ...
     rows.append(
         BenchStage(
             name="device charger",
-            in_w=_known(plug_w),
-            out_w=_known(charged_w),
-            in_v=_known(point.plug_v),
-            in_a=_known(point.plug_a),
+            in_w=known(plug_w),
+            out_w=known(charged_w),
+            in_v=known(point.plug_v),
+            in_a=known(point.plug_a),
             out_v=None,
             out_a=None,
-            loss_w=_known(plug_w - charged_w),
+            loss_w=known(plug_w - charged_w),
         )
     )
     rows.append(
         BenchStage(
             name="cell",
-            in_w=_known(charged_w),
-            out_w=_known(cell_w),
+            in_w=known(charged_w),
+            out_w=known(cell_w),
             in_v=None,
             in_a=None,
             out_v=None,
             out_a=None,
-            loss_w=_known(charged_w - cell_w),
+            loss_w=known(charged_w - cell_w),
         )
     )
     return tuple(rows)
 
 
-def _known(value: float | FloatArray) -> float | None:
+def known(value: float | FloatArray) -> float | None:
     """Return a number, None for NaN."""
     number = float(value)
     return number if math.isfinite(number) else None

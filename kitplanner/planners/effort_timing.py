@@ -19,7 +19,8 @@ from kitplanner.planners.effort_spread import Draws, field_spread
 from kitplanner.planners.results import FloatArray
 from kitplanner.planners.supply import fed_stores, station_to_outlet_fraction
 
-# Below this cell temperature the steps of the charging rule apply; above it the device's own rate does.
+# Below this cell temperature the steps of the charging rule apply; above it the device's own rate does, up to where a
+# hot cell must not be charged at all.
 COLD_BELOW_DEGC = 15.0
 
 
@@ -64,8 +65,9 @@ def fill_of(device: Device, span: Span, air_degc: float, store_fraction: float |
     """Return one charge as the timing needs it: cold rule and the device's own limits applied."""
     battery_wh = device.battery_wh or 0.0
     rate_per_h = device.charge_rate_per_h if device.charge_w is None else device.charge_w / battery_wh
-    if air_degc < COLD_BELOW_DEGC:
-        rate_per_h = min(rate_per_h, float(charge_ceiling_rate_per_h(air_degc, "li_ion")))
+    ceiling_per_h = float(charge_ceiling_rate_per_h(air_degc, "li_ion"))
+    if air_degc < COLD_BELOW_DEGC or ceiling_per_h <= 0.0:
+        rate_per_h = min(rate_per_h, ceiling_per_h)
     is_limited_by_parts = source.work is not None
     input_w = math.inf if device.input_limit_a is None or is_limited_by_parts else device.input_limit_a * BUS_V
     return Fill(device=device, span=span, rate_per_h=rate_per_h, input_w=input_w, store_fraction=store_fraction)

@@ -17,7 +17,7 @@ STATE_WORDS: Mapping[BenchState, str] = MappingProxyType(
         "vin_low": "the converter has too little input to work",
         "collapse": "the load asks for more power than the generator can give",
         "vbus_low": "the volts at the device are too low",
-        "not_charging": "the current is too small for the device to charge",
+        "not_charging": "the current is too small or the cell too hot for the device to charge",
         "overtemp": "the regulator gets too hot",
         "overvolt": "a part gets more volts than it is rated for",
         "cadence_high": "the turning is faster than is comfortable",

@@ -266,3 +266,13 @@ def test_a_station_without_test_load_gets_the_usual_one() -> None:
     bare = replace(BENCH.stations[2], test_load=None)
     point = bench_point(replace(BENCH, stations=(bare,)), "B", rpm=60.0, amps=1.0)
     assert point.stored_w == pytest.approx(0.90 * 0.97 * point.plug_v * point.plug_a)
+
+
+def test_a_cell_too_hot_to_charge_stores_nothing_either() -> None:
+    """Pack data sheets end at 55 degC."""
+    station = BENCH.stations[2]
+    hot = replace(station, test_load=replace(station.test_load, cell_degc=60.0))
+    point = bench_point(replace(BENCH, stations=(hot,)), "B", rpm=60.0, amps=1.0)
+    assert point.states == ("not_charging",)
+    assert point.stored_w == 0.0
+    assert sum(stage.loss_w for stage in point.stages) == pytest.approx(point.human_w)
