@@ -17,7 +17,6 @@ J_PER_WH = 3600.0
 WH_PER_J = 1.0 / J_PER_WH
 MINUTES_PER_HOUR = 60.0
 MINUTES_PER_DAY = 1440
-HOURS_PER_MONTH = 730.5
 # International pound, foot and inch, exact by the 1959 agreement (NIST Special Publication 811, appendix B).
 KG_PER_LB = 0.45359237
 M_PER_FT = 0.3048
@@ -26,7 +25,6 @@ CM_PER_IN = 2.54
 J_PER_KCAL = 4184.0
 RAD_S_PER_RPM = 2.0 * math.pi / 60.0
 MA_PER_A = 1000.0
-OHM_PER_MOHM = 1e-3
 M2_PER_MM2 = 1e-6
 M_PER_MM = 1e-3
 # Absolute zero on the Celsius scale, exact (BIPM, SI brochure, 9th edition, 2019).

@@ -4,12 +4,12 @@ from __future__ import annotations
 
 from collections.abc import Iterator
 
+from kitplanner.domain.regulator import divider_output_v
+from kitplanner.domain.usb_sink import USB_HIGH_V
 from kitplanner.plan.checks_fields import shown
 from kitplanner.plan.fields import field
 from kitplanner.plan.problem import Place, Problem, error, note, warning
 from kitplanner.plan.records import CableStage, LinearStage, Plan, Station, Store
-
-USB_LIMIT_V = 5.25
 
 
 def check_supply(plan: Plan) -> tuple[Problem, ...]:
@@ -72,11 +72,11 @@ def _check_stages(place: Place, station: Station) -> Iterator[Problem]:
             words = "the cable's resistance is not known and that of a good cable is taken, 0.25 ohm"
             yield note((*here, "loop_ohm"), words, "enter it, or the wire size and length")
         if isinstance(stage, LinearStage):
-            output_v = stage.reference_v * (1 + stage.r2_ohm / stage.r1_ohm) + stage.adjust_a * stage.r2_ohm
-            if "usb" in station.connector.lower() and output_v > USB_LIMIT_V:
+            output_v = divider_output_v(stage.r1_ohm, stage.r2_ohm, stage.reference_v, stage.adjust_a)
+            if "usb" in station.connector.lower() and output_v > USB_HIGH_V:
                 yield warning(
                     (*here, "r2_ohm"),
-                    f"this divider gives {output_v:.2f} V and a USB socket must not have more than {USB_LIMIT_V} V",
+                    f"this divider gives {output_v:.2f} V and a USB socket must not have more than {USB_HIGH_V} V",
                     "choose a smaller resistor to ground",
                 )
     kinds = [type(stage).__name__ for stage in station.stages]

@@ -7,6 +7,7 @@ from __future__ import annotations
 
 from msgspec import Struct
 
+from kitplanner.domain.demand import wh_from_battery_fraction, wh_from_power, wh_from_times
 from kitplanner.plan.records import Device, Plan
 from kitplanner.planners.balance_windows import MINUTES_PER_HOUR, day_parts, merged, total_min
 
@@ -65,12 +66,11 @@ def use_wh_per_day(device: Device) -> float:
     6.48
     """
     if device.use_by == "power_hours":
-        return (device.use_w or 0.0) * use_hours_per_day(device)
+        return float(wh_from_power(device.use_w or 0.0, use_hours_per_day(device)))
     if device.use_by == "percent":
-        return (device.battery_wh or 0.0) * (device.use_battery_fraction_per_day or 0.0)
+        return float(wh_from_battery_fraction(device.use_battery_fraction_per_day or 0.0, device.battery_wh or 0.0))
     if device.use_by == "times":
-        minutes = (device.use_times_per_day or 0.0) * (device.use_min_each or 0.0)
-        return (device.use_w or 0.0) * minutes / MINUTES_PER_HOUR
+        return float(wh_from_times(device.use_w or 0.0, device.use_times_per_day or 0.0, device.use_min_each or 0.0))
     return device.use_wh_per_day or 0.0
 
 

@@ -33,7 +33,7 @@ from kitplanner.planners.people import (
 )
 from kitplanner.planners.people_watts import given_for, reference_w
 from kitplanner.planners.results import EffortLimit, FloatArray
-from kitplanner.planners.stations import chain_of
+from kitplanner.planners.stations import chain_of, sink_of_device
 
 # Volts at which a measured station's watts are turned into amps: the nominal bus voltage of USB 2.0.
 BUS_V = 5.0
@@ -245,9 +245,7 @@ def sink_of(row: Case) -> UsbSink | None:
         return None
     if row.route == "store":
         return UsbSink(hold_v=STORE_HOLD_FRACTION * nominal_v(row.station))
-    device = row.device
-    limit_a = np.inf if device.input_limit_a is None else device.input_limit_a
-    return UsbSink(limit_a=float(limit_a), hold_v=device.input_hold_v, least_a=device.input_least_a)
+    return sink_of_device(row.device)
 
 
 def nominal_v(station: Station) -> float:
