@@ -122,7 +122,12 @@ Commands = argparse._SubParsersAction  # noqa: SLF001 - argparse has no public n
 
 def _add(commands: Commands[argparse.ArgumentParser], name: str, about: str, example: str) -> argparse.ArgumentParser:
     return commands.add_parser(
-        name, help=about, description=f"{about}.", epilog=f"Example: {example}", allow_abbrev=False
+        name,
+        prog=f"kitplanner {name}",
+        help=about,
+        description=f"{about}.",
+        epilog=f"Example: {example}",
+        allow_abbrev=False,
     )
 
 

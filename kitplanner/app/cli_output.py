@@ -59,7 +59,8 @@ def read_sound_plan(path: Path) -> Plan:
     problems = check(plan)
     if has_errors(problems):
         errors = [problem for problem in problems if problem.severity == "error"]
-        head = f"{plain(path.name)} has {counted(len(errors), 'problem', 'problems')} that stop the calculation:"
+        found = counted(len(errors), "problem that stops", "problems that stop")
+        head = f"{plain(path.name)} has {found} the calculation:"
         raise CommandError("\n".join([head, *(f"  {problem_line(error)}" for error in errors)]), EXIT_PROBLEMS)
     return plan
 

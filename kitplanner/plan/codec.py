@@ -132,6 +132,8 @@ def refuse_size(size_bytes: int) -> None:
 
 def _text_of(data: bytes) -> str:
     """Return the bytes as text; only plain UTF-8 without a byte order mark is a plan file."""
+    if data and not data.strip(b"\x00"):
+        raise PlanFileError("The file", "it holds nothing but zero bytes, as after a power cut while writing", _RESTORE)
     if data.startswith((codecs.BOM_UTF16_LE, codecs.BOM_UTF16_BE)) or b"\x00" in data[:4]:
         raise PlanFileError(
             "The file", "it is not written in UTF-8 (it looks like UTF-16)", "save it as UTF-8 text again"

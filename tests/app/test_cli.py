@@ -154,7 +154,7 @@ def test_check_of_a_sound_plan(capsys):
 @pytest.mark.parametrize("command", [["balance"], ["effort"], ["balance", "--json"], ["effort", "--json"]])
 def test_problems_stop_the_calculation_and_are_listed(capsys, broken, command):
     err = refused(capsys, command[0], broken, *command[1:], code=1)
-    assert "stop the calculation" in err
+    assert "3 problems that stop the calculation" in err
     assert "days" in err
     assert "\x1b" not in err
     assert "days" in refused(capsys, "bench", broken, "A-S1", code=1)

@@ -103,6 +103,7 @@ BAD_FILES = [
     (b'{"format": "kitplanner-plan", "version": 0}', "version"),
     (CAMP.decode().encode("utf-16"), "UTF-16"),
     (CAMP.decode().encode("utf-16-le"), "UTF-16"),
+    (b"\x00" * 4096, "zero bytes"),
     (b"\xef\xbb\xbf" + CAMP, "byte order mark"),
     (CAMP.decode().encode("utf-8").replace(b"Mess", b"M\xe4ss"), "not UTF-8"),
     (CAMP[: len(CAMP) // 2], "written only in part"),
