@@ -15,6 +15,7 @@ from kitplanner.domain.chain import (
     charging_point,
     operating_point,
 )
+from kitplanner.domain.chain_model import march, source_v
 from tests.domain import reference_chain as reference
 from tests.domain.chain_sets import A_BUCK, C_5V, C_12V, A, B
 
@@ -107,6 +108,10 @@ def test_a_person_strong_enough_for_the_unstable_branch_still_gets_none_of_it() 
     assert good.any()
     assert (~good).any()
     assert (np.flatnonzero(good).max()) < np.flatnonzero(~good).min()
+    # What such a point gives up at is the peak, found here on a dense row of currents.
+    net_v = source_v(B, np.array([36.0]))
+    plug_v, plug_a = march(B, net_v, np.linspace(0.0, float(net_v[0]) / B.machine.ra_ohm, 20_001))
+    assert point.greatest_plug_w[~good] == pytest.approx(float((plug_v * plug_a)[np.argmax(plug_a)]), rel=1e-6)
 
 
 def test_batches_do_not_show() -> None:

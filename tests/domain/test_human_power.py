@@ -188,7 +188,9 @@ def test_age_boundaries():
     assert sustainable_w("light", 12, "legs", 15.0, 15.0) == pytest.approx(44.0)
     assert sustainable_w("strong", 16, "legs", 15.0, 30.0) == sustainable_w("light", 16, "legs", 15.0, 30.0)
     assert sustainable_w("strong", 18, "legs", 15.0, 30.0) > sustainable_w("strong", 17, "legs", 15.0, 30.0)
-    # From 60 the arms' share of the legs is greater, from 65 efficiency is less.
+    # From 60 the arms' share of the legs is greater, from 65 efficiency is less: at 65 as at 66 but for a year.
+    at_65, at_66 = (float(sustainable_w("usual", age, "legs", 15.0, 15.0, 75.0)) for age in (65, 66))
+    assert at_66 < at_65 < 1.04 * at_66
     assert arm_ratio(60) > arm_ratio(59)
     assert sustainable_w("usual", 65, "legs", 15.0, 15.0, 75.0) < 0.95 * sustainable_w(
         "usual", 64, "legs", 15.0, 15.0, 75.0

@@ -587,3 +587,29 @@ def test_days_follow_from_made_and_used(plan):
     assume(len(result.days) > 1)
     for before, after in zip(result.days, result.days[1:], strict=False):
         assert after.end_wh - before.end_wh == pytest.approx(after.made_wh - after.use_wh, abs=1e-6)
+
+
+def test_a_day_that_ends_nearly_empty_is_not_empty():
+    """Two days of 6 Wh at D from a start charge that leaves 0.4 Wh, then one that lacks 0.4 Wh."""
+    phone = replace(PHONE, eta=1.0, floor_fraction=0.0, start_fraction=1.0, battery_wh=12.4)
+    assert balance(Plan(days=2, margin_fraction=0.0, devices=(phone,))).first_empty_day is None
+    assert balance(Plan(days=2, margin_fraction=0.0, devices=(replace(phone, battery_wh=11.6),))).first_empty_day == 2
+
+
+def test_people_are_the_limit_where_they_offer_just_what_the_station_has():
+    busy = replace(CRANK, daily_min=60)
+    plan = Plan(devices=(PHONE,), stations=(busy,), people=(replace(ADULT, cap_min=60),))
+    found = balance(plan)
+    assert found.stations[0].offered_min == found.stations[0].available_min == 60
+    assert found.limit == "people-minutes"
+    crowd = replace(plan, people=(*plan.people, replace(ADULT, id="q", cap_min=1)))
+    assert balance(crowd).limit == "station-minutes"
+
+
+def test_what_is_cut_at_the_best_station_is_offered_at_the_next():
+    """Caps of 60 and 60 min, 60 min of the stronger crank: each keeps half of it and offers the rest at the other."""
+    people = (replace(ADULT, cap_min=60), replace(ADULT, id="q", cap_min=60))
+    stations = (replace(CRANK, daily_min=60), replace(CRANK, id="t", output_w=3.0, daily_min=240))
+    found = balance(Plan(devices=(PHONE,), stations=stations, people=people))
+    assert [row.used_min for row in found.stations] == pytest.approx([60.0, 60.0])
+    assert found.stations[1].made_wh_per_day == pytest.approx(3.0)

@@ -105,3 +105,9 @@ def test_drag_makes_a_weaker_day_cost_more_than_its_share() -> None:
     factors = person_factors(Plan(), person, stand, output, draws())
     relative = float(np.std(np.log(np.maximum(source.sample_w, 1e-6))))
     assert relative > float(np.std(np.log(factors)))
+
+
+def test_luck_with_losses_points_the_same_way_as_luck_with_watts() -> None:
+    """A draw above the middle is the good end everywhere: watts up, losses down."""
+    eta = lossy_fraction(np.array(0.85), np.array(0.05), np.array([-1.0, 0.0, 1.0]))
+    assert eta[0] < eta[1] < eta[2]
