@@ -24,6 +24,7 @@ from kitplanner.plan.records import ChargeSpell, Plan
 
 if TYPE_CHECKING:
     from kitplanner.planners.levers_records import LeversResult
+    from kitplanner.planners.rota.remarks import RotaRemark
     from kitplanner.planners.rota.replan import ReplanAnswer
     from kitplanner.planners.rota.result import RotaAnswer, Violation
 
@@ -66,6 +67,7 @@ class Found:
     plan: Plan
     answer: RotaAnswer
     work: int
+    remarks: tuple[RotaRemark, ...] = ()
 
 
 @dataclass(frozen=True)
@@ -106,13 +108,14 @@ class Levered:
 def find_rota(plan: Plan, work: int, seconds: float, ask: Ask) -> Found:
     """Return a rota of a plan; refuse locks that contradict each other."""
     from kitplanner.planners.rota.answer import locked_violations, rota_answer
+    from kitplanner.planners.rota.remarks import remarks
     from kitplanner.planners.rota.solver import Effort
 
     broken = locked_violations(plan)
     if broken:
         raise RefusedError(f"The locked turns break a rule among themselves: {broken[0].text} Unlock or change them.")
     effort = Effort(work=work, seconds=seconds, cancelled=ask.cancelled, progress=ask.tell)
-    return Found(plan, rota_answer(plan, effort), work)
+    return Found(plan, rota_answer(plan, effort), work, remarks(plan))
 
 
 def replan_rota(plan: Plan, now: Now, work: int, ask: Ask) -> Replanned:
@@ -179,11 +182,12 @@ def judge_rota(plan: Plan, _ask: Ask) -> Judged:
     return Judged(plan, judge(plan, plan.rota) if plan.rota is not None else ())
 
 
-def find_levers(plan: Plan, _ask: Ask) -> Levered:
-    """Return what would make the plan fit."""
+def find_levers(plan: Plan, ask: Ask) -> Levered:
+    """Return what would make the plan fit; each combination is tried on a rota too."""
     from kitplanner.planners.levers import levers
+    from kitplanner.planners.levers_rota import rota_unmet_wh
 
-    return Levered(plan, levers(plan))
+    return Levered(plan, levers(plan, functools.partial(rota_unmet_wh, cancelled=ask.cancelled)))
 
 
 class _Ended:
