@@ -130,10 +130,10 @@ def supply(plan: Plan) -> Supply:
         Minutes and energy by station line and person; energy at O [Wh a day]
     """
     output_w, human_w = output_table(plan)
-    choices = _choices(plan, output_w)
+    choices = choices_of(plan, output_w)
     available = np.array([station_minutes(plan, station) for station in plan.stations])
     to_outlet = np.array([station_to_outlet_fraction(fed_stores(plan, station)) for station in plan.stations])
-    day_caps = _caps_by_day(plan)
+    day_caps = caps_by_day(plan)
     offers = [share_out(cap, choices, available) for cap, _ in day_caps]
     worked = [offered * kept_fraction(offered, available) for offered in offers]
     weights = [days / plan.days for _, days in day_caps]
@@ -161,7 +161,7 @@ def _mean(arrays: list[FloatArray], weights: list[float]) -> FloatArray:
     return mean
 
 
-def _caps_by_day(plan: Plan) -> list[tuple[FloatArray, int]]:
+def caps_by_day(plan: Plan) -> list[tuple[FloatArray, int]]:
     """Return each different day's caps in order, with how many days it lasts."""
     if not plan.conditions.ramp_up:
         return [(_caps(plan, None), plan.days)]
@@ -174,7 +174,7 @@ def _caps(plan: Plan, day: int | None) -> FloatArray:
     return np.array([float(person_limits(plan, person, day=day).cap_min) for person in plan.people])
 
 
-def _choices(plan: Plan, output_w: FloatArray) -> tuple[tuple[int, ...], ...]:
+def choices_of(plan: Plan, output_w: FloatArray) -> tuple[tuple[int, ...], ...]:
     """Return for each person the stations where they give something, most watts first.
 
     Equal watts go by id, so that the order of the records decides nothing.
