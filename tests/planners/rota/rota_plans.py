@@ -48,6 +48,7 @@ def a_person(draw: st.DrawFn, own_id: str, groups: list[str]) -> Person:
     changes: dict[str, Any] = {
         "group": draw(st.sampled_from([None, *groups])),
         "stations": (),
+        "mass_kg": draw(st.sampled_from((None, 45.0, 95.0))),
         "age": 40 if person.watts_by == "self_test" else draw(st.sampled_from((12, 14, 17, 25, 55, 62, 70, None))),
         "hours": person.hours if draw(st.booleans()) else (),
         "cap_min": draw(st.sampled_from((None, None, 20, 45))),
