@@ -7,21 +7,30 @@ in the user's locale at display scale (fractions as percent), and the typed text
 
 from __future__ import annotations
 
-import datetime
-import math
-from collections.abc import Mapping
 from typing import Any
 
 from PySide6.QtCore import QCoreApplication, QLocale
 
+from kitplanner.plan import field_writing
+from kitplanner.plan.field_writing import NO_NAMES, Names, windows_text
 from kitplanner.plan.fields import FieldSpec
-from kitplanner.plan.records import Window
 
-Names = Mapping[str, str]
+__all__ = [
+    "Names",
+    "choice_label",
+    "default_text",
+    "editor_text",
+    "help_text",
+    "label_of",
+    "number_text",
+    "range_words",
+    "translate",
+    "unit_of",
+    "value_text",
+    "windows_text",
+]
 
 translate = QCoreApplication.translate
-
-_NO_NAMES: Names = {}
 
 
 def label_of(spec: FieldSpec) -> str:
@@ -31,65 +40,28 @@ def label_of(spec: FieldSpec) -> str:
 
 def choice_label(spec: FieldSpec, value: Any) -> str:
     """Return the translated label of a choice, or the value itself when it is none."""
-    for choice, label in spec.choices:
-        if choice == value:
-            return translate("Fields", label)
-    return "" if value is None else str(value)
+    return field_writing.choice_label(spec, value, translate)
 
 
 def unit_of(spec: FieldSpec) -> str:
     """Return the translated unit as shown."""
-    return translate("Fields", spec.unit) if spec.unit else ""
+    return field_writing.unit_of(spec, translate)
 
 
 def number_text(spec: FieldSpec, value: float, locale: QLocale | None = None, *, exact: bool = True) -> str:
     """Write a number at display scale; `exact` adds digits where the field's decimals would lose some."""
-    shown = float(f"{float(value) * spec.display_scale:.15g}")
-    if not math.isfinite(shown):
-        return str(shown)
-    decimals = 0 if spec.kind == "integer" else spec.decimals
-    text = f"{shown:.{decimals}f}"
-    if exact and not math.isclose(float(text), shown, rel_tol=1e-12):
-        text = f"{shown:.15g}"
-    elif not exact and shown != 0 and float(text) == 0:
-        text = f"{shown:.2g}"
-    if "." in text and "e" not in text:
-        text = text.rstrip("0").rstrip(".")
     point = (QLocale() if locale is None else locale).decimalPoint()
-    return text.replace(".", point)
+    return field_writing.number_text(spec, value, point, exact=exact)
 
 
-def windows_text(windows: tuple[Window, ...]) -> str:
-    """Write windows as "08:30-10:00, 16:30-18:30"."""
-    return ", ".join(f"{window.start}-{window.end}" for window in windows)
-
-
-def value_text(spec: FieldSpec, value: Any, names: Names = _NO_NAMES, *, exact: bool = True) -> str:
+def value_text(spec: FieldSpec, value: Any, names: Names = NO_NAMES, *, exact: bool = True) -> str:
     """Write a value as text without its unit; None and empty collections are empty text."""
-    if value is None:
-        return ""
-    match spec.kind:
-        case "number" | "integer":
-            return number_text(spec, value, exact=exact)
-        case "flag":
-            return translate("FieldText", "yes") if value else translate("FieldText", "no")
-        case "choice":
-            return choice_label(spec, value)
-        case "windows":
-            return windows_text(value)
-        case "days":
-            return ", ".join(str(day) for day in value)
-        case "date":
-            return value.isoformat() if isinstance(value, datetime.date) else str(value)
-        case "refs":
-            return ", ".join(names.get(one, one) for one in value)
-        case "ref":
-            return names.get(value, str(value))
-        case _:
-            return str(value)
+    numeric = value is not None and spec.kind in ("number", "integer")
+    number = number_text(spec, value, exact=exact) if numeric else ""
+    return field_writing.value_text(spec, value, number, names, translate)
 
 
-def default_text(spec: FieldSpec, names: Names = _NO_NAMES) -> str:
+def default_text(spec: FieldSpec, names: Names = NO_NAMES) -> str:
     """Say what an empty field means: its default with the unit, or the rule in words."""
     default = spec.default
     if default is None or default == ():
@@ -102,28 +74,10 @@ def default_text(spec: FieldSpec, names: Names = _NO_NAMES) -> str:
 
 def range_words(spec: FieldSpec) -> str:
     """Say which numbers a field takes."""
-    unit = unit_of(spec)
-    only_low = spec.high is None
-    low = "" if spec.low is None else f"{number_text(spec, spec.low)} {unit if only_low else ''}".strip()
-    high = "" if spec.high is None else f"{number_text(spec, spec.high)} {unit}".strip()
-    if low and high and spec.low_open:
-        sentence = translate("FieldText", "Enter a number above {low}, up to {high}.")
-    elif low and high:
-        sentence = translate("FieldText", "Enter a number from {low} to {high}.")
-    elif low and spec.low_open:
-        sentence = translate("FieldText", "Enter a number above {low}.")
-    elif low:
-        sentence = translate("FieldText", "Enter {low} or more.")
-    elif high and spec.high_open:
-        sentence = translate("FieldText", "Enter a number below {high}.")
-    elif high:
-        sentence = translate("FieldText", "Enter {high} or less.")
-    else:
-        sentence = translate("FieldText", "Enter a number.")
-    return sentence.format(low=low, high=high)
+    return field_writing.range_words(spec, QLocale().decimalPoint(), translate)
 
 
-def editor_text(spec: FieldSpec, value: Any, names: Names = _NO_NAMES) -> str:
+def editor_text(spec: FieldSpec, value: Any, names: Names = NO_NAMES) -> str:
     """Write a value as an editor takes it: choices and references by key, the rest as shown, every digit kept."""
     if value is None:
         return ""

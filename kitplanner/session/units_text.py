@@ -1,25 +1,11 @@
-"""Units a user may type behind a number, other than the field's own: "1.5 kWh", "90 s", "4000 mAh at 3.85 V"."""
+"""Units a user may type behind a number, as factors; `plan/unit_factors.py` has them exactly."""
 
 from __future__ import annotations
 
-import re
+from kitplanner.plan.quantities import QuantityError, parse
+from kitplanner.plan.unit_factors import exact_factor, is_known_unit
 
-from kitplanner.domain import units
-
-# Prefixes of the International System (BIPM, SI brochure, 9th edition, 2019, table 7) that occur in this trade.
-_PREFIXES = {"u": 1e-6, "µ": 1e-6, "μ": 1e-6, "m": 1e-3, "k": 1e3, "M": 1e6}
-_PREFIXED = ("Wh", "W", "A", "V", "ohm", "Nm", "m", "F", "J", "g", "s")
-_SPELLINGS = {
-    "Ω": "ohm",
-    "Ohm": "ohm",
-    "ohms": "ohm",
-    "N m": "Nm",
-    "minutes": "min",
-    "hours": "h",
-    "WH": "Wh",
-    "wh": "Wh",
-}
-_CHARGE = re.compile(r"^(m?)Ah\s*(?:at|@|x|×|,|\*)\s*([\d.,]+)\s*V?$")
+__all__ = ["factor_of_unit", "is_unit"]
 
 
 def factor_of_unit(typed: str, wanted: str) -> float | None:
@@ -32,20 +18,13 @@ def factor_of_unit(typed: str, wanted: str) -> float | None:
     >>> round(4000 * factor_of_unit("mAh at 3.85 V", "Wh"), 6)
     15.4
     """
-    wanted = _plain(wanted)
-    if wanted == "Wh" and (charge := _CHARGE.match(typed)):
-        volts = float(charge.group(2).replace(",", "."))
-        return float(units.wh_from_mah(1.0 if charge.group(1) else units.MA_PER_A, volts))
-    typed = _plain(typed)
-    known = _known_factors().get((typed, wanted))
-    if known is not None:
-        return known
-    typed_scale, typed_base = _split(typed)
-    wanted_scale, wanted_base = _split(wanted)
-    if typed_base == wanted_base:
-        return typed_scale / wanted_scale
-    base = _known_factors().get((typed_base, wanted_base))
-    return None if base is None else base * typed_scale / wanted_scale
+    factor = exact_factor(typed, wanted)
+    if factor is not None:
+        return float(factor)
+    try:
+        return parse(f"1 {typed}", wanted).value if "Ah" in typed else None
+    except QuantityError:
+        return None
 
 
 def is_unit(typed: str) -> bool:
@@ -56,33 +35,4 @@ def is_unit(typed: str) -> bool:
     >>> is_unit("kWh"), is_unit("mAh at 3.7 V"), is_unit("O")
     (True, True, False)
     """
-    unit = _plain(typed)
-    _, base = _split(unit)
-    named = {one for pair in _known_factors() for one in pair}
-    return unit in named or base in _PREFIXED or unit in ("%", "Ah", "mAh", "rpm") or bool(_CHARGE.match(typed))
-
-
-def _plain(unit: str) -> str:
-    unit = unit.strip().removesuffix("/day").replace("Ω", "ohm").replace("Ω", "ohm")
-    return _SPELLINGS.get(unit, unit)
-
-
-def _split(unit: str) -> tuple[float, str]:
-    """Part a prefix from its unit."""
-    if unit not in _PREFIXED and unit[:1] in _PREFIXES and unit[1:] in _PREFIXED:
-        return _PREFIXES[unit[0]], unit[1:]
-    return 1.0, unit
-
-
-def _known_factors() -> dict[tuple[str, str], float]:
-    hour = units.MINUTES_PER_HOUR
-    return {
-        ("J", "Wh"): units.WH_PER_J,
-        ("h", "min"): hour,
-        ("s", "min"): 1.0 / hour,
-        ("min", "h"): 1.0 / hour,
-        ("lb", "kg"): units.KG_PER_LB,
-        ("g", "kg"): 1e-3,
-        ("cm", "m"): 1e-2,
-        ("ft", "m"): units.M_PER_FT,
-    }
+    return is_known_unit(typed) or factor_of_unit(typed, "Wh") is not None
