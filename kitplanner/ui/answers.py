@@ -30,6 +30,12 @@ def _balance_page() -> QWidget:
     return BalancePage()
 
 
+def _rota_page() -> QWidget:
+    from kitplanner.ui.pages.rota_page import RotaPage  # a large page: loads after the window's first picture
+
+    return RotaPage()
+
+
 def _bench_page() -> QWidget:
     from kitplanner.ui.pages.bench_page import BenchPage  # draws charts: loads pyqtgraph when shown
 
@@ -47,6 +53,7 @@ class PageEntry(Struct, frozen=True):
 PAGES: tuple[PageEntry, ...] = (
     PageEntry("effort", QT_TRANSLATE_NOOP("Answers", "Effort"), _effort_page),
     PageEntry("balance", QT_TRANSLATE_NOOP("Answers", "Balance"), _balance_page),
+    PageEntry("rota", QT_TRANSLATE_NOOP("Answers", "Rota"), _rota_page),
     PageEntry("bench", QT_TRANSLATE_NOOP("Answers", "Bench"), _bench_page),
 )
 

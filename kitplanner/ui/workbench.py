@@ -7,6 +7,7 @@ from typing import TYPE_CHECKING
 from PySide6.QtCore import QByteArray, Qt, Slot
 from PySide6.QtWidgets import QSplitter
 
+from kitplanner.plan.edits import Edit
 from kitplanner.plan.records import Plan
 from kitplanner.planners.pipeline import Results
 from kitplanner.session.autosave import Autosave, Recovered, find_recovered, recovery_folder
@@ -175,6 +176,12 @@ class Workbench(QSplitter):
         page = self.answers.page(key)
         if hasattr(page, "point_changed"):
             page.point_changed.connect(self.chain.show_point)
+        if hasattr(page, "edit_requested"):
+            page.edit_requested.connect(self._on_page_edit)
+
+    @Slot(object, str, str)
+    def _on_page_edit(self, edit: Edit, text: str, merge_key: str) -> None:
+        self._document.apply(edit, text, merge_key or None)
 
     @Slot(object)
     def _on_restore_requested(self, recovered: Recovered) -> None:

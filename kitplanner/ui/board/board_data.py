@@ -17,7 +17,7 @@ from kitplanner.plan.records import Bout, ChargeSpell, Person, Plan, Station
 from kitplanner.planners.balance_windows import DAY_MIN, Part, day_parts, merged, outside
 from kitplanner.planners.people import person_limits
 from kitplanner.planners.rota.check_finding import Violation
-from kitplanner.planners.rota.result import FloatArray, RotaAnswer, RotaBout
+from kitplanner.planners.rota.result import FloatArray, RotaAnswer, RotaBout, RotaCharge
 from kitplanner.planners.supply import open_parts
 from kitplanner.report.wording import plain
 from kitplanner.report.wording_rota import unit_words
@@ -96,7 +96,10 @@ class Curves:
 
 @dataclass(frozen=True)
 class BoardData:
-    """Everything the board draws; `breaks` maps ids of turns to sentences, `row_breaks` (row key, day)."""
+    """Everything the board draws; `breaks` maps ids of turns to sentences, `row_breaks` (row key, day).
+
+    `is_older`: the answer behind the curves was made before the last change.
+    """
 
     plan: Plan = field(default_factory=Plan)
     bouts: tuple[ShownBout, ...] = ()
@@ -108,6 +111,7 @@ class BoardData:
     grid_min: int = 5
     editable: bool = False
     now: tuple[int, int] | None = None
+    is_older: bool = False
 
     @functools.cached_property
     def looks(self) -> dict[str, Look]:
@@ -232,6 +236,14 @@ def shown_charges(spells: Iterable[ChargeSpell]) -> tuple[ShownCharge, ...]:
             spell.energy_wh,
         )
         for spell in spells
+    )
+
+
+def proposed_charges(charging: Iterable[RotaCharge]) -> tuple[ShownCharge, ...]:
+    """Return the charging table of a proposal."""
+    return tuple(
+        ShownCharge(row.day, row.start_min, row.end_min, row.device, row.count, row.first_ticket, row.energy_wh)
+        for row in charging
     )
 
 

@@ -152,13 +152,14 @@ class BoardPainter:
             for bout in data.by_watcher.get(row.key, ()):
                 if bout.day in days:
                     self._watch(painter, place, bout, scene, scheme)
-        bouts = sorted((b for b in self._row_bouts(data, row) if b.day in days), key=lambda b: (b.day, b.start_min))
-        for at, bout in enumerate(bouts):
+        bouts = [bout for bout in self._row_bouts(data, row) if bout.day in days]
+        watched = data.by_watcher.get(row.key, ()) if row.kind == "person" else ()
+        starts = sorted(layout.x_of(b.day, b.start_min) for b in (*bouts, *(w for w in watched if w.day in days)))
+        for bout in bouts:
             box = layout.block_rect(place, bout.day, bout.start_min, bout.end_min)
             if box.right() < area.left() - 60 or box.left() > area.right() + 4:
                 continue
-            follower = bouts[at + 1] if at + 1 < len(bouts) else None
-            room = layout.x_of(follower.day, follower.start_min) if follower else box.right() + 400
+            room = next((x for x in starts if x >= box.right() - 1), box.right() + 400)
             self._block(painter, box, bout, room, scene)
 
     def _block(self, painter: QPainter, box: QRectF, bout: ShownBout, room: float, scene: Scene) -> None:

@@ -104,6 +104,10 @@ class RotaBoard(QAbstractScrollArea):
             self._rebuild()
             self.reveal()
 
+    def hours(self) -> tuple[int, int]:
+        """Return the first and last minute of a day that is shown."""
+        return self._scene.layout.low_min, self._scene.layout.high_min
+
     def set_zoom(self, zoom: float) -> None:
         """Make the day wider; 1 fits the window."""
         middle = self._scene.layout.time_at(self._scene.layout.body.center().x())
@@ -224,6 +228,8 @@ class RotaBoard(QAbstractScrollArea):
         }
         if not data.bouts:
             words["no curves"] = ""
+        if data.is_older:
+            words["due"] += self.tr(" (before the last change)")
         return words | {f"day {day}": self.tr("Day {day}").format(day=day) for day in self.days}
 
     def bout_at(self, at: QPointF) -> tuple[ShownBout | None, Grip]:

@@ -1,0 +1,131 @@
+"""The rota page's own sentences and tables: aims, unmet use, charging, what a re-plan changes, state of the rota."""
+
+from __future__ import annotations
+
+from collections.abc import Iterable
+
+from PySide6.QtCore import QCoreApplication
+
+from kitplanner.plan.records import Bout, Plan, Rota
+from kitplanner.planners.rota.replan_records import PersonChange
+from kitplanner.planners.rota.result import RotaAnswer, RotaCharge, RotaProgress
+from kitplanner.report.tables_rota import aim_table, charging_rows
+from kitplanner.report.wording import counted, energy, listed, number, percent, plain
+from kitplanner.report.wording_rota import aim_words, violation_sentence
+from kitplanner.session.rota_run import Replanned
+from kitplanner.ui.board.board_data import ShownCharge
+from kitplanner.ui.pages.plain_table import TableData
+
+translate = QCoreApplication.translate
+
+
+def rota_state(plan: Plan, rota: Rota | None) -> str:
+    """Return which rota the plan has: its version, whether it hangs on the wall, how long it holds."""
+    if rota is None:
+        return translate("RotaPage", "No rota is adopted yet.")
+    if rota.state == "posted":
+        text = translate("RotaPage", "Version {edition}, posted, valid to day {day}.")
+    else:
+        text = translate("RotaPage", "Version {edition}, draft, not posted.")
+    return text.format(edition=rota.edition, day=rota.valid_until_day or plan.days)
+
+
+def progress_words(moment: RotaProgress) -> str:
+    """Return how far a search is: seconds, steps, value and bound of the aim at work."""
+    stage = str(moment.stage).replace("_", " ")
+    known = {"unmet", "margin", "excess", "greatest_load", "spread", "unpopular", "handovers", "change"}
+    aim = aim_words(moment.stage) if moment.stage in known else stage  # type: ignore[arg-type]
+    text = translate("RotaPage", "{seconds} s, step {steps}, {aim}").format(
+        seconds=number(moment.seconds, 1), steps=moment.steps, aim=aim
+    )
+    if not moment.value and not moment.bound:
+        return text
+    is_share = moment.stage in ("greatest_load", "load")
+    value, bound = (percent(x, 1) if is_share else number(x, 2) for x in (moment.value, moment.bound))
+    return text + translate("RotaPage", ": {value}, at best {bound}").format(value=value, bound=bound)
+
+
+def aims_data(answer: RotaAnswer) -> TableData:
+    """Return the aims with value, bound and gap."""
+    table = aim_table(answer)
+    return TableData(table.header, table.rows)
+
+
+def charging_data(plan: Plan, charges: Iterable[ShownCharge], days: tuple[int, ...]) -> TableData:
+    """Return the charging table of some days."""
+    rows, shown = [], [one for one in charges if one.day in days]
+    as_records = [
+        RotaCharge(
+            day=one.day,
+            start_min=one.start_min,
+            end_min=one.end_min,
+            device=one.device,
+            count=one.count,
+            first_ticket=one.first_ticket,
+            energy_wh=one.energy_wh,
+        )
+        for one in shown
+    ]
+    table = charging_rows(plan, as_records)
+    for one, row in zip(shown, table.rows, strict=True):
+        rows.append((row[2], str(one.day), *row[:2], *row[3:6]))
+    header = (table.header[2], translate("RotaPage", "day"), *table.header[:2], *table.header[3:6])
+    return TableData(header, tuple(rows))
+
+
+def _turn_words(plan: Plan, bout: Bout) -> str:
+    station = next((one for one in plan.stations if one.id == bout.station), None)
+    place = (plain(station.name) or station.id) if station is not None else bout.station
+    if station is not None and station.count > 1:
+        place += f" {bout.unit}"
+    return translate("RotaPage", "day {day} {start}–{end} {place}").format(
+        day=bout.day, start=bout.start, end=bout.end, place=place
+    )
+
+
+def change_line(plan: Plan, change: PersonChange) -> str:
+    """Return what a re-plan changes for one person."""
+    name = next((plain(one.name) or one.id for one in plan.people if one.id == change.person), change.person)
+    parts = []
+    for before, after, gone, new in (
+        (
+            change.before,
+            change.after,
+            translate("RotaPage", "no longer turns {turns}"),
+            translate("RotaPage", "now turns {turns}"),
+        ),
+        (
+            change.watched_before,
+            change.watched_after,
+            translate("RotaPage", "no longer watches {turns}"),
+            translate("RotaPage", "now watches {turns}"),
+        ),
+    ):
+        if before:
+            parts.append(gone.format(turns=listed([_turn_words(plan, bout) for bout in before])))
+        if after:
+            parts.append(new.format(turns=listed([_turn_words(plan, bout) for bout in after])))
+    return f"{name}: {'; '.join(parts)}."
+
+
+def replan_lines(replanned: Replanned) -> tuple[str, list[str]]:
+    """Return a re-plan's head line and its lines: who changes, what stays unmet, locks that could not be kept."""
+    answer = replanned.answer
+    turning = [one for one in answer.changes if one.before or one.after]
+    if not answer.changes:
+        head = translate("RotaPage", "Nobody's turns change.")
+    elif len(answer.changes) == 1 and len(turning) == 1:
+        name = change_line(answer.plan, turning[0]).partition(":")[0]
+        head = translate("RotaPage", "Only {name}'s turns change.").format(name=name)
+    else:
+        people = counted(len(answer.changes), "person", "people")
+        head = translate("RotaPage", "Turns change for {people}; all others stay.").format(people=people)
+    lines = [change_line(answer.plan, one) for one in answer.changes]
+    for bout in answer.lost_locks:
+        text = translate("RotaPage", "A locked turn cannot be kept: {turn}.")
+        lines.append(text.format(turn=_turn_words(answer.plan, bout)))
+    if answer.unmet_wh > 0.005:
+        text = translate("RotaPage", "{wh} of use cannot be met.")
+        lines.append(text.format(wh=energy(answer.unmet_wh, "O")))
+    lines += [violation_sentence(found) for found in replanned.violations]
+    return head, lines or [translate("RotaPage", "Everything stays as it was.")]
