@@ -6,7 +6,7 @@ from kitplanner.plan.checks_fields import check_fields
 from kitplanner.plan.checks_people import check_people
 from kitplanner.plan.checks_plan import check_plan
 from kitplanner.plan.checks_references import check_ids, check_references, check_sizes
-from kitplanner.plan.checks_rota import check_rota, check_spells
+from kitplanner.plan.checks_rota import check_grid, check_rota, check_spells
 from kitplanner.plan.checks_supply import check_supply
 from kitplanner.plan.checks_use import check_use
 from kitplanner.plan.problem import Place, Problem, Severity
@@ -49,6 +49,7 @@ def check(plan: Plan) -> tuple[Problem, ...]:
         *check_supply(plan),
         *check_use(plan),
         *check_spells(plan),
+        *check_grid(plan),
         *check_rota(plan),
     )
     return tuple(sorted(found, key=lambda problem: _ORDER[problem.severity]))

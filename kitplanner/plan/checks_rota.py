@@ -14,6 +14,8 @@ from kitplanner.plan.places import short
 from kitplanner.plan.problem import Place, Problem, error, note, warning
 from kitplanner.plan.records import Bout, ChargeSpell, Plan, Spell
 
+DAY_MIN = 1440
+
 
 class _PartOfDay(Protocol):
     """What absences, outages, bouts and charging have in common."""
@@ -67,6 +69,17 @@ def _check_outage(plan: Plan, place: Place, spell: Spell, count: int) -> Iterato
         yield note(
             place, f"{spell.count} units are out of service and there are only {count}", f"enter at most {count}"
         )
+
+
+def check_grid(plan: Plan) -> tuple[Problem, ...]:
+    """Return problems of the rota's grid: a day must be a whole number of steps."""
+    wrong = []
+    for place, step in ((("grid_min",), plan.grid_min), (("rota", "slot_min"), plan.rota and plan.rota.slot_min)):
+        if step and step > 0 and DAY_MIN % step:
+            wrong.append(
+                error(place, f"a day is not a whole number of {step} min steps", "enter 5, 10, 15, 20, 30 or 60 min")
+            )
+    return tuple(wrong)
 
 
 def check_rota(plan: Plan) -> tuple[Problem, ...]:

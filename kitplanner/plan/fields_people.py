@@ -6,7 +6,6 @@ from kitplanner.plan.fields_spec import (
     OWN_VALUE,
     QT_TRANSLATE_NOOP,
     FieldSpec,
-    above_zero,
     choice,
     flag,
     name,
@@ -173,11 +172,11 @@ PERSON_POWER = (
         ),
         "self_test",
     ),
-    above_zero(
+    number(
         "mass_kg",
         QT_TRANSLATE_NOOP("Fields", "Body mass"),
         "kg",
-        250,
+        (20, 250),
         QT_TRANSLATE_NOOP("Fields", "Only if the person wants to give it; not needed."),
         optional=True,
         default=75.0,

@@ -76,8 +76,8 @@ def percent(key: str, label: str, high: float, note: str, **more: Any) -> FieldS
 
 
 def efficiency(key: str, label: str, note: str, **more: Any) -> FieldSpec:
-    """Make an efficiency: above 0, at most 1, shown as percent."""
-    return percent(key, label, 1, note, low_open=True, **more)
+    """Make an efficiency: 1 % to 100 %; a step that loses more than 99 % is a fault, not a stage."""
+    return percent(key, label, 1, note, low=0.01, **more)
 
 
 def text(key: str, label: str, note: str, **more: Any) -> FieldSpec:

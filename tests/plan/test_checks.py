@@ -121,7 +121,7 @@ def test_values_out_of_range_are_errors_at_their_key(plan, path, value):
 def test_ranges_are_told_at_display_scale():
     (problem,) = found(put(CAMP, ("stores", "B-B1", "eta_in"), 1.2), ("stores", "B-B1", "eta_in"))
     assert problem.sentence == (
-        "stores, record B-B1, key eta_in: Charging efficiency is 120 %; enter a value above 0 and at most 100 %."
+        "stores, record B-B1, key eta_in: Charging efficiency is 120 %; enter a value of at least 1 and at most 100 %."
     )
 
 
@@ -386,3 +386,9 @@ def test_one_value_out_of_range_is_always_found(plan, data):
     path, spec = data.draw(st.sampled_from(numbers))
     value = data.draw(st.sampled_from([NAN, INF, -INF, spec.high * 2 + 1, spec.low - 1]))
     assert any(problem.place == path and problem.severity == "error" for problem in check(put(plan, path, value)))
+
+
+def test_a_grid_that_does_not_divide_a_day_is_refused():
+    problems = check(Plan(grid_min=7))
+    assert any(problem.place == ("grid_min",) and "7 min" in problem.text for problem in problems)
+    assert not any(problem.place == ("grid_min",) for problem in check(Plan(grid_min=15)))

@@ -10,7 +10,8 @@ from __future__ import annotations
 
 import numpy as np
 
-from kitplanner.planners.rota.charging_inputs import BoolArray, ChargingInputs, FloatArray, IntArray
+from kitplanner.planners.rota.charging_inputs import ChargingInputs, FloatArray, IntArray
+from kitplanner.planners.rota.grid import BoolArray
 
 # Times looked at ahead: all that can bind in the near future, every few of them beyond.
 NEAR_TIMES, FAR_TIMES = 240, 240

@@ -12,8 +12,9 @@ import numpy as np
 
 from kitplanner.planners.rota.charging_ahead import Ahead
 from kitplanner.planners.rota.charging_gifts import Gifts
-from kitplanner.planners.rota.charging_inputs import BoolArray, ChargingInputs, FloatArray, IntArray
+from kitplanner.planners.rota.charging_inputs import ChargingInputs, FloatArray, IntArray
 from kitplanner.planners.rota.charging_stores import Stores
+from kitplanner.planners.rota.grid import BoolArray
 
 # Why use stays unserved.
 EMPTY, NOT_ATTENDED, OUTLETS, ACCEPTANCE, CONNECTOR = range(5)

@@ -14,12 +14,12 @@ import numpy.typing as npt
 
 from kitplanner.domain.battery import charge_ceiling_rate_per_h
 from kitplanner.plan.records import Device, Plan, Store
-from kitplanner.planners.balance_windows import DAY_MIN, Part, day_parts, merged, outside
+from kitplanner.planners.balance_windows import DAY_MIN, day_parts, merged, outside
 from kitplanner.planners.demand import outlet_to_device_fraction
 from kitplanner.planners.effort_source import BUS_V
 from kitplanner.planners.effort_timing import COLD_BELOW_DEGC, cell_degc
-from kitplanner.planners.rota.grid import BoolArray, day_mask, touched_mask
-from kitplanner.planners.rota.need import charging_mask, use_curve
+from kitplanner.planners.rota.grid import BoolArray, day_mask
+from kitplanner.planners.rota.need import charging_mask, quiet_on, use_curve
 from kitplanner.planners.rota.result import RotaBout
 from kitplanner.planners.supply import fed_stores, station_to_outlet_fraction
 
@@ -245,21 +245,7 @@ def _may_charge(plan: Plan, device: Device, slot_min: int) -> BoolArray:
     """Return the slots of the horizon in which a line may be charged, quiet hours of single days included."""
     if not device.battery_wh:
         return np.ones(plan.days * (DAY_MIN // slot_min), dtype=bool)
-    every_day = charging_mask(plan, device, slot_min)
-    if any(point.hours for point in plan.charging_points):
-        return np.tile(every_day, plan.days)
-    days = [every_day & ~touched_mask(quiet_on(plan, day), slot_min) for day in range(1, plan.days + 1)]
-    return np.concatenate(days)
-
-
-def quiet_on(plan: Plan, day: int) -> tuple[Part, ...]:
-    """Return the quiet hours of the whole place on a day."""
-    return merged(
-        part
-        for block in plan.blocks
-        if block.kind == "quiet" and not block.groups and (not block.days or day in block.days)
-        for part in day_parts(block.windows)
-    )
+    return charging_mask(plan, device, slot_min)
 
 
 def _outlets(plan: Plan, slot_min: int) -> IntArray:

@@ -9,7 +9,8 @@ from collections.abc import Sequence
 
 import numpy as np
 
-from kitplanner.planners.rota.charging_inputs import BoolArray, ChargingInputs, Feed
+from kitplanner.planners.rota.charging_inputs import ChargingInputs, Feed
+from kitplanner.planners.rota.grid import BoolArray
 
 _NOTHING_WH = 1e-12
 

@@ -113,6 +113,15 @@ class LinearModel:
         self._highs.changeColsCost(self.columns, np.arange(self.columns, dtype=np.int32), cost)
         self._highs.run()
         status = self._highs.getModelStatus()
+        if status == highspy.HighsModelStatus.kModelEmpty:
+            return np.zeros(self.columns)
+        if status == highspy.HighsModelStatus.kUnknown:
+            # A warm start can get stuck in rounding; a cold one without presolve does not carry it over.
+            self._highs.clearSolver()
+            self._highs.setOptionValue("presolve", "off")
+            self._highs.run()
+            self._highs.setOptionValue("presolve", "choose")
+            status = self._highs.getModelStatus()
         if status == highspy.HighsModelStatus.kOptimal:
             return np.array(self._highs.getSolution().col_value)
         if status in (highspy.HighsModelStatus.kInfeasible, highspy.HighsModelStatus.kUnboundedOrInfeasible):

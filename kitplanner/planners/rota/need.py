@@ -17,9 +17,9 @@ import numpy as np
 import numpy.typing as npt
 
 from kitplanner.plan.records import Device, OtherSource, Plan
-from kitplanner.planners.balance_windows import DAY_MIN, day_parts, merged, quiet_parts
+from kitplanner.planners.balance_windows import DAY_MIN, Part, day_parts, merged
 from kitplanner.planners.demand import device_need, outlet_to_device_fraction, use_wh_per_day
-from kitplanner.planners.rota.grid import BoolArray, day_mask
+from kitplanner.planners.rota.grid import BoolArray, day_mask, touched_mask
 from kitplanner.planners.supply import station_to_outlet_fraction, store_wh
 
 FloatArray = npt.NDArray[np.float64]
@@ -115,23 +115,31 @@ def _minutes_in_slots(parts: tuple[tuple[int, int], ...], slot_min: int) -> Floa
 
 
 def charging_mask(plan: Plan, device: Device, slot_min: int) -> BoolArray:
-    """Return the slots of a day in which a device may be charged: attended hours, else outside quiet hours."""
-    if device.charge_windows:
-        own = day_mask(merged(day_parts(device.charge_windows)), slot_min)
-    else:
-        own = np.ones(DAY_MIN // slot_min, dtype=bool)
-    if plan.charging_points:
-        attended = [part for point in plan.charging_points for part in day_parts(point.hours)]
-        return own & day_mask(merged(attended), slot_min) if attended else own & ~_quiet(plan, slot_min)
-    return own & ~_quiet(plan, slot_min)
+    """Return the slots of the horizon in which a device line may be charged, shape (slots,).
+
+    Its own windows within attended hours of the charging points; without such hours outside quiet hours.
+    """
+    per_day = DAY_MIN // slot_min
+    own = (
+        day_mask(merged(day_parts(device.charge_windows)), slot_min)
+        if device.charge_windows
+        else np.ones(per_day, bool)
+    )
+    attended = [part for point in plan.charging_points for part in day_parts(point.hours)]
+    if attended:
+        return np.tile(own & day_mask(merged(attended), slot_min), plan.days)
+    days = [own & ~touched_mask(quiet_on(plan, day), slot_min) for day in range(1, plan.days + 1)]
+    return np.concatenate(days)
 
 
-def _quiet(plan: Plan, slot_min: int) -> BoolArray:
-    return ~day_mask(((0, DAY_MIN),), slot_min) | _touched(quiet_parts(plan.blocks), slot_min)
-
-
-def _touched(parts: tuple[tuple[int, int], ...], slot_min: int) -> BoolArray:
-    return _minutes_in_slots(parts, slot_min) > 0.0
+def quiet_on(plan: Plan, day: int) -> tuple[Part, ...]:
+    """Return the quiet hours of the whole place on a day from 1."""
+    return merged(
+        part
+        for block in plan.blocks
+        if block.kind == "quiet" and not block.groups and (not block.days or day in block.days)
+        for part in day_parts(block.windows)
+    )
 
 
 def device_due(plan: Plan, device: Device, slot_min: int, factor: float) -> FloatArray:
@@ -146,7 +154,7 @@ def device_due(plan: Plan, device: Device, slot_min: int, factor: float) -> Floa
     need = device_need(plan, device)
     credit_o = need.credit_wh if factor > 1.0 else need.credit_plain_wh
     due = np.maximum(0.0, use / outlet_to_device_fraction(device) - credit_o)
-    chargeable = np.tile(charging_mask(plan, device, slot_min), plan.days)
+    chargeable = charging_mask(plan, device, slot_min)
     if not chargeable.any():
         return due
     # The need of a gap falls on the end of the last slot before it; a gap at the very start cannot be helped.
@@ -181,7 +189,7 @@ def _room(plan: Plan, slot_min: int) -> FloatArray:
             room += use
             continue
         gap = device.count * device.battery_wh * max(0.0, device.target_fraction - device.start_fraction)
-        chargeable = np.tile(charging_mask(plan, device, slot_min), plan.days)
+        chargeable = charging_mask(plan, device, slot_min)
         filled = (use + gap) / outlet_to_device_fraction(device)
         room += _held_back(filled, chargeable)
     return room

@@ -85,7 +85,7 @@ def locked_bouts(problem: RotaProblem, plan: Plan) -> tuple[Placed, ...]:
     station = {each: place for place, each in enumerate(problem.stations)}
     found = []
     for bout in plan.rota.bouts if plan.rota is not None else ():
-        if not bout.locked:
+        if not bout.locked or bout.day > problem.days:
             continue
         first = (bout.day - 1) * problem.per_day + int(minutes_of_day(bout.start)) // problem.slot_min
         last = (bout.day - 1) * problem.per_day - (-int(minutes_of_day(bout.end)) // problem.slot_min)
