@@ -47,6 +47,9 @@ def values(kind: str, spec: FieldSpec, ids: dict[str, list[str]]) -> st.SearchSt
     made: st.SearchStrategy[Any]
     if kind == "temperature" and spec.key in ("start", "end"):
         made = st.just("00:00" if spec.key == "start" else "24:00")
+    elif (kind, spec.key) in (("plan", "grid_min"), ("rota", "slot_min")):
+        # A rota's grid divides the day.
+        made = st.sampled_from([step for step in range(5, 61) if 1440 % step == 0])
     else:
         made = {
             "text": lambda: NAMES,
