@@ -31,12 +31,21 @@ class Gates(QObject):
         self._document = document
         self._path = document.path
         self._done: frozenset[str] = frozenset() if self._path is None else settings.acknowledged(self._path)
+        self._seen: set[str] = set()
         document.plan_replaced.connect(self._on_plan_replaced)
         document.file_changed.connect(self._on_file_changed)
 
     def is_acknowledged(self, caution: str) -> bool:
         """True when the caution was acknowledged for this plan."""
         return caution in self._done
+
+    def was_seen(self, caution: str) -> bool:
+        """True when the caution's whole text has stood on the screen since the plan was opened."""
+        return caution in self._seen
+
+    def note_seen(self, caution: str) -> None:
+        """Remember that the caution's whole text was shown; this is no acknowledgement."""
+        self._seen.add(caution)
 
     def acknowledge(self, caution: str, done: bool = True) -> None:
         """Tick or untick one caution."""
@@ -50,7 +59,8 @@ class Gates(QObject):
 
     @Slot()
     def _on_plan_replaced(self) -> None:
-        """Another plan brings its own ticks."""
+        """Another plan brings its own ticks and is read anew."""
+        self._seen.clear()
         self._path = self._document.path
         self._done = frozenset() if self._path is None else self._settings.acknowledged(self._path)
         self.changed.emit()

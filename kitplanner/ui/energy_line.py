@@ -64,6 +64,7 @@ class EnergyLine(SpottedWidget):
         self.setSizePolicy(QSizePolicy.Policy.Expanding, QSizePolicy.Policy.Fixed)
         self.setAccessibleName(self.tr("Energy line"))
         self._flow: EnergyFlow | None = None
+        self._has_stores = True
         self._point: BenchPoint | None = None
         self._point_name = ""
         self._stage = 0
@@ -71,9 +72,9 @@ class EnergyLine(SpottedWidget):
         self.ready = True
         self._lay_out()
 
-    def set_flow(self, flow: EnergyFlow | None) -> None:
+    def set_flow(self, flow: EnergyFlow | None, *, has_stores: bool = True) -> None:
         """Show another day; None shows how to begin."""
-        self._flow = flow
+        self._flow, self._has_stores = flow, has_stores
         self._lay_out()
 
     def set_station_point(self, point: BenchPoint | None, name: str = "") -> None:
@@ -105,8 +106,11 @@ class EnergyLine(SpottedWidget):
             self._tell()
 
     def _stage_spots(self) -> list[Spot]:
-        section = {1: ("stations",), 4: ("devices",)}.get(self._stage, ())
-        return [spot for spot in self._picture.spots if spot.section in section]
+        stages = self._picture.stages
+        section = stages[self._stage].section if self._stage < len(stages) else ""
+        if section not in ("stations", "devices"):
+            return []
+        return [spot for spot in self._picture.spots if spot.section == section]
 
     def _lay_out(self) -> None:
         if not self.ready:
@@ -116,7 +120,7 @@ class EnergyLine(SpottedWidget):
         if self._point is not None:
             self._picture = chain_picture(self._point, self._point_name, frame)
         elif self._flow is not None:
-            self._picture = day_picture(self._flow, frame)
+            self._picture = day_picture(self._flow, frame, has_stores=self._has_stores)
         else:
             self._picture = Picture()
         self._stage = min(self._stage, max(0, len(self._picture.stages) - 1))

@@ -23,6 +23,7 @@ from kitplanner.ui.energy_line_picture import (
     place,
 )
 from kitplanner.ui.energy_line_text import (
+    LEVELS,
     StageText,
     day_stages,
     figure,
@@ -40,18 +41,21 @@ def lost_between(flow: EnergyFlow, level: str) -> float:
 
 
 class DayLayout:
-    """Lays out the average day: people, stations, stores, outlets, devices."""
+    """Lays out the average day: people, stations, stores (if there are any), outlets, devices."""
 
-    def __init__(self, flow: EnergyFlow, frame: Frame) -> None:
+    def __init__(self, flow: EnergyFlow, frame: Frame, *, has_stores: bool = True) -> None:
         self.flow, self.frame = flow, frame
         self.picture = Picture()
-        self.texts = day_stages(flow)
+        self.texts = day_stages(flow, has_stores=has_stores)
         rows = [self._row_text(band) for band in flow.devices_d]
         widest = max((frame.measure(text, "small", False) for text in rows), default=0.0)
         self.label_room = min(widest + 2.6 * frame.small + 8.0, 0.25 * frame.width)
         self.fan = max(30.0, 0.035 * frame.width)
-        self.pitch = (frame.width - 2 * MARGIN - self.label_room - self.fan) / 4
-        self.columns = [MARGIN + self.pitch * index for index in range(5)]
+        self.pitch = (frame.width - 2 * MARGIN - self.label_room - self.fan) / (len(self.texts) - 1)
+        # Without stores the columns of stores and outlets fall together.
+        steps = (0, 1, 2, 3, 4) if has_stores else (0, 1, 2, 2, 3)
+        self.columns = [MARGIN + self.pitch * step for step in steps]
+        self.has_stores = has_stores
         self.outlet = flow.o_wh + flow.start_o_wh + flow.missing_o_wh
         station = total(flow.stations_s) + total(flow.sources_s)
         self.most = max(total(flow.people_m), station, flow.b_wh, self.outlet, total(flow.devices_d), 1e-9)
@@ -63,7 +67,8 @@ class DayLayout:
 
     def build(self) -> Picture:
         """Return the finished picture."""
-        for index, text in enumerate(self.texts):
+        for text in self.texts:
+            index = LEVELS.index(text.level)
             last = index == 4
             room = (self.fan + self.label_room if last else self.pitch) - 10
             heading(self.picture, self.frame, text, self.columns[index], room)
@@ -92,7 +97,7 @@ class DayLayout:
             return
         x = self.columns[index] + at * self.pitch
         top, bottom = self._y(above), self._y(above + lost)
-        self.picture.hooks.append(Hook(self.texts[index].level, x, top, bottom, joins=False))
+        self.picture.hooks.append(Hook(LEVELS[index], x, top, bottom, joins=False))
         reach = x + 20 + min(bottom - top, 0.5 * self.pitch) + 8
         left = self.columns[index] + room - reach
         box = QRectF(reach, bottom + 3, left, self.frame.small)
@@ -160,20 +165,22 @@ class DayLayout:
         self.picture.hooks.append(Hook(f"join{index}", x, top, bottom, joins=True))
         reach = x - 8 - (bottom - top) - 4
         texts = (*(f"+{figure(wh)} Wh {name}" for name in names), f"+{figure(wh)} Wh", f"+{figure(wh)}")
-        room = max(0.0, reach - self.columns[index - 1] - 0.3 * self.pitch)
+        before = self.columns[index] - self.pitch
+        room = max(0.0, reach - before - 0.3 * self.pitch)
         beside = Word(QRectF(reach - room, bottom + 4, room, self.frame.small), "", align=RIGHT)
         # Below the flow, ending where the next column's own pieces begin.
         low = max(bottom + 22, self._y(self.outlet) - self.frame.small if self.flow.missing_o_wh > 0 else 0.0)
-        wide = x - 6 - self.columns[index - 1] - 0.3 * self.pitch
+        wide = x - 6 - before - 0.3 * self.pitch
         under = Word(QRectF(x - 6 - wide, low, wide, self.frame.small), "", align=RIGHT)
         place(self.picture, self.frame, texts, (beside, under))
 
     def _stores_to_outlets(self) -> None:
         x0, x1, flow = self.columns[2], self.columns[3], self.flow
         bends = (x0 + 0.12 * self.pitch + 6, x0 + 0.12 * self.pitch + 34 + 0.15 * self.pitch)
-        trunk = FlowBand(key="B", label="", code="", ids=(), wh_per_day=flow.b_wh)
-        self._band(0, trunk, (x0, x1), bends, (0.0, flow.b_wh), (0.0, flow.o_wh))
-        self._loss(2, flow.o_wh, max(0.0, flow.b_wh - flow.o_wh), 0.6 * self.pitch)
+        if self.has_stores:
+            trunk = FlowBand(key="B", label="", code="", ids=(), wh_per_day=flow.b_wh)
+            self._band(0, trunk, (x0, x1), bends, (0.0, flow.b_wh), (0.0, flow.o_wh))
+            self._loss(2, flow.o_wh, max(0.0, flow.b_wh - flow.o_wh), 0.6 * self.pitch)
         if flow.start_o_wh > 0:
             self._join(3, flow.o_wh, flow.start_o_wh, (start_name(),))
 
@@ -277,6 +284,6 @@ class DayLayout:
         self.picture.spots.append(Spot("rest", box, sentence, "devices"))
 
 
-def day_picture(flow: EnergyFlow, frame: Frame) -> Picture:
+def day_picture(flow: EnergyFlow, frame: Frame, *, has_stores: bool = True) -> Picture:
     """Lay out the average day."""
-    return DayLayout(flow, frame).build()
+    return DayLayout(flow, frame, has_stores=has_stores).build()

@@ -52,15 +52,15 @@ def _parts(bands: tuple[FlowBand, ...]) -> str:
     return ", ".join(f"{band.label} {figure(band.wh_per_day)} Wh" for band in bands)
 
 
-def day_stages(flow: EnergyFlow) -> tuple[StageText, ...]:
-    """Return the five stages of an average day in words."""
+def day_stages(flow: EnergyFlow, *, has_stores: bool = True) -> tuple[StageText, ...]:
+    """Return the stages of an average day in words: five, or four without stores."""
     people, stations, devices = total(flow.people_m), total(flow.stations_s), total(flow.devices_d)
     have = flow.o_wh + flow.start_o_wh
     titles = (
         (translate("EnergyLine", "People"),),
         (translate("EnergyLine", "Stations"),),
         (translate("EnergyLine", "Into stores"), translate("EnergyLine", "Stores")),
-        (translate("EnergyLine", "Out of stores"), translate("EnergyLine", "Outlets")),
+        (_outlet_title(has_stores), translate("EnergyLine", "Outlets")),
         (translate("EnergyLine", "Devices"),),
     )
     shown = (people, stations, flow.b_wh, have, devices)
@@ -71,24 +71,29 @@ def day_stages(flow: EnergyFlow) -> tuple[StageText, ...]:
         + _list(translate("EnergyLine", " {parts}."), flow.stations_s)
         + _list(translate("EnergyLine", " Other sources add {parts}."), flow.sources_s),
         translate("EnergyLine", "{wh} Wh a day arrive in the stores (B).").format(wh=figure(flow.b_wh)),
-        _outlet_sentence(flow),
+        _outlet_sentence(flow, has_stores=has_stores),
         translate("EnergyLine", "Devices need {wh} Wh a day (D).").format(wh=figure(devices))
         + _list(" {parts}.", flow.devices_d),
     )
-    return tuple(
+    stages = tuple(
         StageText(level, section, title, _values(wh), sentence + _loss_sentence(flow, level))
         for level, section, title, wh, sentence in zip(LEVELS, SECTIONS, titles, shown, sentences, strict=True)
     )
+    return stages if has_stores else tuple(stage for stage in stages if stage.level != "B")
+
+
+def _outlet_title(has_stores: bool) -> str:
+    return translate("EnergyLine", "Out of stores") if has_stores else translate("EnergyLine", "At the outlets")
 
 
 def _list(pattern: str, bands: tuple[FlowBand, ...]) -> str:
     return pattern.format(parts=_parts(bands)) if bands else ""
 
 
-def _outlet_sentence(flow: EnergyFlow) -> str:
-    text = translate("EnergyLine", "{wh} Wh a day come out of the stores and stations (O).").format(
-        wh=figure(flow.o_wh)
-    )
+def _outlet_sentence(flow: EnergyFlow, *, has_stores: bool) -> str:
+    with_stores = translate("EnergyLine", "{wh} Wh a day come out of the stores and stations (O).")
+    without = translate("EnergyLine", "{wh} Wh a day reach the outlets straight from the stations (O).")
+    text = (with_stores if has_stores else without).format(wh=figure(flow.o_wh))
     if flow.start_o_wh > 0:
         text += translate("EnergyLine", " Energy stored at the start adds {wh} Wh a day.").format(
             wh=figure(flow.start_o_wh)

@@ -18,6 +18,7 @@ from kitplanner.session.recompute import Recompute
 from kitplanner.session.settings import AppSettings
 from kitplanner.ui.energy_line import EnergyLine
 from kitplanner.ui.guard import guarded
+from kitplanner.ui.reading_order import put_in_reading_order
 from kitplanner.ui.verdict_strip import VerdictStrip
 
 if TYPE_CHECKING:
@@ -110,7 +111,7 @@ class MainWindow(QMainWindow):
 
     @Slot(object)
     def _on_results_changed(self, results: Results) -> None:
-        self.energy_line.set_flow(results.flow)
+        self.energy_line.set_flow(results.flow, has_stores=bool(results.plan.stores))
         self.verdict.set_answers(results.plan, results)
 
     @Slot(object)
@@ -145,6 +146,12 @@ class MainWindow(QMainWindow):
         follows = event.type() in (QEvent.Type.FontChange, QEvent.Type.PaletteChange)
         if follows and self._is_ready and self.bench is not None:
             self.bench.restyle()
+
+    @guarded(False)
+    def focusNextPrevChild(self, forward: bool) -> bool:
+        """Let the Tab key follow the reading order, also through parts that came later."""
+        put_in_reading_order(self)
+        return bool(super().focusNextPrevChild(forward))
 
     @guarded()
     def dragEnterEvent(self, event: QDragEnterEvent) -> None:

@@ -57,6 +57,7 @@ class Workbench(QSplitter):
         self.setStretchFactor(1, 12)
         if not self.restoreState(self._settings.state("split")):
             self.setSizes(_FIRST_SPLIT)
+        self.sections.keep_split(self._settings.state("table_split"))
         self._connect()
 
     def begin(self) -> None:
@@ -79,6 +80,7 @@ class Workbench(QSplitter):
         if not self.files.may_leave():
             return False
         self._settings.keep_state("split", QByteArray(self.saveState()))
+        self._settings.keep_state("table_split", self.sections.split)
         self.autosave.close()
         return True
 

@@ -8,6 +8,7 @@ from PySide6.QtWidgets import QCheckBox, QComboBox, QGridLayout, QLabel, QPushBu
 from kitplanner.plan.records import Plan
 from kitplanner.report.wording import plain
 from kitplanner.ui.pages.one_charge_box import QuietSpinBox
+from kitplanner.ui.widgets.editors import LEAST_TARGET_PX
 
 
 class BenchControls(QWidget):
@@ -56,6 +57,8 @@ class BenchControls(QWidget):
         self.amps.setSuffix(" A")
         self.amps.setEnabled(False)
         self.amps.setAccessibleName(self.tr("Current at the device plug"))
+        for control in (self.station, self.best, self.fixed):
+            control.setMinimumHeight(LEAST_TARGET_PX)
         self._lay_out()
         self.station.currentIndexChanged.connect(self._on_station)
         self.slider.valueChanged.connect(self._on_slider)

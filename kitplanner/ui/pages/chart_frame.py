@@ -10,6 +10,7 @@ from kitplanner.ui.charts.chart_data import ChartData
 from kitplanner.ui.guard import guarded
 from kitplanner.ui.pages.plain_table import PlainTable, TableData
 from kitplanner.ui.theme import type_font
+from kitplanner.ui.widgets.editors import LEAST_TARGET_PX
 
 
 def plain_label(text: str = "", *, size: str = "text", bold: bool = False, wrap: bool = True) -> QLabel:
@@ -65,6 +66,7 @@ class ChartFrame(QWidget):
         self.toggle = QToolButton()
         self.toggle.setText(self.tr("Table"))
         self.toggle.setCheckable(True)
+        self.toggle.setMinimumHeight(LEAST_TARGET_PX)
         self.toggle.setAccessibleName(self.tr("{title}: show as table").format(title=title))
         self.toggle.setToolTip(self.tr("Show the same figures as a table"))
         self.toggle.toggled.connect(self._on_toggled)

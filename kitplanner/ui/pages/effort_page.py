@@ -21,6 +21,7 @@ from kitplanner.ui.pages.columns import Columns
 from kitplanner.ui.pages.effort_matrix import EffortMatrix, Matrix
 from kitplanner.ui.pages.one_charge_box import OneChargeBox
 from kitplanner.ui.pages.plain_table import TableData
+from kitplanner.ui.widgets.editors import LEAST_TARGET_PX
 
 TYPICAL = ""
 CURVE_DELAY_MS = 30
@@ -113,6 +114,7 @@ class EffortPage(AnswerPage):
             label.setBuddy(box)
             box.setAccessibleName(words.replace("&", ""))
             box.setMinimumContentsLength(8)
+            box.setMinimumHeight(LEAST_TARGET_PX)
             box.setSizeAdjustPolicy(QComboBox.SizeAdjustPolicy.AdjustToMinimumContentsLengthWithIcon)
             column.addWidget(label)
             column.addWidget(box)
@@ -165,10 +167,15 @@ class EffortPage(AnswerPage):
         matrix = build_matrix(self._of_plan, self._rows, person, route, charge)
         rows = [row for line in matrix.cells for row in line if row is not None]
         self.matrix.setVisible(bool(rows))
-        self.summary.setText(matrix_sentence(self._of_plan, rows) + self._why_old() if rows else self._why_empty())
+        self.summary.setText(self._summary_words(self._of_plan, rows) if rows else self._why_empty())
         self.matrix.set_matrix(matrix)
         self.chosen.setVisible(bool(rows))
         self.curve.setVisible(bool(rows))
+
+    def _summary_words(self, plan: Plan, rows: list[EffortRow]) -> str:
+        """Say shortest and longest, and what the shade of the cells means where they differ."""
+        shades = self.tr("The darker a cell, the longer the turning.") if len(rows) > 1 else ""
+        return " ".join(words for words in (matrix_sentence(plan, rows), shades) if words) + self._why_old()
 
     def _why_old(self) -> str:
         if self.results is None or self.results.is_effort_current:

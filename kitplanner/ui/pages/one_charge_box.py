@@ -4,17 +4,23 @@ from __future__ import annotations
 
 from PySide6.QtCore import QTimer, Slot
 from PySide6.QtGui import QWheelEvent
-from PySide6.QtWidgets import QDoubleSpinBox, QFormLayout, QFrame, QVBoxLayout, QWidget
+from PySide6.QtWidgets import QDoubleSpinBox, QFormLayout, QFrame, QSizePolicy, QVBoxLayout, QWidget
 
 from kitplanner.planners.effort import one_charge
 from kitplanner.report.wording import minutes
 from kitplanner.report.wording_effort import one_charge_sentence
 from kitplanner.ui.guard import guarded
 from kitplanner.ui.pages.chart_frame import plain_label
+from kitplanner.ui.widgets.editors import LEAST_TARGET_PX
 
 
 class QuietSpinBox(QDoubleSpinBox):
-    """A spin box that changes under the wheel only while it has the focus."""
+    """A spin box that changes under the wheel only while it has the focus, and is never too low to be hit."""
+
+    def __init__(self, parent: QWidget | None = None) -> None:
+        super().__init__(parent)
+        self.setMinimumHeight(LEAST_TARGET_PX)
+        self.setSizePolicy(QSizePolicy.Policy.Maximum, QSizePolicy.Policy.Fixed)
 
     @guarded()
     def wheelEvent(self, event: QWheelEvent) -> None:

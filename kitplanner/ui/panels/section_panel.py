@@ -5,8 +5,8 @@ from __future__ import annotations
 from collections.abc import Mapping
 from typing import Any
 
-from PySide6.QtCore import QItemSelectionModel, QModelIndex, Qt, Signal, Slot
-from PySide6.QtGui import QAction, QKeySequence
+from PySide6.QtCore import QByteArray, QItemSelectionModel, QModelIndex, Qt, Signal, Slot
+from PySide6.QtGui import QAction, QKeySequence, QResizeEvent
 from PySide6.QtWidgets import (
     QAbstractItemView,
     QHeaderView,
@@ -25,6 +25,7 @@ from kitplanner.session.editing import Editing
 from kitplanner.session.field_text import translate
 from kitplanner.session.new_records import singular
 from kitplanner.ui.dialogs.ask import ask_how_many
+from kitplanner.ui.guard import guarded
 from kitplanner.ui.models.field_delegate import FieldDelegate
 from kitplanner.ui.models.records_model import RecordsModel
 from kitplanner.ui.panels.record_details import RecordDetails, make_details
@@ -34,7 +35,13 @@ from kitplanner.ui.widgets.plain import colour_label, plain_label
 from kitplanner.ui.widgets.small_button import SmallButton
 
 _MEASURED_ROWS = 60
-_LEAST_TABLE_ROWS = 4
+# Rows of the table: squeezed to the first, as many as there are records from the second to the third, and never more
+# than the share of the height beyond the second. The form has the rest until the user moves the bar between them.
+_LEAST_TABLE_ROWS, _FAIR_TABLE_ROWS, _MOST_TABLE_ROWS = 3, 6, 14
+_FEW_TABLE_ROWS = 3
+_TABLE_SHARE = 0.5
+_MOST_COLUMN_CHARS = 34
+_LEAST_FORM_LINES = 4
 
 
 class SectionPanel(QWidget):
@@ -44,9 +51,12 @@ class SectionPanel(QWidget):
     -------
     record_chosen(section: str, record_id: str)
         The user chose another record in the table; empty id for none.
+    split_moved(state: QByteArray)
+        The user moved the bar between table and form.
     """
 
     record_chosen = Signal(str, str)
+    split_moved = Signal(object)
 
     def __init__(self, section: Section, editing: Editing, parent: QWidget | None = None) -> None:
         super().__init__(parent)
@@ -58,6 +68,7 @@ class SectionPanel(QWidget):
         self._cautions: tuple[ShownCaution, ...] = ()
         self._details: RecordDetails | None = None
         self._buttons: dict[str, SmallButton] = {}
+        self._is_split_kept = False
         self._layout = QVBoxLayout(self)
         self._layout.setContentsMargins(0, 0, 0, 0)
         self._layout.setSpacing(4)
@@ -65,7 +76,6 @@ class SectionPanel(QWidget):
         self._scroll.setWidgetResizable(True)
         self._scroll.setFrameShape(QScrollArea.Shape.NoFrame)
         self._scroll.setFocusPolicy(Qt.FocusPolicy.NoFocus)
-        self._scroll.setMinimumHeight(120)
         self._scroll.setAccessibleName(self.tr("Details"))
         self._scroll.setHorizontalScrollBarPolicy(Qt.ScrollBarPolicy.ScrollBarAsNeeded)
         self.table: QTableView | None = None
@@ -112,6 +122,7 @@ class SectionPanel(QWidget):
         if before is not plan or not same_problems:
             self._show_details()
         self._hint.setVisible(not records)
+        self._share_height()
 
     def show_cautions(self, cautions: tuple[ShownCaution, ...]) -> None:
         """Show the section's inline cautions at their fields."""
@@ -189,7 +200,7 @@ class SectionPanel(QWidget):
         header.setResizeContentsPrecision(_MEASURED_ROWS)
         header.setSectionResizeMode(QHeaderView.ResizeMode.ResizeToContents)
         header.setDefaultAlignment(Qt.AlignmentFlag.AlignLeft | Qt.AlignmentFlag.AlignVCenter)
-        header.setMaximumSectionSize(260)
+        header.setStretchLastSection(True)
         header.setHighlightSections(False)
         self.table.selectionModel().currentRowChanged.connect(self._on_current_row_changed)
         self._model.dataChanged.connect(self._on_rows_changed)
@@ -205,16 +216,16 @@ class SectionPanel(QWidget):
         layout = QVBoxLayout(top)
         layout.setContentsMargins(0, 0, 0, 0)
         layout.setSpacing(4)
+        self._button_row = self._build_buttons()
         layout.addWidget(self._hint)
+        layout.addWidget(self._button_row)
         layout.addWidget(self.table, 1)
-        layout.addWidget(self._build_buttons())
-        splitter = QSplitter(Qt.Orientation.Vertical, self)
-        splitter.setChildrenCollapsible(False)
-        splitter.addWidget(top)
-        splitter.addWidget(self._scroll)
-        splitter.setStretchFactor(0, 2)
-        splitter.setStretchFactor(1, 3)
-        self._layout.addWidget(splitter, 1)
+        self._splitter = QSplitter(Qt.Orientation.Vertical, self)
+        self._splitter.setChildrenCollapsible(False)
+        self._splitter.addWidget(top)
+        self._splitter.addWidget(self._scroll)
+        self._splitter.splitterMoved.connect(self._on_splitter_moved)
+        self._layout.addWidget(self._splitter, 1)
         self._fit_rows()
 
     def _build_buttons(self) -> ButtonRow:
@@ -235,11 +246,51 @@ class SectionPanel(QWidget):
         return ButtonRow(tuple(self._buttons.values()), self)
 
     def _fit_rows(self) -> None:
+        metrics = self.fontMetrics()
+        self._scroll.setMinimumHeight(_LEAST_FORM_LINES * metrics.height() + 40)
         if self.table is not None:
-            height = max(24, self.table.fontMetrics().height() + 8)
+            height = max(24, metrics.height() + 8)
+            header = self.table.horizontalHeader()
+            header.setMaximumSectionSize(_MOST_COLUMN_CHARS * metrics.averageCharWidth())
             self.table.verticalHeader().setDefaultSectionSize(height)
-            self.table.setMinimumHeight(height * _LEAST_TABLE_ROWS)
+            self.table.setMinimumHeight(self._table_height(_LEAST_TABLE_ROWS))
             colour_label(self._hint, "muted")
+            self._share_height()
+
+    def _table_height(self, rows: int) -> int:
+        """Height of the table with its heading, a scroll bar and some rows."""
+        assert self.table is not None
+        head, bar = self.table.horizontalHeader(), self.table.horizontalScrollBar()
+        row = self.table.verticalHeader().defaultSectionSize()
+        return head.sizeHint().height() + rows * row + bar.sizeHint().height() + 4
+
+    def keep_split(self, state: QByteArray) -> None:
+        """Take over where the user put the bar between table and form."""
+        if self.table is not None and not state.isEmpty():
+            self._is_split_kept = self._splitter.restoreState(state)
+
+    def _share_height(self) -> None:
+        """Give the table the rows it has, within a fair share, and the form the rest."""
+        if self.table is None or self._is_split_kept:
+            return
+        whole = self._splitter.height()
+        others = self._button_row.sizeHint().height() + 8 + (self._hint.height() if self._hint.isVisible() else 0)
+        count = self._model.rowCount()
+        wanted = others + self._table_height(max(_FEW_TABLE_ROWS, min(count, _MOST_TABLE_ROWS)))
+        fair = others + self._table_height(min(max(_FEW_TABLE_ROWS, count), _FAIR_TABLE_ROWS))
+        top = min(wanted, max(fair, round(_TABLE_SHARE * whole)))
+        self._splitter.setSizes([top, max(1, whole - top)])
+
+    @Slot(int, int)
+    def _on_splitter_moved(self, _at: int, _index: int) -> None:
+        self._is_split_kept = True
+        self.split_moved.emit(self._splitter.saveState())
+
+    @guarded()
+    def resizeEvent(self, event: QResizeEvent) -> None:
+        """Share the new height."""
+        super().resizeEvent(event)
+        self._share_height()
 
     def _record(self) -> Any:
         if self.table is None:

@@ -5,7 +5,7 @@ from __future__ import annotations
 from collections import Counter
 from collections.abc import Mapping
 
-from PySide6.QtCore import Qt, Signal, Slot
+from PySide6.QtCore import QByteArray, Qt, Signal, Slot
 from PySide6.QtWidgets import QHBoxLayout, QScrollArea, QSizePolicy, QStackedWidget, QVBoxLayout, QWidget
 
 from kitplanner.plan.cautions import ShownCaution, cautions_for
@@ -50,6 +50,7 @@ class SectionsPane(QWidget):
         self._problems: tuple[Problem, ...] = ()
         self._panels: dict[str, SectionPanel] = {}
         self._is_open = False
+        self._split = QByteArray()
         self._last_place: Path | None = None
         self.switch = SectionSwitch(self)
         self.band = CautionBand(gates, self)
@@ -74,6 +75,19 @@ class SectionsPane(QWidget):
     def show_section(self, key: str) -> None:
         """Show a section."""
         self.switch.choose(key)
+
+    @property
+    def split(self) -> QByteArray:
+        """Where the user put the bar between table and form; empty while the window chooses."""
+        return self._split
+
+    @Slot(object)
+    def keep_split(self, state: QByteArray) -> None:
+        """Put the bar between table and form at one place in every section."""
+        self._split = QByteArray(state)
+        for panel in self._panels.values():
+            if panel is not self.sender():
+                panel.keep_split(self._split)
 
     def open_details(self) -> None:
         """From now on build forms at once; called after the window's first picture."""
@@ -123,15 +137,15 @@ class SectionsPane(QWidget):
         for label in (self._title, self._count):
             label.setSizePolicy(QSizePolicy.Policy.Preferred, QSizePolicy.Policy.Fixed)
         head = QHBoxLayout()
-        head.setContentsMargins(4, 0, 4, 0)
+        head.setContentsMargins(4, 8, 4, 2)
+        head.setSpacing(10)
         head.addWidget(self._title)
         head.addWidget(self.switch.box, 1)
         head.addWidget(self._count)
         head.addStretch(1)
         column = QVBoxLayout()
-        column.setContentsMargins(0, 8, 6, 6)
+        column.setContentsMargins(0, 2, 6, 6)
         column.setSpacing(5)
-        column.addLayout(head)
         column.addWidget(self.band)
         column.addWidget(self.problems)
         column.addWidget(self._stack, 1)
@@ -139,18 +153,26 @@ class SectionsPane(QWidget):
         layout.setContentsMargins(0, 0, 0, 0)
         layout.setSpacing(8)
         layout.addWidget(self.switch.list)
-        layout.addWidget(_scrolling(column), 1)
+        # Which section this is stays in sight when a low window makes the rest scroll.
+        side = QVBoxLayout()
+        side.setSpacing(0)
+        side.addLayout(head)
+        side.addWidget(_scrolling(column), 1)
+        layout.addLayout(side, 1)
 
     def _panel_of(self, key: str) -> SectionPanel:
         if key not in self._panels:
             panel = SectionPanel(section_of(key), self._editing, self._stack)
             panel.record_chosen.connect(self.record_chosen)
+            panel.split_moved.connect(self.keep_split)
+            panel.keep_split(self._split)
             self._stack.addWidget(panel)
             self._panels[key] = panel
         return self._panels[key]
 
     @Slot(str)
     def _on_section_chosen(self, key: str) -> None:
+        self.band.leave()
         self._show_current()
         self._stack.setCurrentWidget(self._panel_of(key))
         if self._is_open:

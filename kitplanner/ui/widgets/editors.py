@@ -18,6 +18,9 @@ from kitplanner.session.field_text import Names, choice_label, default_text, val
 from kitplanner.ui.guard import guarded
 
 LEAST_TARGET_PX = 26
+# Widest editors in average characters: what follows a field (unit, origin) stays beside it in a wide form.
+_NUMBER_CHARS, _TEXT_CHARS, _CHOICE_CHARS = 18, 44, 34
+_LEAST_CHOICE_CHARS = 8
 _EMPTY = ""
 
 
@@ -40,10 +43,19 @@ class LineEditor(QLineEdit):
         self.editingFinished.connect(self._on_editing_finished)
         self.textChanged.connect(self._update_font)
 
+    def limit_width(self) -> None:
+        """Grow with the form up to the width of a long entry at the present text size."""
+        self.setMaximumWidth(self.fontMetrics().averageCharWidth() * self._most_chars())
+
+    def _most_chars(self) -> int:
+        return max(_TEXT_CHARS, len(self.placeholderText()) + 4)
+
     def show_text(self, text: str, default: str = "") -> None:
         """Show a text unless it stands there already; the cursor of a user who is typing stays."""
         self._shown = text
-        self.setPlaceholderText(default)
+        if self.placeholderText() != default:
+            self.setPlaceholderText(default)
+            self.limit_width()
         if self.text() != text:
             self.setText(text)
             self.setCursorPosition(0)
@@ -85,6 +97,9 @@ class LineEditor(QLineEdit):
 
 class NumberEditor(LineEditor):
     """A number; the up and down keys step it, and so does the wheel while it has the focus."""
+
+    def _most_chars(self) -> int:
+        return max(_NUMBER_CHARS, len(self.placeholderText()) + 4)
 
     @guarded()
     def keyPressEvent(self, event: QKeyEvent) -> None:
@@ -138,17 +153,29 @@ class ChoiceEditor(QComboBox):
         self._names: Names = {}
         self.setMinimumHeight(LEAST_TARGET_PX)
         self.setSizeAdjustPolicy(QComboBox.SizeAdjustPolicy.AdjustToMinimumContentsLengthWithIcon)
-        self.setMinimumContentsLength(8)
+        self.setMinimumContentsLength(_LEAST_CHOICE_CHARS)
         self.setFocusPolicy(Qt.FocusPolicy.StrongFocus)
         self.activated.connect(self._on_activated)
         self._fill({})
+
+    def limit_width(self) -> None:
+        """Take the width of the longest item, within what a form has room for."""
+        metrics = self.fontMetrics()
+        widest = max((metrics.horizontalAdvance(self.itemText(n)) for n in range(self.count())), default=0)
+        # Qt counts contents in widths of this letter.
+        letters = -(-widest // max(1, metrics.horizontalAdvance("X")))
+        self.setMinimumContentsLength(max(_LEAST_CHOICE_CHARS, min(_CHOICE_CHARS, letters)))
+        self.setMaximumWidth(max(self.sizeHint().width(), _NUMBER_CHARS * metrics.averageCharWidth()))
 
     def show_text(self, text: str, default: str = "", names: Names | None = None) -> None:
         """Show the item of a value; a value that is none of them (a dangling reference) gets an item of its own."""
         if self._spec.kind == "ref" and names is not None and dict(names) != dict(self._names):
             self._fill(names)
         if self._spec.optional and self.count() and self.itemData(0) == _EMPTY:
-            self.setItemText(0, self.tr("default: {text}").format(text=default) if default else self.tr("none"))
+            words = self.tr("default: {text}").format(text=default) if default else self.tr("none")
+            if self.itemText(0) != words:
+                self.setItemText(0, words)
+                self.limit_width()
         index = self.findData(text)
         if index < 0:
             self.addItem(text, text)
@@ -170,6 +197,7 @@ class ChoiceEditor(QComboBox):
             case _:
                 for value, _ in self._spec.choices:
                     self.addItem(choice_label(self._spec, value), str(value))
+        self.limit_width()
 
     @Slot(int)
     def _on_activated(self, index: int) -> None:
@@ -201,6 +229,9 @@ class FlagEditor(QCheckBox):
         self.setText(self.tr("yes"))
         self.setMinimumHeight(LEAST_TARGET_PX)
         self.clicked.connect(self._on_clicked)
+
+    def limit_width(self) -> None:
+        """Stay as wide as the box and its word."""
 
     def show_text(self, text: str, default: str = "") -> None:
         """Tick or untick."""
@@ -242,6 +273,10 @@ class RefsEditor(QWidget):
         layout.addWidget(self._line, 1)
         layout.addWidget(self._button)
         self.setFocusProxy(self._line)
+
+    def limit_width(self) -> None:
+        """Grow with the form up to the width of a long entry."""
+        self.setMaximumWidth(self.fontMetrics().averageCharWidth() * _TEXT_CHARS)
 
     def show_text(self, text: str, default: str = "", names: Names | None = None) -> None:
         """Show the names; an empty list shows what it means."""

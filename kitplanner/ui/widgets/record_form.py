@@ -43,6 +43,8 @@ _FIELD_OF_CAUTION: Mapping[str, tuple[str, ...]] = MappingProxyType(
 
 
 _SHORT_UNIT_CHARS = 4
+# The editor takes the width up to its own limit before the empty rest of the line does.
+_MUCH = 1000
 
 
 class FieldRow(QWidget):
@@ -96,7 +98,8 @@ class FieldRow(QWidget):
 
     def set_unit_width(self, width: int) -> None:
         """Give the unit the room that all fields of a form share, so that their editors end at one line."""
-        self._unit.setMinimumWidth(width)
+        self._unit.setMinimumWidth(width if self._unit.text() else 0)
+        self.editor.limit_width()
 
     def recolour(self) -> None:
         """Take over the theme's colours."""
@@ -109,12 +112,11 @@ class FieldRow(QWidget):
             widget.setToolTip(as_tool_tip(help_text(self.spec)))
         line = QHBoxLayout()
         line.setContentsMargins(0, 0, 0, 0)
-        line.addWidget(self.editor, 0 if isinstance(self.editor, FlagEditor) else 1)
+        line.addWidget(self.editor, 0 if isinstance(self.editor, FlagEditor) else _MUCH)
         line.setSpacing(5)
         line.addWidget(self._unit)
         line.addWidget(self._origin)
-        if isinstance(self.editor, FlagEditor):
-            line.addStretch(1)
+        line.addStretch(1)
         layout = QVBoxLayout(self)
         layout.setContentsMargins(0, 0, 0, 0)
         layout.setSpacing(1)
