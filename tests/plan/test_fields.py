@@ -152,7 +152,7 @@ def test_unit_agrees_with_the_suffix_of_the_key(kind, spec):
     if spec.kind not in ("number", "integer"):
         return
     if spec.key.startswith("eta") or spec.key.endswith("eta"):
-        assert (spec.unit, spec.low_open, spec.high) == ("%", True, 1)
+        assert (spec.unit, spec.low, spec.high) == ("%", 0.01, 1)
         return
     suffix = next((one for one in UNIT_OF_SUFFIX if spec.key.endswith(one)), None)
     if suffix is None:
