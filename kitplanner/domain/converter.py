@@ -15,6 +15,8 @@ import numpy as np
 from kitplanner.domain.stage import Flow
 from kitplanner.domain.units import Values
 
+_LEAST_DENOMINATOR_V = 1e-9
+
 
 @dataclass(frozen=True)
 class SwitchingConverter:
@@ -49,7 +51,8 @@ class SwitchingConverter:
         linear = self.b1_v_per_v * in_v + (self.b0_v + self.output_v)
         surplus_w = in_v * in_a - (self.a1_w_per_v * in_v + self.a0_w)
         radicand = linear * linear + (4.0 * self.c_ohm) * surplus_w
-        out_a = 2.0 * surplus_w / (linear + np.sqrt(np.maximum(radicand, 0.0)))
+        # Far below zero volts, where only a search looks, the denominator would vanish.
+        out_a = 2.0 * surplus_w / np.maximum(linear + np.sqrt(np.maximum(radicand, 0.0)), _LEAST_DENOMINATOR_V)
         return np.full_like(out_a, self.output_v), out_a
 
     def loss_w(self, at: Flow) -> Values:

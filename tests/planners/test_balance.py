@@ -33,6 +33,7 @@ from kitplanner.planners import balance_cuts
 from kitplanner.planners.balance import balance
 from kitplanner.planners.balance_cuts import shared_fraction
 from kitplanner.planners.demand import device_needs
+from kitplanner.planners.people import person_output
 
 
 @pytest.fixture(scope="module")
@@ -613,3 +614,17 @@ def test_what_is_cut_at_the_best_station_is_offered_at_the_next():
     found = balance(Plan(devices=(PHONE,), stations=stations, people=people))
     assert [row.used_min for row in found.stations] == pytest.approx([60.0, 60.0])
     assert found.stations[1].made_wh_per_day == pytest.approx(3.0)
+
+
+def test_an_estimated_person_loses_watts_at_stations_by_parts_that_want_another_pace(sites):
+    """Set A charges from about 97 turns a minute on, arms are best near 55: 0.89 of the watts are left at most."""
+    crank = next(station for station in sites["bench"].stations if station.id == "A")
+    somebody = Person(id="p", name="Oruun", age=40, watts_by="own", own_arms_w=5.0)
+    plan = replace(sites["bench"], stations=(crank,), people=(somebody,))
+    stated = balance(plan).people[0].output_w
+    tested = replace(somebody, watts_by="self_test", test_arms_w=4.5)
+    estimate_w = person_output(plan, tested, crank).person_power_w
+    same_watts = replace(somebody, own_arms_w=estimate_w)
+    paced, steady = (balance(replace(plan, people=(one,))).people[0].output_w for one in (tested, same_watts))
+    assert paced < 0.95 * steady
+    assert stated > 0.0

@@ -232,6 +232,9 @@ def test_cold_slows_and_frost_stops_the_charge() -> None:
     assert day(10.0).minutes_p50 == pytest.approx(60.0 * 6.0 / 15.4 / 0.2)
     assert day(2.0).minutes_p50 == pytest.approx(60.0 * 6.0 / 15.4 / 0.1)
     assert (day(-1.0).minutes_p50, day(-1.0).limit) == (None, "acceptance")
+    # Nor above 55 degC.
+    assert day(54.0).minutes_p50 == day(20.0).minutes_p50
+    assert (day(56.0).minutes_p50, day(56.0).limit) == (None, "acceptance")
 
 
 def test_temperature_of_day_parts_replaces_the_plans_air() -> None:
