@@ -198,8 +198,8 @@ def file_sha256(path: Path) -> str | None:
     return hashlib.sha256(read_bytes(path)).hexdigest() if path.exists() else None
 
 
-def write_recovery(path: Path, recovery: Recovery) -> None:
-    """Write a recovery file to the path the caller chose."""
+def recovery_bytes(recovery: Recovery) -> bytes:
+    """Return what a recovery file holds."""
     raw = {
         "format": RECOVERY_FORMAT,
         "version": 1,
@@ -208,7 +208,12 @@ def write_recovery(path: Path, recovery: Recovery) -> None:
         "saved_at": recovery.saved_at.isoformat(),
         "plan": json.loads(encode(recovery.plan)),
     }
-    write_bytes(path, (json.dumps(raw, indent=1, ensure_ascii=False, allow_nan=False) + "\n").encode("utf-8"))
+    return (json.dumps(raw, indent=1, ensure_ascii=False, allow_nan=False) + "\n").encode("utf-8")
+
+
+def write_recovery(path: Path, recovery: Recovery) -> None:
+    """Write a recovery file to the path the caller chose."""
+    write_bytes(path, recovery_bytes(recovery))
 
 
 def read_recovery(path: Path) -> Recovery:
