@@ -27,7 +27,7 @@ from kitplanner.app.main import open_window
 from kitplanner.plan.catalogue import PLAN_KINDS
 from kitplanner.planners.bench import BenchError
 from kitplanner.planners.effort_rows import EffortError
-from kitplanner.planners.stations import StationError
+from kitplanner.planners.station_error import StationError
 from kitplanner.report.wording import plain
 
 COMMANDS = ("new", "check", "effort", "balance", "rota", "levers", "bench", "print")

@@ -7,7 +7,6 @@ median 1: watts and energies are never negative, and the central run is the midd
 from __future__ import annotations
 
 from functools import lru_cache
-from statistics import NormalDist
 
 import numpy as np
 import numpy.typing as npt
@@ -89,6 +88,9 @@ def quasi_normal(n: int = DEFAULT_POINTS, dims: int = 1) -> FloatArray:
     >>> bool(abs(points.mean()) < 0.05), bool(abs(points.std() - 1.0) < 0.05)
     (True, True)
     """
+    # Loads late: it brings decimals and fractions along, and nothing at the start of the window samples.
+    from statistics import NormalDist
+
     normal = NormalDist()
     flat = [normal.inv_cdf(float(u)) for u in quasi_uniform(n, dims).ravel()]
     points = np.array(flat).reshape(n, dims)

@@ -6,17 +6,13 @@ band that delivers most. Levels: M at the crank, S at the station's socket.
 
 from __future__ import annotations
 
-import math
 from collections.abc import Sequence
 
 import numpy as np
 
-from kitplanner.domain.chain import PacedWatts, UsbSink, best_cadence
 from kitplanner.plan.records import Person, Plan, Station
-from kitplanner.planners.effort_source import STORE_HOLD_FRACTION, nominal_v
-from kitplanner.planners.people import PersonOutput, allowed_stations, person_limits, person_output
+from kitplanner.planners.people import allowed_stations, person_limits, person_output
 from kitplanner.planners.results import FloatArray
-from kitplanner.planners.stations import chain_of
 
 # The one to whom station output refers: 40 years, usual effort, no limit stated.
 REFERENCE_ADULT = Person(id="", name="Adult average", age=40)
@@ -69,7 +65,10 @@ def station_outputs(plan: Plan, station: Station, people: Sequence[Person]) -> t
     """
     outputs = [person_output(plan, person, station) for person in people]
     if station.described_by == "parts":
-        return _solved(station, outputs)
+        # The chain loads late: no other station needs it, and the window's first picture waits for the balance.
+        from kitplanner.planners.parts_output import solved_outputs
+
+        return solved_outputs(station, outputs)
     socket_w = np.array([output.station_output_w or 0.0 for output in outputs])
     return socket_w, np.array([output.person_power_w for output in outputs])
 
@@ -77,32 +76,3 @@ def station_outputs(plan: Plan, station: Station, people: Sequence[Person]) -> t
 def reference_output_w(plan: Plan, station: Station) -> float:
     """Return what the reference adult gets out of a station [W], at S."""
     return float(station_outputs(plan, station, [REFERENCE_ADULT])[0][0])
-
-
-def _solved(station: Station, outputs: Sequence[PersonOutput]) -> tuple[FloatArray, FloatArray]:
-    """Return plug watts and human watts at the best cadence; 0 where nothing arrives."""
-    chain = chain_of(station)
-    sink = UsbSink(hold_v=STORE_HOLD_FRACTION * nominal_v(station))
-    limits = np.array(
-        [
-            (
-                output.person_power_w,
-                math.inf if output.torque_cap_nm is None else output.torque_cap_nm,
-                output.pace.best_rpm,
-                output.pace.loss,
-            )
-            for output in outputs
-        ]
-    )
-    # Many people share the same watts and pace: each is solved once.
-    alike, place = np.unique(limits, axis=0, return_inverse=True)
-    point = best_cadence(
-        chain,
-        (chain.comfort.low_rpm, chain.comfort.high_rpm),
-        sink,
-        human_w=PacedWatts(alike[:, 0], alike[:, 2], alike[:, 3]),
-        torque_max_nm=np.minimum(alike[:, 1], chain.comfort.torque_max_nm),
-    )
-    works = point.charges & np.isfinite(point.plug_w)
-    place = place.reshape(-1)
-    return np.where(works, point.plug_w, 0.0)[place], np.where(works, point.human_w, 0.0)[place]

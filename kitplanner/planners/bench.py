@@ -15,7 +15,8 @@ from kitplanner.domain.chain import STATES, Chain, OperatingPoint, charging_poin
 from kitplanner.plan.records import Plan, Station, TestLoad
 from kitplanner.planners.bench_stages import bench_stages, charges_cell, known, stored_w
 from kitplanner.planners.results import BenchPoint, BenchState, BenchSweep, FloatArray
-from kitplanner.planners.stations import StationError, chain_of, sink_of_test_load
+from kitplanner.planners.station_error import StationError
+from kitplanner.planners.stations import chain_of, sink_of_test_load
 
 SWEEP_POINTS = 141
 # How far the chart looks below and above the comfort band, as shares of its ends.

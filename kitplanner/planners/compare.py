@@ -20,7 +20,7 @@ from kitplanner.planners.balance import balance
 from kitplanner.planners.effort import effort
 from kitplanner.planners.people import person_limits
 from kitplanner.planners.results import BalanceResult, EffortRow
-from kitplanner.planners.stations import StationError
+from kitplanner.planners.station_error import StationError
 
 Aspect = Literal["value", "note", "presence", "order"]
 AnswerName = Literal[

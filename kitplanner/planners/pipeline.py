@@ -16,7 +16,7 @@ from kitplanner.plan.records import Plan
 from kitplanner.planners.balance import balance
 from kitplanner.planners.flow import energy_flow
 from kitplanner.planners.results import BalanceResult, EffortResult, EnergyFlow
-from kitplanner.planners.stations import StationError
+from kitplanner.planners.station_error import StationError
 
 Cancelled = Callable[[], bool]
 

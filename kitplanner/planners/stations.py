@@ -32,6 +32,7 @@ from kitplanner.plan.records import (
     TestLoad,
 )
 from kitplanner.plan.records import Stage as StageRecord
+from kitplanner.planners.station_error import StationError
 
 # Comfortable cadence and greatest torque by kind of drive: judgement, not measured; a station's own values win.
 COMFORT_BY_KIND: MappingProxyType[StationKind, Comfort] = MappingProxyType(
@@ -43,10 +44,6 @@ COMFORT_BY_KIND: MappingProxyType[StationKind, Comfort] = MappingProxyType(
         "rocker": Comfort(40.0, 80.0, 16.0),
     }
 )
-
-
-class StationError(ValueError):
-    """A station that has no chain: the message is one sentence with place, reason and remedy."""
 
 
 def comfort_of(station: Station) -> Comfort:

@@ -7,7 +7,7 @@ from PySide6.QtCore import QObject, Slot
 from kitplanner.plan.records import Plan
 from kitplanner.planners.bench import BenchError, bench_point
 from kitplanner.planners.results import BenchPoint
-from kitplanner.planners.stations import StationError
+from kitplanner.planners.station_error import StationError
 from kitplanner.ui.energy_line import EnergyLine
 
 

@@ -12,20 +12,22 @@ from PySide6.QtWidgets import QBoxLayout, QFrame, QSizePolicy, QVBoxLayout, QWid
 from kitplanner.plan.records import Device, Plan
 from kitplanner.planners.pipeline import Results
 from kitplanner.planners.results import BalanceResult, EffortRow, Verdict
-from kitplanner.report.papers.effort import typical_row
 from kitplanner.report.wording import minutes as minutes_words
 from kitplanner.report.wording import plain, sentence
 from kitplanner.report.wording_balance import evening_sentence, medical_sentence, verdict_sentence, verdict_words
 from kitplanner.report.wording_effort import range_words
 from kitplanner.ui.guard import guarded
-from kitplanner.ui.pages.chart_frame import plain_label, restyle_labels
 from kitplanner.ui.theme import TypeSize, colours, text_scale, type_font
+from kitplanner.ui.widgets.plain import plain_label, restyle_labels
 
 
 def phone_row(plan: Plan, results: Results) -> tuple[Device, EffortRow] | None:
     """Return the plan's largest phone and the typical row of its full charge, directly or else through a store."""
     if results.effort is None:
         return None
+    # Minutes come after the first picture, and so does the module of the paper that knows the typical one.
+    from kitplanner.report.papers.effort import typical_row
+
     known = results.effort_plan or plan  # minutes arrive a moment after an edit
     phones = [device for device in known.devices if device.kind == "phone" and device.battery_wh]
     for device in sorted(phones, key=lambda one: -(one.battery_wh or 0.0)):
@@ -120,11 +122,11 @@ class VerdictStrip(QFrame):
         self.setAccessibleName(self.tr("Verdict"))
         self.setAutoFillBackground(True)
         self.sign = VerdictSign()
-        self.evening = plain_label(bold=True)
-        self.verdict = plain_label(size="title", bold=True, wrap=False)
-        self.detail = plain_label()
-        self.phone = plain_label()
-        self.medical = plain_label(size="small")
+        self.evening = plain_label(wrap=True, bold=True)
+        self.verdict = plain_label(size="title", bold=True)
+        self.detail = plain_label(wrap=True)
+        self.phone = plain_label(wrap=True)
+        self.medical = plain_label(wrap=True, size="small")
         self._said = ("", "")
         self._row = QBoxLayout(QBoxLayout.Direction.LeftToRight)
         self._row.setSpacing(14)

@@ -22,7 +22,7 @@ from kitplanner.plan.codec import encode
 from kitplanner.plan.files import read_plan, write_plan
 from kitplanner.plan.records import Device
 from kitplanner.plan.shipped import demo
-from kitplanner.planners.stations import StationError
+from kitplanner.planners.station_error import StationError
 
 ROOT = Path(cli.__file__).parents[2]
 HOUSEHOLD = str(demo("household"))
