@@ -2,8 +2,6 @@
 
 from __future__ import annotations
 
-import html
-
 from PySide6.QtCore import QEvent, QPointF, QRect, QRectF, Qt
 from PySide6.QtGui import QHelpEvent, QMouseEvent
 from PySide6.QtWidgets import QToolTip, QWidget
@@ -11,6 +9,7 @@ from PySide6.QtWidgets import QToolTip, QWidget
 from kitplanner.ui.energy_line_paint import mirrored
 from kitplanner.ui.energy_line_picture import Picture, Spot
 from kitplanner.ui.guard import guarded
+from kitplanner.ui.widgets.plain import as_tool_tip
 
 
 class SpottedWidget(QWidget):
@@ -56,7 +55,7 @@ class SpottedWidget(QWidget):
             if spot is None:
                 QToolTip.hideText()
             else:
-                QToolTip.showText(event.globalPos(), f"<p>{html.escape(spot.sentence)}</p>", self)
+                QToolTip.showText(event.globalPos(), as_tool_tip(spot.sentence), self)
             return True
         return bool(super().event(event))
 
