@@ -8,23 +8,27 @@ from __future__ import annotations
 
 import math
 from collections.abc import Callable
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
 import numpy as np
 import numpy.typing as npt
 
-from kitplanner.domain.chain_model import Chain, regulating_stage
+from kitplanner.domain.chain_model import Chain, human_cost, regulating_stage
 from kitplanner.domain.chain_solver import ANY_SINK, Question, charging_point, operating_point
 from kitplanner.domain.converter import SwitchingConverter
 from kitplanner.domain.hand_load import LEG_BEST_RPM, cadence_factor
-from kitplanner.domain.operating_point import STATES, OperatingPoint
+from kitplanner.domain.machine import short_circuit_a
+from kitplanner.domain.operating_point import BINDINGS, STATES, OperatingPoint
 from kitplanner.domain.regulator import LinearRegulator
-from kitplanner.domain.roots import FloatArray
+from kitplanner.domain.roots import BoolArray, FloatArray
+from kitplanner.domain.units import rad_s_from_rpm
 from kitplanner.domain.usb_sink import UsbSink
 
 _COARSE = 25
 _FINE = 9
 _LEVELS = 4
+# Halvings of the watts a chain can carry: to 0.006 %.
+_HALVINGS = 14
 # Delivered powers this near to each other are one; the lighter turning wins.
 _TIE = 1e-9
 # A state that is no fault where the device itself holds the voltage down to where it can just charge.
@@ -99,7 +103,7 @@ def best_cadence(
             np.broadcast_to(limit, shape).reshape(shape + (1,) * extra) for limit in limits
         )
         at_pace_w = watts * cadence_factor(rpm, best_rpm, loss) if loss.any() else watts
-        return charging_point(chain, rpm, sink, human_w=at_pace_w, torque_max_nm=torque, plug_w=accepted)
+        return _backed_off(chain, sink, (rpm, at_pace_w, torque, accepted))
 
     def merit(rpm: FloatArray) -> tuple[FloatArray, FloatArray]:
         found = point(rpm)
@@ -112,6 +116,41 @@ def best_cadence(
         )
 
     return point(_best_rpm(merit, band_rpm, shape))
+
+
+def _backed_off(chain: Chain, sink: UsbSink, question: tuple[FloatArray, ...]) -> OperatingPoint:
+    """Where the device would draw its source down, it takes less until the source holds, and so does the person.
+
+    More watts at the crank than the chain can carry are not given: the greatest that it carries are found by
+    halving. `question` holds cadence, human watts, torque and plug watts.
+    """
+
+    def ask(rpm: FloatArray, human_w: FloatArray, torque_nm: FloatArray, plug_w: FloatArray) -> OperatingPoint:
+        return charging_point(chain, rpm, sink, human_w=human_w, torque_max_nm=torque_nm, plug_w=plug_w)
+
+    found = ask(*question)
+    heavy = _drawn_down(found)
+    if not heavy.any():
+        return found
+    rpm, human_w, torque_nm, plug_w = np.broadcast_arrays(*question)
+    at = (rpm[heavy], torque_nm[heavy], plug_w[heavy])
+    p0, p1, _, _ = human_cost(chain, at[0])
+    shaft_rad_s = np.asarray(rad_s_from_rpm(at[0]), np.float64) * chain.gear.ratio
+    low, high = p0, np.minimum(human_w[heavy], p0 + p1 * np.asarray(short_circuit_a(chain.machine, shaft_rad_s)))
+    for _ in range(_HALVINGS):
+        middle = 0.5 * (low + high)
+        too_much = _drawn_down(ask(at[0], middle, *at[1:]))
+        low, high = np.where(too_much, low, middle), np.where(too_much, middle, high)
+    eases = heavy.copy()
+    eases[heavy] = ~ask(at[0], low, *at[1:]).failed
+    eased_w = np.array(human_w)
+    eased_w[heavy] = low
+    eased = ask(rpm, np.where(eases, eased_w, human_w), torque_nm, plug_w)
+    return replace(eased, binding=np.where(eases, BINDINGS.index("nothing"), eased.binding))
+
+
+def _drawn_down(point: OperatingPoint) -> BoolArray:
+    return point.flags["collapse"] | point.flags["vin_low"]
 
 
 def best_fraction_cadence(

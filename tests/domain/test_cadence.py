@@ -179,3 +179,16 @@ def test_people_with_paces_of_their_own_are_solved_as_if_alone() -> None:
     for i in range(3):
         alone = best_cadence(B, (40.0, 80.0), UsbSink(), human_w=PacedWatts(watts[i], best[i], loss[i]))
         assert together.plug_w[i] == pytest.approx(float(alone.plug_w), rel=1e-9)
+
+
+def test_nobody_is_too_strong_for_a_weak_chain() -> None:
+    """More watts than the chain carries are not given: from the greatest load on it stays, it never falls to none."""
+    watts = np.geomspace(2.0, 200.0, 25)
+    found = best_cadence(A_BUCK, (80.0, 150.0), UsbSink(), human_w=watts)
+    assert not found.failed.any()
+    assert np.all(np.diff(found.plug_w) > -1e-4 * found.plug_w[:-1])
+    assert np.all(found.human_w <= watts * (1.0 + 1e-9))
+    # The greatest load: the converter at its least input, at the highest cadence; dense row of fixed currents.
+    fixed = operating_point(A_BUCK, 150.0, np.linspace(0.5, 2.0, 15_001))
+    assert found.plug_w[-1] == pytest.approx(float(np.nanmax(fixed.plug_w)), rel=1e-3)
+    assert found.binding_at((24,)) == "nothing"

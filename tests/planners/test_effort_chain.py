@@ -235,3 +235,13 @@ def test_an_estimate_loses_watts_at_a_crank_that_wants_fast_turning() -> None:
     assert paced.output_w < 0.90 * steady.output_w
     # The sample lies around the solved point, with the watts that are left at its pace.
     assert float(np.median(paced.sample_w)) == pytest.approx(paced.output_w, rel=0.02)
+
+
+@pytest.mark.parametrize("watts", [15.0, 60.0])
+def test_a_person_stronger_than_the_chain_charges_as_fast_as_it_carries(watts: float) -> None:
+    """Set A-buck behind a pedal: nothing but the chain binds, and no torque limit hides it."""
+    weak = replace(STATIONS["A-buck"], kind="pedal", torque_max_nm=16.0)
+    row = a_row(weak, watts)
+    assert row.limit == "machine"
+    assert row.minutes_p50 == pytest.approx(a_row(weak, 14.0).minutes_p50, rel=2e-2)
+    assert 0.0 < row.chain_fraction < 0.5
