@@ -18,6 +18,7 @@ from typing import TYPE_CHECKING
 from msgspec import structs
 from PySide6.QtCore import QObject, Qt, QTimer, Signal, Slot
 
+from kitplanner.domain.units import clock
 from kitplanner.plan.edits import EditError
 from kitplanner.plan.edits_replan import Now
 from kitplanner.plan.records import ChargeSpell, Plan
@@ -131,10 +132,24 @@ def replan_rota(plan: Plan, now: Now, work: int, ask: Ask) -> Replanned:
     rota = replanned_rota(answer)
     after = structs.replace(answer.plan, rota=rota)
     fresh = fitting_charging(after)
-    began = (now.day, f"{now.minute // 60:02d}:{now.minute % 60:02d}")
-    past = tuple(spell for spell in (plan.rota.charging if plan.rota else ()) if (spell.day, spell.start) < began)
-    charging = _numbered((*past, *(spell for spell in fresh if (spell.day, spell.start) >= began)))
-    return Replanned(plan, answer, charging, judge(after, structs.replace(rota, charging=charging)))
+    charging = _continued(plan.rota.charging if plan.rota else (), fresh, now)
+    found = judge(after, structs.replace(rota, charging=charging))
+    if any(one.person is None and one.station is None for one in found):
+        # What was given out by now no longer adds up with the new turns: the table made anew does.
+        charging = fresh
+        found = judge(after, structs.replace(rota, charging=charging))
+    return Replanned(plan, answer, charging, found)
+
+
+def _continued(past: tuple[ChargeSpell, ...], fresh: tuple[ChargeSpell, ...], now: Now) -> tuple[ChargeSpell, ...]:
+    """Return the table as it was until now and as it is made anew from then on."""
+    began = (now.day, clock(now.minute))
+    return _numbered(
+        (
+            *(spell for spell in past if (spell.day, spell.start) < began),
+            *(spell for spell in fresh if (spell.day, spell.start) >= began),
+        )
+    )
 
 
 def fitting_charging(plan: Plan) -> tuple[ChargeSpell, ...]:

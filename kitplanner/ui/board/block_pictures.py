@@ -2,7 +2,9 @@
 
 from __future__ import annotations
 
+from collections.abc import Callable
 from dataclasses import dataclass
+from typing import Literal
 
 from PySide6.QtCore import QPointF, QRectF, Qt
 from PySide6.QtGui import QColor, QFontMetricsF, QPainter, QPainterPath, QPen, QPixmap
@@ -10,14 +12,19 @@ from PySide6.QtGui import QColor, QFontMetricsF, QPainter, QPainterPath, QPen, Q
 from kitplanner.ui.hatches import CATEGORY_HATCHES, draw_hatch
 from kitplanner.ui.theme import CATEGORY_FILLS, colours, text_on, type_font
 
-_MOST_KEPT = 800
+_MOST_KEPT = 1500
 _RADIUS_PX = 3.0
 _HATCH_STEP_PX = 7.0
+# Room between a block and letters that stand beside it.
+BESIDE_PX = 2
+WATCH_DASHES = [2.5, 2.0]
+FLAGS = int(Qt.TextFlag.TextSingleLine | Qt.AlignmentFlag.AlignVCenter)
+_CENTRE = int(Qt.AlignmentFlag.AlignCenter | Qt.TextFlag.TextSingleLine)
 
 
 @dataclass(frozen=True)
 class BlockKey:
-    """What makes two blocks look alike."""
+    """What makes two blocks look alike; `beside` is written to the right of the block, outside it."""
 
     fill: int
     hatch: int
@@ -25,6 +32,8 @@ class BlockKey:
     width: int
     height: int
     locked: bool = False
+    beside: str = ""
+    kind: Literal["turn", "watch", "charge"] = "turn"
 
 
 class BlockPictures:
@@ -32,35 +41,56 @@ class BlockPictures:
 
     def __init__(self) -> None:
         self._kept: dict[BlockKey, QPixmap] = {}
-        self._made_for: tuple[object, ...] = ()
+
+    def clear(self) -> None:
+        """Forget all pictures."""
+        self._kept.clear()
 
     def of(self, key: BlockKey, ratio: float) -> QPixmap:
         """Return the picture of a block."""
-        made_for = (colours(), type_font("small").pointSizeF(), ratio)
-        if made_for != self._made_for or len(self._kept) > _MOST_KEPT:
-            self._kept.clear()
-            self._made_for = made_for
         picture = self._kept.get(key)
         if picture is None:
+            if len(self._kept) > _MOST_KEPT:
+                self._kept.clear()
             picture = self._kept[key] = _draw(key, ratio)
         return picture
 
 
-def _draw(key: BlockKey, ratio: float) -> QPixmap:
-    picture = QPixmap(round(key.width * ratio), round(key.height * ratio))
+def new_picture(width: float, height: float, ratio: float, draw: Callable[[QPainter], None]) -> QPixmap:
+    """Return a clear picture with something drawn on it."""
+    picture = QPixmap(max(1, round(width * ratio)), max(1, round(height * ratio)))
     picture.setDevicePixelRatio(ratio)
     picture.fill(Qt.GlobalColor.transparent)
     painter = QPainter(picture)
     try:
         painter.setRenderHint(QPainter.RenderHint.Antialiasing)
-        draw_block(painter, QRectF(0, 0, key.width, key.height), key)
+        draw(painter)
     finally:
         painter.end()
     return picture
 
 
+def _draw(key: BlockKey, ratio: float) -> QPixmap:
+    area = QRectF(0, 0, key.width, key.height)
+    extra = beside_px(key.beside) + BESIDE_PX if key.beside else 0.0
+
+    def draw(painter: QPainter) -> None:
+        if key.kind == "watch":
+            draw_watch(painter, area)
+        elif key.kind == "charge":
+            _charge(painter, area, key.text)
+        else:
+            draw_block(painter, area, key)
+        if key.beside:
+            painter.setFont(type_font("small"))
+            painter.setPen(colours().color("muted"))
+            painter.drawText(QRectF(key.width + BESIDE_PX, 0, extra + 2, key.height), FLAGS, key.beside)
+
+    return new_picture(key.width + extra, key.height, ratio, draw)
+
+
 def draw_block(painter: QPainter, area: QRectF, key: BlockKey) -> None:
-    """Draw a block into an area: on the screen's pictures, in the legend, on paper."""
+    """Draw a block into an area: on the screen's pictures and in the legend."""
     fill = QColor(CATEGORY_FILLS[key.fill % len(CATEGORY_FILLS)])
     ink = text_on(fill)
     shape = QPainterPath()
@@ -69,7 +99,7 @@ def draw_block(painter: QPainter, area: QRectF, key: BlockKey) -> None:
     line = QColor(ink)
     line.setAlpha(120)
     draw_hatch(painter, shape, CATEGORY_HATCHES[key.hatch % len(CATEGORY_HATCHES)], line, _HATCH_STEP_PX)
-    if key.text and fits(key.text, area.width()):
+    if key.text:
         _letters(painter, area, key.text, fill, ink)
     if key.locked:
         _lock(painter, area, fill, ink)
@@ -78,9 +108,34 @@ def draw_block(painter: QPainter, area: QRectF, key: BlockKey) -> None:
     painter.drawPath(shape)
 
 
-def fits(text: str, width: float) -> bool:
-    """Return whether letters have room inside a block."""
-    return QFontMetricsF(type_font("small", bold=True)).horizontalAdvance(text) + 3 <= width
+def draw_watch(painter: QPainter, area: QRectF) -> None:
+    """Draw the dashed outline of somebody who watches."""
+    pen = QPen(colours().color("ink"), 1.0)
+    pen.setDashPattern(WATCH_DASHES)
+    painter.setPen(pen)
+    painter.setBrush(Qt.BrushStyle.NoBrush)
+    painter.drawRoundedRect(area.adjusted(0.5, 2.5, -0.5, -2.5), _RADIUS_PX, _RADIUS_PX)
+
+
+def _charge(painter: QPainter, area: QRectF, text: str) -> None:
+    scheme = colours()
+    painter.setBrush(scheme.color("panel"))
+    painter.setPen(QPen(scheme.color("edge"), 1.0))
+    painter.drawRoundedRect(area.adjusted(0.5, 1.5, -0.5, -1.5), _RADIUS_PX, _RADIUS_PX)
+    if text:
+        painter.setFont(type_font("small"))
+        painter.setPen(scheme.color("ink"))
+        painter.drawText(area, _CENTRE, text)
+
+
+def letters_px(text: str) -> float:
+    """Return the width that letters inside a block need."""
+    return QFontMetricsF(type_font("small", bold=True)).horizontalAdvance(text) + 3
+
+
+def beside_px(text: str) -> float:
+    """Return the width that letters beside a block need."""
+    return QFontMetricsF(type_font("small")).horizontalAdvance(text)
 
 
 def _letters(painter: QPainter, area: QRectF, text: str, fill: QColor, ink: QColor) -> None:
@@ -92,16 +147,17 @@ def _letters(painter: QPainter, area: QRectF, text: str, fill: QColor, ink: QCol
     patch.moveCenter(area.center())
     painter.fillRect(patch.intersected(area.adjusted(1, 1, -1, -1)), fill)
     painter.setPen(ink)
-    painter.drawText(area, int(Qt.AlignmentFlag.AlignCenter | Qt.TextFlag.TextSingleLine), text)
+    painter.drawText(area, _CENTRE, text)
 
 
 def _lock(painter: QPainter, area: QRectF, fill: QColor, ink: QColor) -> None:
-    """Draw a small padlock in the lower right corner."""
-    body = QRectF(area.right() - 8.5, area.bottom() - 7.5, 6.0, 4.5)
-    painter.fillRect(body.adjusted(-1, -3.5, 1, 1).intersected(area), fill)
+    """Draw a small padlock in the lower right corner, within the block however narrow it is."""
+    wide = min(6.0, area.width() - 3.0)
+    body = QRectF(area.right() - wide - 1.5, area.bottom() - 7.0, wide, 4.5)
+    painter.fillRect(body.adjusted(-1, -4.0, 1, 1).intersected(area.adjusted(1, 1, -1, -1)), fill)
     painter.setPen(QPen(ink, 1.1))
     painter.setBrush(Qt.BrushStyle.NoBrush)
-    painter.drawArc(QRectF(body.left() + 1.2, body.top() - 2.8, 3.6, 5.0), 0, 180 * 16)
+    painter.drawArc(QRectF(body.left() + wide * 0.2, body.top() - 2.8, wide * 0.6, 5.0), 0, 180 * 16)
     painter.fillRect(body, ink)
 
 
@@ -112,9 +168,12 @@ def draw_sign(painter: QPainter, at: QPointF, size: float) -> None:
     shape.lineTo(at.x() + size * 0.62, at.y() + size * 0.45)
     shape.lineTo(at.x() - size * 0.62, at.y() + size * 0.45)
     shape.closeSubpath()
+    painter.save()
+    painter.setRenderHint(QPainter.RenderHint.Antialiasing)
     painter.setPen(QPen(scheme.color("field"), 1.0))
     painter.setBrush(scheme.color("warning"))
     painter.drawPath(shape)
     painter.setPen(QPen(scheme.color("field"), max(1.2, size * 0.13)))
     painter.drawLine(QPointF(at.x(), at.y() - size * 0.22), QPointF(at.x(), at.y() + size * 0.12))
     painter.drawPoint(QPointF(at.x(), at.y() + size * 0.3))
+    painter.restore()

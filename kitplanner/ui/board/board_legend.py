@@ -7,7 +7,7 @@ from PySide6.QtGui import QFontMetricsF, QPainter, QPaintEvent, QPen, QResizeEve
 from PySide6.QtWidgets import QSizePolicy, QWidget
 
 from kitplanner.report.wording import plain
-from kitplanner.ui.board.block_pictures import BlockKey, draw_block, draw_sign
+from kitplanner.ui.board.block_pictures import BlockKey, draw_block, draw_sign, draw_watch
 from kitplanner.ui.board.board_data import BoardData
 from kitplanner.ui.guard import guarded
 from kitplanner.ui.theme import colours, type_font
@@ -104,15 +104,12 @@ class BoardLegend(QWidget):
             colour.setAlpha(60)
             painter.fillRect(box, colour)
         else:
-            pen = QPen(scheme.color("ink"), 1.0)
+            inner = box.adjusted(4, 1, -4, -1)
             if kind == "watch":
-                pen.setDashPattern([2.5, 2.0])
-            painter.setPen(pen)
-            painter.setBrush(Qt.BrushStyle.NoBrush)
-            inner = box.adjusted(4, 3, -4, -3)
-            if kind == "watch":
-                painter.drawRoundedRect(inner, 3, 3)
+                draw_watch(painter, inner)
             else:
                 body = QRectF(inner.center().x() - 4, inner.center().y() - 1, 8, 6)
+                painter.setPen(QPen(scheme.color("ink"), 1.2))
+                painter.setBrush(Qt.BrushStyle.NoBrush)
                 painter.drawArc(body.adjusted(1.5, -4, -1.5, -1), 0, 180 * 16)
                 painter.fillRect(body, scheme.color("ink"))

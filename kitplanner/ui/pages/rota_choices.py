@@ -89,8 +89,9 @@ class ChoiceRow(QWidget):
     def __init__(self, choices: list[tuple[str, QWidget]], parent: QWidget | None = None) -> None:
         super().__init__(parent)
         flow = FlowLayout(self)
+        self._holders: dict[QWidget, QWidget] = {}
         for word, box in choices:
-            holder = QWidget()
+            holder = self._holders[box] = QWidget()
             row = QHBoxLayout(holder)
             row.setContentsMargins(0, 0, 0, 0)
             row.setSpacing(4)
@@ -107,6 +108,13 @@ class ChoiceRow(QWidget):
             flow.addWidget(holder)
         self._flow = flow
         self.setSizePolicy(QSizePolicy.Policy.Preferred, QSizePolicy.Policy.Fixed)
+
+    def show_choice(self, box: QWidget, shown: bool) -> None:
+        """Show a box with its word, or leave both out."""
+        holder = self._holders[box]
+        if holder.isHidden() == shown:
+            holder.setVisible(shown)
+            self.updateGeometry()
 
     @guarded(QSize(100, 30))
     def sizeHint(self) -> QSize:

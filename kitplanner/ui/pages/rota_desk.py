@@ -57,7 +57,7 @@ class RotaDesk(QObject):
     -------
     changed()
         Something to show is different.
-    began(what: str, steps: int), progressed(moment: RotaProgress), ended()
+    began(what: str), progressed(moment: RotaProgress), ended()
         Work the user waits for.
     replanned(answer: Replanned), levered(answer: Levered)
         Answers that a dialog shows.
@@ -70,7 +70,7 @@ class RotaDesk(QObject):
     """
 
     changed = Signal()
-    began = Signal(str, int)
+    began = Signal(str)
     progressed = Signal(object)
     ended = Signal()
     replanned = Signal(object)
@@ -209,19 +209,19 @@ class RotaDesk(QObject):
     def find(self, work: int) -> None:
         """Look for a rota; it is shown as a proposal."""
         if self._may_work():
-            self.began.emit(self.tr("Looking for a rota:"), work)
+            self.began.emit(self.tr("Looking for a rota:"))
             self.run.start(functools.partial(rota_run.find_rota, self.plan, work, float("inf")))
 
     def replan(self, now: Now, work: int) -> None:
         """Make the adopted rota again from a moment on."""
         if self._may_work():
-            self.began.emit(self.tr("Re-planning:"), 0)
+            self.began.emit(self.tr("Re-planning:"))
             self.run.start(functools.partial(rota_run.replan_rota, self.plan, now, work))
 
     def find_levers(self) -> None:
         """Look for what would make the plan fit."""
         if self._may_work():
-            self.began.emit(self.tr("Trying what would make it fit:"), 0)
+            self.began.emit(self.tr("Trying what would make it fit:"))
             self.run.start(functools.partial(rota_run.find_levers, self.plan))
 
     def _may_work(self) -> bool:

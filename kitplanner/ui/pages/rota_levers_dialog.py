@@ -44,16 +44,17 @@ class LeversDialog(QDialog):
         plan, result = levered.plan, levered.result
         layout = QVBoxLayout(self)
         layout.addWidget(plain_label(verdict_sentence(result), bold=True))
-        reminder = ask_first_sentence(result)
+        reminder = "" if result.fits else ask_first_sentence(result)
         if reminder:
             layout.addWidget(plain_label(reminder))
         self.combinations = self._list(self.tr("Together, the mildest first"))
+        singles = () if result.fits else result.singles
         for number, together in enumerate(result.combinations):
             self._add(self.combinations, combination_sentence(plan, together), number, enabled=True)
         self.singles = self._list(self.tr("One alone"))
-        enough = [number for number, row in enumerate(result.singles) if row.enough]
-        for number in (*enough, *(n for n in range(len(result.singles)) if n not in enough)):
-            row = result.singles[number]
+        enough = [number for number, row in enumerate(singles) if row.enough]
+        for number in (*enough, *(n for n in range(len(singles)) if n not in enough)):
+            row = singles[number]
             self._add(self.singles, row_sentence(plan, row), number, enabled=row.enough and bool(row.changes))
         for view in (self.combinations, self.singles):
             if view.count():
@@ -65,7 +66,10 @@ class LeversDialog(QDialog):
         self.choose.setEnabled(False)
         buttons.rejected.connect(self.reject)
         layout.addWidget(buttons)
-        self.resize(self.fontMetrics().averageCharWidth() * 104, self.fontMetrics().height() * 34)
+        if self.combinations.count() or self.singles.count():
+            self.resize(self.fontMetrics().averageCharWidth() * 104, self.fontMetrics().height() * 34)
+        else:
+            self.choose.hide()
 
     def _list(self, name: str) -> QListWidget:
         view = QListWidget()

@@ -4,15 +4,12 @@ from __future__ import annotations
 
 from collections.abc import Callable
 
-from msgspec import structs
 from PySide6.QtCore import Signal, Slot
-from PySide6.QtGui import QAction, QKeySequence, QShortcut
-from PySide6.QtWidgets import QComboBox, QInputDialog, QListWidget, QMenu, QStackedWidget, QVBoxLayout, QWidget
+from PySide6.QtGui import QKeySequence, QShortcut
+from PySide6.QtWidgets import QComboBox, QListWidget, QMenu, QStackedWidget, QVBoxLayout, QWidget
 
-from kitplanner.plan import edits_rota
-from kitplanner.plan.edits_replan import Now
-from kitplanner.plan.records import Bout, Plan
-from kitplanner.planners.rota.result import RotaAnswer, RotaProgress
+from kitplanner.plan.records import Plan
+from kitplanner.planners.rota.result import RotaProgress
 from kitplanner.planners.rota.solver import DEFAULT_WORK
 from kitplanner.report.wording import counted, plain
 from kitplanner.report.wording_rota import (
@@ -22,24 +19,20 @@ from kitplanner.report.wording_rota import (
     verdict_lines,
     violation_sentence,
 )
-from kitplanner.session.rota_run import Levered, Replanned
 from kitplanner.ui.board.board_access import announce
-from kitplanner.ui.board.board_data import ShownBout
 from kitplanner.ui.board.board_hand import BoardHand
 from kitplanner.ui.board.board_legend import BoardLegend
 from kitplanner.ui.board.bouts_table import BoutsTable
 from kitplanner.ui.board.rota_board import RotaBoard
-from kitplanner.ui.pages import rota_export
 from kitplanner.ui.pages.answer_page import AnswerPage
 from kitplanner.ui.pages.chart_frame import plain_label
 from kitplanner.ui.pages.plain_table import PlainTable, TableData
-from kitplanner.ui.pages.rota_bout_form import BoutForm, HandOverDialog
 from kitplanner.ui.pages.rota_choices import ChoiceRow
 from kitplanner.ui.pages.rota_desk import RotaDesk
-from kitplanner.ui.pages.rota_levers_dialog import LeversDialog
-from kitplanner.ui.pages.rota_replan_dialog import ReplanDialog, ReplanResultDialog
+from kitplanner.ui.pages.rota_tasks import RotaTasks
 from kitplanner.ui.pages.rota_words import aims_data, charging_data, progress_words, rota_state
 from kitplanner.ui.pages.rota_work_line import RotaWorkLine
+from kitplanner.ui.pages.rota_wrapped_table import WrappedTable
 from kitplanner.ui.widgets.small_button import SmallButton
 
 QUICK_WORK, THOROUGH_WORK = 2_000, 100_000
@@ -60,13 +53,14 @@ class RotaPage(AnswerPage):
     def __init__(self, parent: QWidget | None = None) -> None:
         super().__init__(self.tr("Rota"), parent)
         self.desk, self.hand = RotaDesk(self), BoardHand(self)
+        self.tasks = RotaTasks(self.desk, self.hand, self)
         self.verdict, self.state = plain_label(size="title", bold=True), plain_label()
         self.told = plain_label()
         self.board, self.table, self.legend = RotaBoard(self.hand), BoutsTable(self.hand), BoardLegend()
         self.work_line = RotaWorkLine()
         self.broken = QListWidget()
         self.unmet = plain_label()
-        self.aims = PlainTable(self.tr("Aims of the rota"))
+        self.aims = WrappedTable(self.tr("Aims of the rota"))
         self.charging = PlainTable(self.tr("What is on charge when"), most_rows=14)
         self.work, self.rows, self.day, self.view, self.shown = (QComboBox() for _ in range(5))
         self.buttons = self._make_buttons()
@@ -96,7 +90,7 @@ class RotaPage(AnswerPage):
             (self.tr("Calendars &with names…"), "ics names"),
         ):
             menu.addAction(text).setData(kind)
-        menu.triggered.connect(self._on_export)
+        menu.triggered.connect(self.tasks.export)
         self.buttons["export"].setMenu(menu)
         self._fill_boxes()
         self.stack = QStackedWidget()
@@ -105,25 +99,27 @@ class RotaPage(AnswerPage):
         self.broken.setAccessibleName(self.tr("Broken rules"))
         self.broken.setWordWrap(True)
         self.told.setAccessibleName(self.tr("Message"))
+        self.told.hide()
+        self.actions_row, self.choices_row = self._actions(), self._choices()
         for widget in (
             self.verdict,
             self.state,
-            self._actions(),
+            self.actions_row,
             self.work_line,
-            self._choices(),
+            self.choices_row,
             self.told,
             self.legend,
         ):
             self.column.addWidget(widget)
         self.column.setSpacing(8)
         self.column.addWidget(self.stack, 1)
-        for title, widget in (
+        for title, part in (
             (self.tr("Broken rules"), self.broken),
             (self.tr("What cannot be met"), self.unmet),
             (self.tr("Aims in their order"), self.aims),
             (self.tr("On charge"), self.charging),
         ):
-            self.column.addWidget(self._titled(title, widget))
+            self.column.addWidget(self._titled(title, part))
 
     def _titled(self, title: str, widget: QWidget) -> QWidget:
         box = QWidget()
@@ -150,11 +146,11 @@ class RotaPage(AnswerPage):
         self.shown.addItem(self.tr("adopted rota"), False)
         self.shown.addItem(self.tr("proposal"), True)
 
-    def _actions(self) -> QWidget:
+    def _actions(self) -> ChoiceRow:
         """The buttons in the order of the work, how hard to search in front."""
         return ChoiceRow([(self.tr("Search"), self.work), *(("", button) for button in self.buttons.values())])
 
-    def _choices(self) -> QWidget:
+    def _choices(self) -> ChoiceRow:
         self.zoom_in, self.zoom_out = SmallButton("+"), SmallButton("−")
         self.zoom_in.setAccessibleName(self.tr("Wider day"))
         self.zoom_out.setAccessibleName(self.tr("Narrower day"))
@@ -172,39 +168,38 @@ class RotaPage(AnswerPage):
         actions: dict[str, Callable[[], None]] = {
             "plan": self.plan_rota,
             "adopt": self.desk.adopt,
-            "post": self.post,
-            "replan": self.ask_replan,
+            "post": self.tasks.post,
+            "replan": self.tasks.ask_replan,
             "levers": self.desk.find_levers,
-            "print": self.print_rota,
+            "print": self.tasks.print_rota,
             "charging": self.desk.renew_charging,
         }
         for key, act in actions.items():
             self.buttons[key].clicked.connect(act)
         self.zoom_in.clicked.connect(self._on_zoom_in)
         self.zoom_out.clicked.connect(self._on_zoom_out)
-        for box in (self.day, self.rows, self.view, self.shown):
+        for box in (self.day, self.rows, self.view, self.shown, self.work):
             box.currentIndexChanged.connect(self._on_choice)
+        self.tasks.work = int(self.work.currentData())
         desk, hand = self.desk, self.hand
         desk.edit_requested.connect(self.edit_requested)
         hand.edit_requested.connect(self.edit_requested)
+        self.tasks.edit_requested.connect(self.edit_requested)
+        self.tasks.told.connect(self.tell)
         desk.changed.connect(self._show)
         desk.began.connect(self._on_began)
         desk.progressed.connect(self._on_progress)
         desk.ended.connect(self._on_ended)
         desk.told.connect(self.tell)
         hand.told.connect(self.tell)
-        desk.replanned.connect(self._on_replanned)
-        desk.levered.connect(self._on_levered)
         desk.ghost_judged.connect(self._on_ghost_judged)
-        hand.form_requested.connect(self._on_form)
-        hand.hand_over_requested.connect(self._on_hand_over)
         hand.chosen_changed.connect(self._on_chosen)
         self.board.tentative_changed.connect(desk.try_edit)
         self.work_line.stop_requested.connect(desk.run.stop)
         self.broken.itemActivated.connect(self._on_broken)
         self.broken.itemClicked.connect(self._on_broken)
         self._add_key = QShortcut(QKeySequence("Ins"), self)
-        self._add_key.activated.connect(self.add_turn)
+        self._add_key.activated.connect(self.tasks.add_turn)
 
     def refresh(self) -> None:
         """Show the plan's rota as it is now."""
@@ -248,6 +243,8 @@ class RotaPage(AnswerPage):
         self._titles[self.unmet].setVisible(bool(sentences))
         self._show_broken()
         self._enable()
+        if self.hand.chosen:
+            self._on_chosen(self.hand.chosen)
 
     def _fill(self, table: PlainTable, data: TableData) -> None:
         table.set_data(data)
@@ -267,8 +264,9 @@ class RotaPage(AnswerPage):
             lines = (self.tr("{judged}; needs and stores are being worked out.").format(judged=judged),)
         else:
             lines = (self.tr("No rota yet. Plan one, look at it, adopt it; nothing changes before."),)
-        self.verdict.setText(lines[0])
-        more = list(lines[1:])
+        first = 2 if answer is not None and desk.violations else 1
+        self.verdict.setText(" ".join(lines[:first]))
+        more = list(lines[first:])
         if desk.is_proposal:
             more.append(self.tr("A proposal: nothing holds until it is adopted."))
             if desk.is_stale:
@@ -278,7 +276,7 @@ class RotaPage(AnswerPage):
         if desk.plan.rota is not None:
             more.append(rota_state(desk.plan, desk.plan.rota))
         if desk.charging_is_older:
-            more.append(self.tr("The charging table was made for other turns; renew it when the turns are settled."))
+            more.append(self.tr("The charging table was made for other turns."))
         self.state.setText(" ".join(more))
         self.state.setVisible(bool(more))
 
@@ -309,11 +307,11 @@ class RotaPage(AnswerPage):
             waits = busy and key in ("plan", "replan", "levers", "adopt")
             self.buttons[key].setEnabled(may and not waits)
             self.buttons[key].setToolTip("" if may else why)
-        self.buttons["charging"].parentWidget().setVisible(desk.charging_is_older)
+        self.actions_row.show_choice(self.buttons["charging"], desk.charging_is_older)
         self.shown.blockSignals(True)
         self.shown.setCurrentIndex(1 if desk.is_proposal else 0)
         self.shown.blockSignals(False)
-        self.shown.parentWidget().setVisible(desk.proposal is not None and has_rota)
+        self.choices_row.show_choice(self.shown, desk.proposal is not None and has_rota)
 
     @Slot(str)
     def tell(self, text: str) -> None:
@@ -327,110 +325,6 @@ class RotaPage(AnswerPage):
         """Look for a rota."""
         self.tell("")
         self.desk.find(int(self.work.currentData()))
-
-    @Slot()
-    def post(self) -> None:
-        """Ask how long the rota holds and post it; not while a rule about people or stations is broken."""
-        plan = self.desk.plan
-        hurting = [one for one in self.desk.violations if one.person or one.station]
-        if hurting or not self.desk.is_judged:
-            why = violation_sentence(hurting[0]) if hurting else self.tr("The rota is being judged still.")
-            self.tell(self.tr("It is not posted: {why}").format(why=why))
-            return
-        days = [day_words(plan, day) for day in range(1, plan.days + 1)]
-        title, question = self.tr("Post the rota"), self.tr("Valid until the end of")
-        text, ok = QInputDialog.getItem(self, title, question, days, len(days) - 1, False)
-        if ok:
-            self.desk.post(days.index(text) + 1)
-
-    @Slot()
-    def ask_replan(self) -> None:
-        """Ask for the moment and what has happened."""
-        dialog = ReplanDialog(self.desk.plan, self)
-        if self.desk.now is not None:
-            dialog.begin_at(*self.desk.now)
-        else:
-            dialog.begin_at(self.days()[0], 8 * 60)
-        dialog.now_given.connect(self._on_now)
-        dialog.open()
-
-    @Slot(object)
-    def _on_now(self, now: Now) -> None:
-        self.desk.replan(now, int(self.work.currentData()))
-
-    @Slot(object)
-    def _on_replanned(self, replanned: Replanned) -> None:
-        dialog = ReplanResultDialog(replanned, self)
-        self._replanned = replanned
-        dialog.taken.connect(self._on_taken)
-        dialog.open()
-
-    @Slot()
-    def _on_taken(self) -> None:
-        self.desk.take_replan(self._replanned)
-
-    @Slot(object)
-    def _on_levered(self, levered: Levered) -> None:
-        dialog = LeversDialog(levered, self)
-        dialog.chosen.connect(self.desk.pull_levers)
-        dialog.open()
-
-    @Slot()
-    def print_rota(self) -> None:
-        """Show the wall rota as it will be printed."""
-        rota_export.print_rota(self, self.desk.plan, self._proposed())
-
-    def _proposed(self) -> RotaAnswer | None:
-        return self.desk.answer if self.desk.is_proposal else None
-
-    @Slot(QAction)
-    def _on_export(self, action: QAction) -> None:
-        kind = str(action.data())
-        rota = rota_export.rota_of(self.desk.plan, self._proposed())
-        if rota is None:
-            return
-        export = rota_export.export_csv if kind.startswith("csv") else rota_export.export_calendars
-        self.tell(export(self, self.desk.plan, rota, names=kind.endswith("names")))
-
-    @Slot()
-    def add_turn(self) -> None:
-        """Open the form of a new turn."""
-        data = self.hand.data
-        if not data.editable or not data.plan.people or not data.plan.stations:
-            self.tell(self.tr("Turns can be added to an adopted rota with people and stations."))
-            return
-        station = data.plan.stations[0]
-        start = self.board.hours()[0] + 60
-        person = data.plan.people[0].id
-        fresh = ShownBout("", self.days()[0], start, start + station.slot_min, station.id, 1, person)
-        self._on_form(fresh, True)
-
-    @Slot(object, bool)
-    def _on_form(self, bout: ShownBout, is_new: bool) -> None:
-        form = BoutForm(self.hand.data, bout, self, is_new=is_new)
-        form.accepted_bout.connect(self._on_form_done)
-        form.open()
-
-    @Slot(object)
-    def _on_form_done(self, bout: Bout) -> None:
-        names = self.hand.data.person_names
-        who = names.get(bout.person, bout.person)
-        if bout.id:
-            text = self.tr("Edit {who}'s turn at {start}").format(who=who, start=bout.start)
-            self.edit_requested.emit(edits_rota.replace_bout(bout), text, "")
-            return
-        new = edits_rota.new_bout_id(self.desk.plan)
-        text = self.tr("Add {who}'s turn at {start}").format(who=who, start=bout.start)
-        self.edit_requested.emit(edits_rota.add_bout(_with_id(bout, new)), text, "")
-        self.hand.choose(new)
-
-    @Slot(str)
-    def _on_hand_over(self, bout_id: str) -> None:
-        bout = self.hand.bout(bout_id)
-        if bout is not None:
-            dialog = HandOverDialog(self.hand.data, bout, self)
-            dialog.person_chosen.connect(self.hand.give_to)
-            dialog.open()
 
     @Slot(str)
     def _on_chosen(self, bout_id: str) -> None:
@@ -468,23 +362,23 @@ class RotaPage(AnswerPage):
     @Slot()
     def _on_choice(self) -> None:
         self.stack.setCurrentIndex(int(self.view.currentData()))
+        self.legend.setVisible(self.stack.currentWidget() is self.board)
+        for button in (self.zoom_in, self.zoom_out):
+            self.choices_row.show_choice(button, self.stack.currentWidget() is self.board)
+        self.tasks.work, self.tasks.day = int(self.work.currentData()), self.days()[0]
         self.desk.show_proposal(bool(self.shown.currentData()))
         self._show()
 
-    @Slot(str, int)
-    def _on_began(self, what: str, steps: int) -> None:
-        self.work_line.begin(what, steps)
+    @Slot(str)
+    def _on_began(self, what: str) -> None:
+        self.work_line.begin(what)
         self._enable()
 
     @Slot(object)
     def _on_progress(self, moment: RotaProgress) -> None:
-        self.work_line.tell(progress_words(moment), moment.steps)
+        self.work_line.tell(progress_words(moment))
 
     @Slot()
     def _on_ended(self) -> None:
         self.work_line.end()
         self._enable()
-
-
-def _with_id(bout: Bout, bout_id: str) -> Bout:
-    return structs.replace(bout, id=bout_id)

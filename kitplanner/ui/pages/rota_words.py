@@ -3,12 +3,13 @@
 from __future__ import annotations
 
 from collections.abc import Iterable
+from typing import get_args
 
 from PySide6.QtCore import QCoreApplication
 
 from kitplanner.plan.records import Bout, Plan, Rota
 from kitplanner.planners.rota.replan_records import PersonChange
-from kitplanner.planners.rota.result import RotaAnswer, RotaCharge, RotaProgress
+from kitplanner.planners.rota.result import ObjectiveName, RotaAnswer, RotaCharge, RotaProgress
 from kitplanner.report.tables_rota import aim_table, charging_rows
 from kitplanner.report.wording import counted, energy, listed, number, percent, plain
 from kitplanner.report.wording_rota import aim_words, violation_sentence
@@ -31,17 +32,13 @@ def rota_state(plan: Plan, rota: Rota | None) -> str:
 
 
 def progress_words(moment: RotaProgress) -> str:
-    """Return how far a search is: seconds, steps, value and bound of the aim at work."""
-    stage = str(moment.stage).replace("_", " ")
-    known = {"unmet", "margin", "excess", "greatest_load", "spread", "unpopular", "handovers", "change"}
-    aim = aim_words(moment.stage) if moment.stage in known else stage  # type: ignore[arg-type]
-    text = translate("RotaPage", "{seconds} s, step {steps}, {aim}").format(
-        seconds=number(moment.seconds, 1), steps=moment.steps, aim=aim
-    )
+    """Return how far a search is: steps, value and bound of the aim at work."""
+    stage = "greatest_load" if moment.stage == "load" else str(moment.stage)
+    aim = aim_words(stage) if stage in get_args(ObjectiveName) else stage.replace("_", " ")  # type: ignore[arg-type]
+    text = translate("RotaPage", "step {steps}, {aim}").format(steps=moment.steps, aim=aim)
     if not moment.value and not moment.bound:
         return text
-    is_share = moment.stage in ("greatest_load", "load")
-    value, bound = (percent(x, 1) if is_share else number(x, 2) for x in (moment.value, moment.bound))
+    value, bound = (percent(x, 1) if stage == "greatest_load" else number(x, 2) for x in (moment.value, moment.bound))
     return text + translate("RotaPage", ": {value}, at best {bound}").format(value=value, bound=bound)
 
 

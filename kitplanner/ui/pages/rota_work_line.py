@@ -47,20 +47,16 @@ class RotaWorkLine(QWidget):
         layout.addWidget(self.stop)
         self.hide()
 
-    def begin(self, what: str, steps: int = 0) -> None:
-        """Say what begins; with a number of steps the bar fills, without it only moves."""
+    def begin(self, what: str) -> None:
+        """Say what begins; the search ends by itself, so the bar only moves."""
         self._what, self._said, self._began = what, "", time.monotonic()
-        self.bar.setRange(0, steps)
-        self.bar.setValue(0)
         self._show()
         self._timer.start()
         self.show()
 
-    def tell(self, words: str, steps: int) -> None:
+    def tell(self, words: str) -> None:
         """Say how far it is."""
         self._said = words
-        if self.bar.maximum():
-            self.bar.setValue(min(steps, self.bar.maximum()))
         self._show()
 
     def end(self) -> None:
@@ -71,5 +67,5 @@ class RotaWorkLine(QWidget):
     @Slot()
     def _show(self) -> None:
         seconds = f"{time.monotonic() - self._began:.1f}"
-        text = self._said or self.tr("{seconds} s").format(seconds=seconds)
-        self.words.setText(f"{self._what} {text}")
+        text = self.tr("{what} {seconds} s").format(what=self._what, seconds=seconds)
+        self.words.setText(f"{text}, {self._said}" if self._said else text)
