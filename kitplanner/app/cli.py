@@ -18,6 +18,7 @@ from kitplanner import __version__
 from kitplanner.app.cli_balance import run_balance
 from kitplanner.app.cli_bench import run_bench
 from kitplanner.app.cli_effort import run_effort
+from kitplanner.app.cli_launcher import run_install_launcher
 from kitplanner.app.cli_levers import run_levers
 from kitplanner.app.cli_output import EXIT_ANSWERED, EXIT_PROBLEMS, EXIT_WRONG_CALL, CommandError
 from kitplanner.app.cli_plan import run_check, run_new
@@ -30,7 +31,7 @@ from kitplanner.planners.effort_rows import EffortError
 from kitplanner.planners.station_error import StationError
 from kitplanner.report.wording import plain
 
-COMMANDS = ("new", "check", "effort", "balance", "rota", "levers", "bench", "print")
+COMMANDS = ("new", "check", "effort", "balance", "rota", "levers", "bench", "print", "install-launcher")
 EXIT_INTERRUPTED = 130
 _LARGEST_NUMBER = 1e6
 _LONGEST_COUNT = 9
@@ -114,6 +115,7 @@ def _parser() -> argparse.ArgumentParser:
     _add_rota(commands)
     _add_bench(commands)
     _add_print(commands)
+    _add_launcher(commands)
     return parser
 
 
@@ -206,6 +208,17 @@ def _add_print(commands: Commands[argparse.ArgumentParser]) -> None:
     parser.add_argument("-o", "--output", type=Path, required=True, metavar="FILE", help="PDF to write")
     parser.add_argument("--size", choices=SIZES, default="A4", help="size of the sheet")
     parser.set_defaults(run=run_print)
+
+
+def _add_launcher(commands: Commands[argparse.ArgumentParser]) -> None:
+    parser = _add(
+        commands,
+        "install-launcher",
+        "Menu entry, icon and file type for this user, on desktops that follow freedesktop.org",
+        "kitplanner install-launcher --remove",
+    )
+    parser.add_argument("--remove", action="store_true", help="take them out again")
+    parser.set_defaults(run=run_install_launcher)
 
 
 def _add_plan_argument(parser: argparse.ArgumentParser) -> None:
