@@ -165,7 +165,7 @@ def apply(seen: Preview, leave_out: Collection[int] = ()) -> Edit:
                 record_id = row.record_id or free()
                 if record_id in kept:
                     raise EditError((seen.section, record_id), "this id is taken by now", "read the table again")
-                kept[record_id] = _with_changes(seen.section, make(id=record_id, name=record_id), row)
+                kept[record_id] = _with_changes(seen.section, make(id=record_id, name=_first_name(row, record_id)), row)
             elif row.record_id not in kept:
                 raise EditError((seen.section, row.record_id), "this record is gone by now", "read the table again")
             else:
@@ -176,6 +176,12 @@ def apply(seen: Preview, leave_out: Collection[int] = ()) -> Edit:
         return plan if same else structs.replace(plan, **{seen.section: records})
 
     return edit
+
+
+def _first_name(row: PreviewRow, record_id: str) -> str:
+    """Return the name of a new record before its cells are set: its id, but nothing where the table says so."""
+    said = bool(row.record_id) and any(cell.key == "name" for cell in row.cells)
+    return "" if said else record_id
 
 
 def _is(one: object, other: object) -> bool:

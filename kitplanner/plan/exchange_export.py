@@ -29,7 +29,7 @@ from kitplanner.plan.records import Plan
 
 # Fields of people that say who somebody is or describe a body; left out unless names are asked for.
 PRIVATE = ("name", "role", "mass_kg", "test_legs_w", "test_arms_w")
-_XML_CANNOT = re.compile(r"[\x00-\x08\x0b\x0c\x0e-\x1f\ufffe\uffff]")
+_XML_CANNOT = re.compile(r"[\x00-\x08\x0b\x0c\r\x0e-\x1f\ufffe\uffff]")
 
 
 class ExportChoices(Struct, frozen=True, kw_only=True):
@@ -129,19 +129,15 @@ def xlsx_of(sheet: Sheet) -> bytes:
             "writing one needs the spreadsheets extra",
             "install kitplanner[spreadsheets] or save as CSV",
         ) from error
+    _require_writable(sheet)
     book = Workbook(write_only=True)
     page = book.create_sheet(sheet.section)
     page.freeze_panes = "B2"
     page.append(list(sheet.header))
     for row in sheet.rows:
         cells: list[Any] = []
-        for value in row:
-            if isinstance(value, str) and (_XML_CANNOT.search(value) or "\r" in value):
-                raise ExchangeError(
-                    f"Record {row[0]}", "a text holds control signs that no workbook can hold", "save as CSV"
-                )
-            cell = WriteOnlyCell(page, value=None)
-            cell.value = value
+        for value in map(_held_by_workbook, row):
+            cell = WriteOnlyCell(page, value=value)
             if isinstance(value, str):
                 cell.data_type = "s"
             cells.append(cell)
@@ -159,6 +155,19 @@ def copied(sheet: Sheet) -> Copied:
     page = f'<html><head><meta charset="utf-8"></head><body><table>{body}</table></body></html>'
     text = "\n".join("\t".join(" ".join(one.split()) for one in line) for line in lines)
     return Copied(_separated(sheet, "\t", "\n"), page, text)
+
+
+def _held_by_workbook(value: str | int | float) -> str | int | float:
+    """Return a number as text where a workbook's sixteen digits would change it."""
+    return value if isinstance(value, (str, int)) or float(f"{value:.16g}") == value else repr(value)
+
+
+def _require_writable(sheet: Sheet) -> None:
+    for row in sheet.rows:
+        if any(isinstance(value, str) and _XML_CANNOT.search(value) for value in row):
+            raise ExchangeError(
+                f"Record {row[0]}", "a text holds control signs that no workbook can hold", "save as CSV"
+            )
 
 
 def _reading(plan: Plan, spec: FieldSpec, how: ExportChoices) -> Reading:
@@ -229,6 +238,6 @@ def _notes(section: str, how: ExportChoices, count: int) -> tuple[str, ...]:
     if not how.with_names and section == "people":
         notes.append("Names, roles, body masses and self-tests are left out; people stand by their numbers.")
     if count:
-        cells = "1 text" if count == 1 else f"{count} texts"
-        notes.append(f"{cells} begin like a formula and got an apostrophe in front; reading them back takes it away.")
+        cells = "1 text begins" if count == 1 else f"{count} texts begin"
+        notes.append(f"{cells} like a formula and got an apostrophe in front; reading the table back takes it away.")
     return tuple(notes)

@@ -181,8 +181,8 @@ def _number(column: Column, spec: FieldSpec, cell: float, reading: Reading) -> A
             f"{reading.say('Fields', spec.label)} could be {cell:g} percent or the share {cell:g}. "
             "Write [%] behind the column's name if it is percent, or the sign % behind the number."
         )
-    value = float(Fraction(repr(cell)) * (exact_factor(column.unit, spec.unit) or 1)) if column.unit else cell
-    return number_in_range(spec, value, reading, text)
+    factor = exact_factor(column.unit, spec.unit) if column.unit else None
+    return number_in_range(spec, Fraction(repr(cell)) * (factor or 1), reading, text)
 
 
 def every_digit_of(number: float) -> str:

@@ -25,7 +25,7 @@ from kitplanner.plan.quantities import (
     QuantityError,
     Say,
     plain,
-    read_quantity,
+    read_exact,
     shown,
 )
 from kitplanner.plan.records import Window
@@ -142,20 +142,19 @@ def _read_numeric(spec: FieldSpec, text: str, how: Reading) -> int | float:
     if spec.unit.startswith("%/"):
         typed = typed.removesuffix("%")
     try:
-        quantity = read_quantity(typed, spec.unit, how.style, label)
+        value, typed_unit = read_exact(typed, spec.unit, how.style, label)
     except QuantityError as error:
         own = error.reason in (NOT_A_NUMBER, WRONG_UNIT) and error.remedy != NAME_VOLTS
         remedy = range_words(spec, how.style.decimal, how.say) if own else None
         raise FieldTextError(error.said(how.say, label, remedy)) from error
-    value = quantity.value
-    if how.unit and not quantity.typed_unit:
-        value = float(Fraction(repr(value)) * (exact_factor(how.unit, spec.unit) or 1))
+    if how.unit and not typed_unit:
+        value *= exact_factor(how.unit, spec.unit) or 1
     return number_in_range(spec, value, how, text)
 
 
-def number_in_range(spec: FieldSpec, shown_value: float, how: Reading, text: str) -> int | float:
+def number_in_range(spec: FieldSpec, shown_value: Fraction, how: Reading, text: str) -> int | float:
     """Return a number at display scale as the record's value; FieldTextError outside its range."""
-    exact = Fraction(repr(shown_value)) / Fraction(spec.display_scale)
+    exact = shown_value / Fraction(spec.display_scale)
     if spec.kind == "integer" and exact.denominator != 1:
         raise _out_of_range(spec, how, _WHOLE, text)
     value = int(exact) if spec.kind == "integer" else float(exact)

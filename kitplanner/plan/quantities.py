@@ -8,7 +8,6 @@ corrected silently: whatever cannot be read comes back as one sentence with fiel
 
 from __future__ import annotations
 
-import math
 import re
 import unicodedata
 from collections.abc import Callable, Mapping
@@ -120,6 +119,15 @@ def parse(text: str, unit: str, decimal_comma: bool = False, field: str = "Value
 
 def read_quantity(text: str, unit: str, style: NumberStyle, field: str = "Value") -> Quantity:
     """Read a typed text as a quantity in a unit, by a style of numbers; QuantityError if it is none."""
+    value, typed_unit = read_exact(text, unit, style, field)
+    return Quantity(value=float(value), unit=unit, typed_unit=typed_unit)
+
+
+def read_exact(text: str, unit: str, style: NumberStyle, field: str = "Value") -> tuple[Fraction, str]:
+    """Read a typed text as an exact number in a unit and what was typed behind it; QuantityError if it is none.
+
+    Scaling an exact number rounds once only, so that 30.000000000000004 percent is one number and not its neighbour.
+    """
     hidden = next((sign for sign in text.strip() if unicodedata.category(sign) in ("Cc", "Cf")), None)
     if hidden is not None:
         raise QuantityError(field, HIDDEN_SIGN, _TYPE_AGAIN, {"text": f"U+{ord(hidden):04X}"})
@@ -134,7 +142,8 @@ def read_quantity(text: str, unit: str, style: NumberStyle, field: str = "Value"
     value, typed_unit = _in_unit(number, found[2].strip(), unit, style)
     if value is None:
         raise _wrong_unit(field, text, typed_unit, unit)
-    return Quantity(value=_finite(value, field, text), unit=unit, typed_unit=typed_unit)
+    _require_finite(value, field, text)
+    return value, typed_unit
 
 
 def format_quantity(value: float, unit: str, as_unit: str | None = None, decimal_comma: bool = False) -> str:
@@ -149,7 +158,11 @@ def format_quantity(value: float, unit: str, as_unit: str | None = None, decimal
     factor = exact_factor(shown_unit, unit)
     if factor is None:
         raise ValueError(f"{unit} cannot be written in {shown_unit}; choose one of the units of its kind.")
-    text = decimal_text(Fraction(repr(float(value))) / factor, "," if decimal_comma else ".")
+    exact = Fraction(repr(float(value))) / factor
+    text = decimal_text(exact, "," if decimal_comma else ".")
+    if float(Fraction(decimal_text(exact)) * factor) != value:
+        # The shortest digits of a number may lie midway to its neighbour; its true value never does.
+        text = decimal_text(Fraction(value) / factor, "," if decimal_comma else ".")
     return f"{text} {shown_unit}".strip()
 
 
@@ -303,14 +316,11 @@ def _or_none(digits: str, style: NumberStyle) -> Fraction | None:
         return None
 
 
-def _finite(value: Fraction, field: str, text: str) -> float:
+def _require_finite(value: Fraction, field: str, text: str) -> None:
     try:
-        number = float(value)
+        float(value)
     except OverflowError as error:
         raise QuantityError(field, TOO_LARGE, _WRITE_NUMBER, {"text": shown(text)}) from error
-    if not math.isfinite(number):
-        raise QuantityError(field, TOO_LARGE, _WRITE_NUMBER, {"text": shown(text)})
-    return number
 
 
 def _wrong_unit(field: str, text: str, typed: str, unit: str) -> QuantityError:

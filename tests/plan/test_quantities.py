@@ -146,12 +146,10 @@ def test_refusals_say_field_reason_and_remedy(text, unit, words):
 @given(st.text(max_size=40), st.sampled_from(FIELD_UNITS), st.booleans())
 def test_any_text_is_read_or_refused_in_words(text, unit, comma):
     try:
-        value = parse(text, unit, comma).value
+        said = parse(text, unit, comma).value
     except QuantityError as error:
-        assert str(error).startswith("Value ")
-        assert str(error).endswith((".", ". "))
-    else:
-        assert isinstance(value, float)
+        said = str(error)
+    assert isinstance(said, float) or (said.startswith("Value ") and said.endswith("."))
 
 
 def test_a_unit_of_another_kind_cannot_be_written():
