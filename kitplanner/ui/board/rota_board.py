@@ -48,6 +48,7 @@ class Drag:
     pressed: QPointF
     place: int
     target: ShownBout
+    home: int = 0
     has_begun: bool = False
 
 
@@ -89,7 +90,7 @@ def target_of(drag: Drag, at: QPointF, layout: BoardLayout, grid_min: int) -> tu
     start = min(max(round(minute / grid_min) * grid_min, 0), DAY_MIN - bout.length_min)
     place = layout.row_at(at.y())
     if layout.rows[place].kind not in ("person", "unit"):
-        place = drag.place
+        place = drag.home
     moved = replace(bout, day=day, start_min=start, end_min=start + bout.length_min)
     return in_row(moved, layout.rows[place]), place
 
@@ -146,10 +147,10 @@ class RotaBoard(BoardView):
         self._drag = None
         self.hand.choose(bout.id if bout is not None else "")
         if bout is not None:
-            row = self._scene.layout.rows[self._scene.layout.row_at(at.y())]
-            is_own = row.kind != "person" or row.key == bout.person
-            if is_own:
-                self._drag = Drag(bout, grip, at, self._scene.layout.row_at(at.y()), bout)
+            place = self._scene.layout.row_at(at.y())
+            row = self._scene.layout.rows[place]
+            if row.kind != "person" or row.key == bout.person:
+                self._drag = Drag(bout, grip, at, place, bout, place)
 
     def drag_to(self, at: QPointF) -> None:
         """Carry the turn in the hand to a place; only what changes is painted."""
