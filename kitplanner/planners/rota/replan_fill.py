@@ -9,7 +9,7 @@ import numpy as np
 import numpy.typing as npt
 
 from kitplanner.planners.rota.draft import Placed
-from kitplanner.planners.rota.improve import Improver
+from kitplanner.planners.rota.improve_energy import EnergyPasses
 from kitplanner.planners.rota.openings import openings
 from kitplanner.planners.rota.replan_posted import Posted, changed_record, may_turn, may_watch, unit_free
 from kitplanner.planners.rota.search import Search
@@ -33,12 +33,12 @@ class Filler:
         self.problem = search.draft.problem
         self.posted = posted
         greatest = float(self.draft.relative_load().max(initial=0.0))
-        self.improver = Improver(search, greatest)
+        self.energy = EnergyPasses(search, greatest)
         self.least = -(-LEAST_TURN_MIN // self.problem.slot_min)
 
     def run(self) -> None:
         """Offer the turns that fell away, then any other opening; drop what of the new ones proves too much."""
-        for stage in (self._stand_in, self._fill, self._lengthen, self._fill_scraps, self.improver.trim):
+        for stage in (self._stand_in, self._fill, self._lengthen, self._fill_scraps, self.energy.trim):
             self.search.run(stage)
 
     def _stand_in(self) -> None:
@@ -59,7 +59,7 @@ class Filler:
         # Who finds no opening before a slot finds none before an earlier one either: openings only grow fewer.
         failed = np.full(len(self.problem.people), -1)
         while not self._met():
-            short = self.improver.missing()
+            short = self.energy.missing()
             due = int(np.argmax(short > _SLACK_WH))
             if not self._add_before(due, failed) and not self._add_before(len(short) - 1, failed):
                 return
@@ -111,7 +111,7 @@ class Filler:
             self._fill()
 
     def _met(self) -> bool:
-        return bool(self.improver.missing().max() <= _SLACK_WH)
+        return bool(self.energy.missing().max() <= _SLACK_WH)
 
     def _add_before(self, due: int, failed: IntArray) -> bool:
         """Add one turn before a slot; `failed` holds up to which slot each person had no opening."""

@@ -13,7 +13,8 @@ from kitplanner.plan.edits_replan import Now
 from kitplanner.plan.records import Rota
 from kitplanner.planners.rota.bounds import bounds, slots_at
 from kitplanner.planners.rota.draft import Draft
-from kitplanner.planners.rota.improve import Improver
+from kitplanner.planners.rota.improve_energy import EnergyPasses
+from kitplanner.planners.rota.improve_shape import ShapePasses
 from kitplanner.planners.rota.problem import RotaProblem
 from kitplanner.planners.rota.replan_now import spared_heat
 from kitplanner.planners.rota.replan_posted import Posted, place_posted
@@ -63,9 +64,9 @@ def remade(problem: RotaProblem, rota: Rota, now: Now, search: Search) -> tuple[
     searches = [_search(posted, search) for posted in tried]
     place = 0 if searches[0].value <= searches[1].value else 1
     again = searches[place]
-    improver = Improver(again, float(again.draft.relative_load().max(initial=0.0)))
+    improver = EnergyPasses(again, float(again.draft.relative_load().max(initial=0.0)))
     # Evening out whole weeks takes long and is for the rota of a new day; here people wait at the board.
-    for stage in (improver.fill, improver.trim, improver.join):
+    for stage in (improver.fill, improver.trim, ShapePasses(again).join):
         again.run(stage)
     return tried[place], again
 

@@ -12,7 +12,7 @@ from kitplanner.plan.records import Plan
 from kitplanner.planners.rota.bounds import Bounds, bounds, never
 from kitplanner.planners.rota.draft import Draft, Placed
 from kitplanner.planners.rota.exact import Enumeration
-from kitplanner.planners.rota.improve import Improver
+from kitplanner.planners.rota.improve import improve
 from kitplanner.planners.rota.objectives import objectives_of
 from kitplanner.planners.rota.problem import RotaProblem, build
 from kitplanner.planners.rota.result import RotaBout, RotaProgress, RotaSolution
@@ -75,7 +75,7 @@ class WalkAndImprove:
         )
         search.cut_off = over()
         if not search.cut_off and not _solved_exactly(problem, search, locked):
-            Improver(search, limits.greatest_load).run()
+            improve(search, limits.greatest_load)
         return solution_of(problem, limits, search, time.monotonic() - began)
 
 
