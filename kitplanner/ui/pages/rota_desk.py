@@ -209,20 +209,20 @@ class RotaDesk(QObject):
     def find(self, work: int) -> None:
         """Look for a rota; it is shown as a proposal."""
         if self._may_work():
-            self.began.emit(self.tr("Looking for a rota:"))
             self.run.start(functools.partial(rota_run.find_rota, self.plan, work, float("inf")))
+            self.began.emit(self.tr("Looking for a rota:"))
 
     def replan(self, now: Now, work: int) -> None:
         """Make the adopted rota again from a moment on."""
         if self._may_work():
-            self.began.emit(self.tr("Re-planning:"))
             self.run.start(functools.partial(rota_run.replan_rota, self.plan, now, work))
+            self.began.emit(self.tr("Re-planning:"))
 
     def find_levers(self) -> None:
         """Look for what would make the plan fit."""
         if self._may_work():
-            self.began.emit(self.tr("Trying what would make it fit:"))
             self.run.start(functools.partial(rota_run.find_levers, self.plan))
+            self.began.emit(self.tr("Trying what would make it fit:"))
 
     def _may_work(self) -> bool:
         if self.has_errors:
