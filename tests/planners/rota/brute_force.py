@@ -96,7 +96,7 @@ def minute_of(text: str) -> int:
 def rotas(plan: Plan) -> Iterator[tuple[Turn, ...]]:
     """Yield every legal set of bouts."""
     grid = plan.grid_min or 5
-    options = [turn for turn in single_turns(plan, grid)]
+    options = list(single_turns(plan, grid))
     options.sort()
 
     def grow(chosen: tuple[Turn, ...], first: int) -> Iterator[tuple[Turn, ...]]:
@@ -204,9 +204,9 @@ def score(plan: Plan, chosen: tuple[Turn, ...], step_wh: float) -> Score:
     unmet = []
     for each in classes:
         due = [sum(use_by(plan, d, m) for d in plan.devices if d.priority <= each) for m in moments]
-        unmet.append(max(0.0, max(d - stored - got for d, got in zip(due, made, strict=True))))
+        unmet.append(max(0.0, *(d - stored - got for d, got in zip(due, made, strict=True))))
     whole = [factor * sum(use_by(plan, d, m) for d in plan.devices) for m in moments]
-    missed = max(0.0, max(d - stored - got for d, got in zip(whole, made, strict=True)))
+    missed = max(0.0, *(d - stored - got for d, got in zip(whole, made, strict=True)))
     margin = max(0.0, missed - unmet[-1])
     excess = made[-1] - max(0.0, whole[-1] - stored - unmet[-1] - margin)
     shares = [share for row in range(len(plan.people)) if (share := own_share(plan, chosen, row)) is not None]
