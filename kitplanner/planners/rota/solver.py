@@ -69,9 +69,10 @@ class WalkAndImprove:
             draft,
             excess_step_wh(problem),
             effort.work,
-            max(0.0, effort.seconds - (time.monotonic() - began)),
+            effort.seconds,
             effort.cancelled,
             effort.progress,
+            began=began,
         )
         search.cut_off = over()
         if not search.cut_off and not _solved_exactly(problem, search, locked):
