@@ -118,7 +118,7 @@ def allowed(spec: FieldSpec) -> str:
     --------
     >>> from kitplanner.plan.fields import field
     >>> allowed(field("store", "eta_in"))
-    'above 0 and at most 100 %'
+    'of at least 1 and at most 100 %'
     """
     words = []
     if spec.low is not None:
