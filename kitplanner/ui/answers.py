@@ -150,4 +150,7 @@ class Answers(QTabWidget):
 
     @Slot(int)
     def _on_current_changed(self, _index: int) -> None:
+        for key, band in self._bands.items():
+            if key != self.current:
+                band.leave()
         self.page_chosen.emit(self.current)

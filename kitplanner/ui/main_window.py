@@ -7,7 +7,7 @@ from typing import TYPE_CHECKING
 
 from PySide6.QtCore import QByteArray, QEvent, Qt, QTimer, Slot
 from PySide6.QtGui import QCloseEvent, QDragEnterEvent, QDropEvent, QPaintEvent, QResizeEvent
-from PySide6.QtWidgets import QMainWindow, QVBoxLayout, QWidget
+from PySide6.QtWidgets import QApplication, QMainWindow, QVBoxLayout, QWidget
 
 from kitplanner.plan.catalogue import new_plan
 from kitplanner.plan.codec import PlanFileError
@@ -18,7 +18,7 @@ from kitplanner.session.recompute import Recompute
 from kitplanner.session.settings import AppSettings
 from kitplanner.ui.energy_line import EnergyLine
 from kitplanner.ui.guard import guarded
-from kitplanner.ui.reading_order import put_in_reading_order
+from kitplanner.ui.reading_order import bring_into_sight, put_in_reading_order
 from kitplanner.ui.verdict_strip import VerdictStrip
 
 if TYPE_CHECKING:
@@ -151,7 +151,9 @@ class MainWindow(QMainWindow):
     def focusNextPrevChild(self, forward: bool) -> bool:
         """Let the Tab key follow the reading order, also through parts that came later."""
         put_in_reading_order(self)
-        return bool(super().focusNextPrevChild(forward))
+        moved = bool(super().focusNextPrevChild(forward))
+        bring_into_sight(QApplication.focusWidget())
+        return moved
 
     @guarded()
     def dragEnterEvent(self, event: QDragEnterEvent) -> None:

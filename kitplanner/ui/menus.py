@@ -158,7 +158,9 @@ class Menus(QObject):
         undo = stack.createUndoAction(menu, translate("Menus", "&Undo"))
         redo = stack.createRedoAction(menu, translate("Menus", "&Redo"))
         undo.setShortcuts(QKeySequence.keyBindings(Key.Undo))
-        redo.setShortcuts([*QKeySequence.keyBindings(Key.Redo), QKeySequence("Ctrl+Y")])
+        # Twice the same key would be ambiguous and do nothing.
+        usual, second = QKeySequence.keyBindings(Key.Redo), QKeySequence("Ctrl+Y")
+        redo.setShortcuts(usual if second in usual else [*usual, second])
         for name, action in (("undo", undo), ("redo", redo)):
             menu.addAction(action)
             self._actions[name] = action

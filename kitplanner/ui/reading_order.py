@@ -8,7 +8,9 @@ from __future__ import annotations
 from itertools import pairwise
 
 from PySide6.QtCore import Qt
-from PySide6.QtWidgets import QWidget
+from PySide6.QtWidgets import QScrollArea, QWidget
+
+_AIR_PX = 24
 
 
 def reading_order(root: QWidget) -> list[QWidget]:
@@ -29,6 +31,15 @@ def put_in_reading_order(root: QWidget) -> None:
     for before, after in pairwise(order):
         if before.nextInFocusChain() is not after:
             QWidget.setTabOrder(before, after)
+
+
+def bring_into_sight(widget: QWidget | None) -> None:
+    """Scroll every area around a widget until it is seen; Qt does so only for the area that had the focus before."""
+    area = widget.parentWidget() if widget is not None else None
+    while area is not None and widget is not None:
+        if isinstance(area, QScrollArea):
+            area.ensureWidgetVisible(widget, _AIR_PX, _AIR_PX)
+        area = area.parentWidget()
 
 
 def _as_read(parent: QWidget) -> list[QWidget]:

@@ -17,6 +17,7 @@ from kitplanner.ui.answers import Answers
 from kitplanner.ui.dialogs import ask
 from kitplanner.ui.dialogs.about import TextDialog, about_text, keys_text
 from kitplanner.ui.file_actions import FileActions
+from kitplanner.ui.focus_ring import FocusRing
 from kitplanner.ui.menus import Handler, Menus
 from kitplanner.ui.panels.sections_pane import SectionsPane
 from kitplanner.ui.station_chain import StationChain
@@ -47,6 +48,7 @@ class Workbench(QSplitter):
         self.sections = SectionsPane(self.editing, self.gates, self)
         self.answers = Answers(self.gates, self)
         self.recovery = RecoveryBand(window)
+        self.focus_ring = FocusRing(window)
         self.chain = StationChain(window.energy_line, self)
         self.view = ViewSettings(self._settings, self)
         self.menus = Menus(window, self._document.stack, self._handlers())

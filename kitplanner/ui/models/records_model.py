@@ -32,6 +32,7 @@ PATH_ROLE = Qt.ItemDataRole.UserRole + 1
 SPEC_ROLE = Qt.ItemDataRole.UserRole + 2
 # Beyond this many changed rows one reset is cheaper than telling each row.
 _MOST_STEPS = 200
+_LONG_DEFAULT_CHARS = 20
 _ROOT = QModelIndex()
 
 
@@ -189,7 +190,7 @@ class RecordsModel(QAbstractTableModel):
         if not self._applies(index):
             return "–"
         text = value_text(spec, self._value(index), self.names_for(spec), exact=False)
-        text = text or default_text(spec, self.names_for(spec))
+        text = text or _short(default_text(spec, self.names_for(spec)))
         marked = index.column() == 0 and self._records[index.row()].id in self._row_marks
         return f"{text} ⚠" if marked or self.path_of(index) in self._marked else text
 
@@ -269,6 +270,11 @@ class RecordsModel(QAbstractTableModel):
         row = self.row_of(path[depth])
         if row >= 0:
             self.dataChanged.emit(self.index(row, 0), self.index(row, len(self._specs) - 1))
+
+
+def _short(default: str) -> str:
+    """Leave a long explanation of a default to the form: "by age: 20 for adults, ..." becomes "by age"."""
+    return default.split(":", 1)[0] if len(default) > _LONG_DEFAULT_CHARS else default
 
 
 def _alignment(spec: FieldSpec) -> Qt.AlignmentFlag:

@@ -49,7 +49,7 @@ def days_chart(plan: Plan, result: BalanceResult, words: tuple[str, str, str]) -
     if result.first_empty_day is not None:
         first = float(result.first_empty_day)
         shades.append(Shade(first - 1, first, f"{words[1]}: {words[2]} {result.first_empty_day}", hatched=True))
-    x_axis = Axis("", 0.0, float(plan.days), ticks)
+    x_axis = Axis("", -0.03 * plan.days, 1.03 * plan.days, ticks)
     line = Line(thinned(x), thinned(y), "", "line", dots=len(x) <= 16)
     return ChartData(x_axis, axis_over(y, words[0]), (line,), marks=tuple(marks), shades=tuple(shades))
 

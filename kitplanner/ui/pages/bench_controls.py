@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from PySide6.QtCore import QSignalBlocker, Qt, Signal, Slot
-from PySide6.QtWidgets import QCheckBox, QComboBox, QGridLayout, QLabel, QPushButton, QSlider, QWidget
+from PySide6.QtWidgets import QCheckBox, QComboBox, QGridLayout, QHBoxLayout, QLabel, QPushButton, QSlider, QWidget
 
 from kitplanner.plan.records import Plan
 from kitplanner.report.wording import plain
@@ -76,10 +76,13 @@ class BenchControls(QWidget):
             label.setBuddy(buddy)
             grid.addWidget(label, row, 0)
             grid.addWidget(buddy, row, 1, 1, 2)
-        grid.addWidget(self.rpm, 2, 1, Qt.AlignmentFlag.AlignLeading)
-        grid.addWidget(self.best, 2, 2)
-        grid.addWidget(self.fixed, 3, 1)
-        grid.addWidget(self.amps, 3, 2)
+        # What belongs together stands together; the slider alone takes the width.
+        for row, pair in enumerate(((self.rpm, self.best), (self.fixed, self.amps)), start=2):
+            line = QHBoxLayout()
+            for control in pair:
+                line.addWidget(control)
+            line.addStretch(1)
+            grid.addLayout(line, row, 1, 1, 2)
         grid.setColumnStretch(1, 1)
 
     def asked_rpm(self) -> float | None:

@@ -168,7 +168,9 @@ class MinutesDelegate(QStyledItemDelegate):
             self._words(painter, box, row)
             if option.state & QStyle.StateFlag.State_Selected:
                 painter.setBrush(Qt.BrushStyle.NoBrush)
-                painter.setPen(QPen(scheme.color("outline"), 3))
+                # The chosen cell keeps its frame; while the keyboard is here it is wider and in the accent colour.
+                has_keys = bool(option.state & QStyle.StateFlag.State_HasFocus)
+                painter.setPen(QPen(scheme.color("accent" if has_keys else "outline"), 5 if has_keys else 2))
                 painter.drawRect(box.adjusted(1, 1, -1, -1))
                 painter.setPen(QPen(scheme.color("field"), 1))
                 painter.drawRect(box.adjusted(3, 3, -3, -3))
