@@ -37,10 +37,8 @@ class BoardLegend(QWidget):
         """Return the kind of each sample and its words."""
         items = [(one.id, plain(one.name) or one.id) for one in self._data.plan.stations]
         items.append(("watch", self.tr("watches")))
-        if any(bout.locked for bout in self._data.bouts):
-            items.append(("lock", self.tr("locked")))
-        if self._data.breaks or self._data.row_breaks or self._data.charge_breaks:
-            items.append(("break", self.tr("broken rule")))
+        items.append(("lock", self.tr("locked")))
+        items.append(("break", self.tr("broken rule")))
         items.append(("shut", self.tr("not to be used")))
         return items
 

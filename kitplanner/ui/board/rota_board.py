@@ -113,6 +113,11 @@ class RotaBoard(BoardView):
         hand.chosen_changed.connect(self._on_chosen)
         hand.swap_changed.connect(self._on_swap)
 
+    @property
+    def is_held(self) -> bool:
+        """True while a turn is in the hand: nothing should move under it."""
+        return self._drag is not None
+
     def show_ghost_breaks(self, sentences: tuple[str, ...]) -> None:
         """Mark the turn in the hand with the rules it would break."""
         ghost = self._state.ghost
@@ -181,10 +186,11 @@ class RotaBoard(BoardView):
         drag, self._drag = self._drag, None
         self._state.ghost = None
         self.viewport().update()
-        if drag is not None and drag.has_begun:
-            self.tentative_changed.emit(None)
-            if keep:
-                self.hand.apply(drag.bout, drag.target)
+        if drag is None:
+            return
+        if drag.has_begun and keep:
+            self.hand.apply(drag.bout, drag.target)
+        self.tentative_changed.emit(None)
 
     def _new_turn_at(self, at: QPointF) -> None:
         layout, data = self._scene.layout, self.hand.data

@@ -158,8 +158,11 @@ class RotaDesk(QObject):
         """What the judge says of the rota shown."""
         if self.is_proposal and self.proposal is not None:
             return self.proposal.answer.violations
-        if self.plan.rota is None or self._known() is not None:
+        if self.plan.rota is None:
             return ()
+        known = self._known()
+        if known is not None:
+            return known.violations
         return self._judged.violations if self._judged is not None else ()
 
     @property

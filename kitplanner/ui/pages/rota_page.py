@@ -4,19 +4,18 @@ from __future__ import annotations
 
 from collections.abc import Callable
 
-from PySide6.QtCore import Signal, Slot
+from PySide6.QtCore import Qt, Signal, Slot
 from PySide6.QtGui import QKeySequence, QShortcut
 from PySide6.QtWidgets import QComboBox, QListWidget, QMenu, QStackedWidget, QVBoxLayout, QWidget
 
+from kitplanner.plan.edits import Edit
 from kitplanner.plan.records import Plan
 from kitplanner.planners.rota.result import RotaProgress
 from kitplanner.planners.rota.solver import DEFAULT_WORK
-from kitplanner.report.wording import counted, plain
+from kitplanner.report.wording import plain
 from kitplanner.report.wording_rota import (
     day_words,
-    remark_sentence,
     unmet_sentences,
-    verdict_lines,
     violation_sentence,
 )
 from kitplanner.ui.board.board_access import announce
@@ -30,9 +29,10 @@ from kitplanner.ui.pages.plain_table import PlainTable, TableData
 from kitplanner.ui.pages.rota_choices import ChoiceRow
 from kitplanner.ui.pages.rota_desk import RotaDesk
 from kitplanner.ui.pages.rota_tasks import RotaTasks
-from kitplanner.ui.pages.rota_words import aims_data, charging_data, progress_words, rota_state
+from kitplanner.ui.pages.rota_words import aims_data, charging_data, head_words, progress_words
 from kitplanner.ui.pages.rota_work_line import RotaWorkLine
 from kitplanner.ui.pages.rota_wrapped_table import WrappedTable
+from kitplanner.ui.widgets.plain import as_tool_tip
 from kitplanner.ui.widgets.small_button import SmallButton
 
 QUICK_WORK, THOROUGH_WORK = 2_000, 100_000
@@ -65,6 +65,7 @@ class RotaPage(AnswerPage):
         self.work, self.rows, self.day, self.view, self.shown = (QComboBox() for _ in range(5))
         self.buttons = self._make_buttons()
         self._titles: dict[QWidget, QWidget] = {}
+        self._is_late = False
         self._build()
         self._connect()
 
@@ -99,7 +100,9 @@ class RotaPage(AnswerPage):
         self.broken.setAccessibleName(self.tr("Broken rules"))
         self.broken.setWordWrap(True)
         self.told.setAccessibleName(self.tr("Message"))
-        self.told.hide()
+        # A room of its own that never changes: nothing moves under the hand that chooses a turn.
+        self.told.setAlignment(Qt.AlignmentFlag.AlignTop | Qt.AlignmentFlag.AlignLeft)
+        self.told.setText(self.hint())
         self.actions_row, self.choices_row = self._actions(), self._choices()
         for widget in (
             self.verdict,
@@ -194,7 +197,7 @@ class RotaPage(AnswerPage):
         hand.told.connect(self.tell)
         desk.ghost_judged.connect(self._on_ghost_judged)
         hand.chosen_changed.connect(self._on_chosen)
-        self.board.tentative_changed.connect(desk.try_edit)
+        self.board.tentative_changed.connect(self._on_tentative)
         self.work_line.stop_requested.connect(desk.run.stop)
         self.broken.itemActivated.connect(self._on_broken)
         self.broken.itemClicked.connect(self._on_broken)
@@ -229,6 +232,11 @@ class RotaPage(AnswerPage):
 
     @Slot()
     def _show(self) -> None:
+        if self.board.is_held:
+            self._is_late = True
+            return
+        self._is_late = False
+        self._hold_room()
         desk, data = self.desk, self.desk.board_data()
         self.board.show_as(self.rows.currentData(), self.days())
         self.board.show_data(data)
@@ -243,42 +251,28 @@ class RotaPage(AnswerPage):
         self._titles[self.unmet].setVisible(bool(sentences))
         self._show_broken()
         self._enable()
-        if self.hand.chosen:
+        if self.hand.chosen or not self.told.text():
             self._on_chosen(self.hand.chosen)
+
+    def _hold_room(self) -> None:
+        """Give the message two lines at the present text size."""
+        self.told.setFixedHeight(2 * self.told.fontMetrics().lineSpacing() + 2)
+
+    @Slot(object)
+    def _on_tentative(self, edit: Edit | None) -> None:
+        self.desk.try_edit(edit)
+        if edit is None and self._is_late:
+            self._show()
 
     def _fill(self, table: PlainTable, data: TableData) -> None:
         table.set_data(data)
         self._titles[table].setVisible(bool(data.rows))
 
     def _show_words(self) -> None:
-        desk, answer = self.desk, self.desk.answer
-        lines: tuple[str, ...]
-        if desk.has_errors:
-            lines = (self.tr("The plan has problems that stop the calculation; they are listed with the plan."),)
-        elif answer is not None and (desk.is_proposal or desk.is_followed):
-            lines = verdict_lines(desk.plan, answer)
-        elif desk.plan.rota is not None:
-            broken = len(desk.violations)
-            said = counted(broken, "rule is broken", "rules are broken") if broken else self.tr("every rule is kept")
-            judged = said[0].upper() + said[1:] if desk.is_judged else self.tr("The rota is being judged")
-            lines = (self.tr("{judged}; needs and stores are being worked out.").format(judged=judged),)
-        else:
-            lines = (self.tr("No rota yet. Plan one, look at it, adopt it; nothing changes before."),)
-        first = 2 if answer is not None and desk.violations else 1
-        self.verdict.setText(" ".join(lines[:first]))
-        more = list(lines[first:])
-        if desk.is_proposal:
-            more.append(self.tr("A proposal: nothing holds until it is adopted."))
-            if desk.is_stale:
-                more.append(self.tr("The plan has changed since; plan the rota anew."))
-            if desk.proposal is not None:
-                more += [remark_sentence(desk.plan, remark) for remark in desk.proposal.remarks]
-        if desk.plan.rota is not None:
-            more.append(rota_state(desk.plan, desk.plan.rota))
-        if desk.charging_is_older:
-            more.append(self.tr("The charging table was made for other turns."))
-        self.state.setText(" ".join(more))
-        self.state.setVisible(bool(more))
+        verdict, state = head_words(self.desk)
+        self.verdict.setText(verdict)
+        self.state.setText(state)
+        self.state.setVisible(bool(state))
 
     def _show_broken(self) -> None:
         found = self.desk.violations
@@ -313,11 +307,20 @@ class RotaPage(AnswerPage):
         self.shown.blockSignals(False)
         self.choices_row.show_choice(self.shown, desk.proposal is not None and has_rota)
 
+    def hint(self) -> str:
+        """Return what can be done by hand, where nothing else is to be said."""
+        if self.desk.plan.rota is None or self.desk.is_proposal:
+            return ""
+        return self.tr(
+            "Drag a turn, or choose one: arrows move it, Shift+arrows resize, H hands over, S swaps, L locks, "
+            "Enter edits, Delete removes, Insert adds."
+        )
+
     @Slot(str)
     def tell(self, text: str) -> None:
         """Say one sentence."""
-        self.told.setText(text)
-        self.told.setVisible(bool(text))
+        self.told.setText(text or self.hint())
+        self.told.setToolTip(as_tool_tip(text) if text else "")
         announce(self.told, text)
 
     @Slot()
@@ -328,8 +331,15 @@ class RotaPage(AnswerPage):
 
     @Slot(str)
     def _on_chosen(self, bout_id: str) -> None:
-        bout = self.hand.bout(bout_id)
-        self.tell(plain(self.hand.data.sentence(bout)) if bout is not None else "")
+        bout, data = self.hand.bout(bout_id), self.hand.data
+        broken = data.breaks.get(bout_id, ())
+        if bout is None:
+            self.tell("")
+        elif broken:
+            more = self.tr(" {count} more, see below.").format(count=len(broken) - 1) if len(broken) > 1 else ""
+            self.tell(self.tr("Broken rule: {text}").format(text=plain(broken[0])) + more)
+        else:
+            self.tell(plain(data.sentence(bout)))
 
     @Slot(object)
     def _on_ghost_judged(self, sentences: tuple[str, ...]) -> None:

@@ -12,10 +12,11 @@ from kitplanner.planners.rota.replan_records import PersonChange
 from kitplanner.planners.rota.result import ObjectiveName, RotaAnswer, RotaCharge, RotaProgress
 from kitplanner.report.tables_rota import aim_table, charging_rows
 from kitplanner.report.wording import counted, energy, listed, number, percent, plain
-from kitplanner.report.wording_rota import aim_words, violation_sentence
+from kitplanner.report.wording_rota import aim_words, remark_sentence, verdict_lines, violation_sentence
 from kitplanner.session.rota_run import Replanned
 from kitplanner.ui.board.board_data import ShownCharge
 from kitplanner.ui.pages.plain_table import TableData
+from kitplanner.ui.pages.rota_desk import RotaDesk
 
 translate = QCoreApplication.translate
 
@@ -126,3 +127,39 @@ def replan_lines(replanned: Replanned) -> tuple[str, list[str]]:
         lines.append(text.format(wh=energy(answer.unmet_wh, "O")))
     lines += [violation_sentence(found) for found in replanned.violations]
     return head, lines or [translate("RotaPage", "Everything stays as it was.")]
+
+
+def head_words(desk: RotaDesk) -> tuple[str, str]:
+    """Return the verdict, and below it what else is to be known of the rota shown."""
+    answer = desk.answer
+    lines: tuple[str, ...]
+    if desk.has_errors:
+        lines = (
+            translate("RotaPage", "The plan has problems that stop the calculation; they are listed with the plan."),
+        )
+    elif answer is not None and (desk.is_proposal or desk.is_followed):
+        lines = verdict_lines(desk.plan, answer)
+    elif desk.plan.rota is not None:
+        broken = len(desk.violations)
+        said = (
+            counted(broken, "rule is broken", "rules are broken")
+            if broken
+            else translate("RotaPage", "every rule is kept")
+        )
+        judged = said[0].upper() + said[1:] if desk.is_judged else translate("RotaPage", "The rota is being judged")
+        lines = (translate("RotaPage", "{judged}; needs and stores are being worked out.").format(judged=judged),)
+    else:
+        lines = (translate("RotaPage", "No rota yet. Plan one, look at it, adopt it; nothing changes before."),)
+    first = 2 if answer is not None and desk.violations else 1
+    more = list(lines[first:])
+    if desk.is_proposal:
+        more.append(translate("RotaPage", "A proposal: nothing holds until it is adopted."))
+        if desk.is_stale:
+            more.append(translate("RotaPage", "The plan has changed since; plan the rota anew."))
+        if desk.proposal is not None:
+            more += [remark_sentence(desk.plan, remark) for remark in desk.proposal.remarks]
+    if desk.plan.rota is not None:
+        more.append(rota_state(desk.plan, desk.plan.rota))
+    if desk.charging_is_older:
+        more.append(translate("RotaPage", "The charging table was made for other turns."))
+    return " ".join(lines[:first]), " ".join(more)

@@ -8,7 +8,7 @@ from dataclasses import replace
 
 import pytest
 from msgspec import structs
-from PySide6.QtCore import QCoreApplication, QEvent, Qt
+from PySide6.QtCore import QCoreApplication, QEvent, QPoint, Qt
 from PySide6.QtGui import QAccessible
 from PySide6.QtTest import QTest
 from PySide6.QtWidgets import QApplication, QInputDialog, QLabel, QWidget
@@ -458,3 +458,20 @@ def test_the_window_closes_while_work_is_under_way(qtbot, qapp):
     assert made.desk.run.is_busy
     made.page.deleteLater()
     QCoreApplication.sendPostedEvents(None, QEvent.Type.DeferredDelete)
+
+
+def test_nothing_moves_under_the_hand(adopted):
+    page = adopted.page
+    top = page.board.mapTo(page, QPoint(0, 0)).y()
+    bout = page.hand.bout("b1")
+    start = page.board.rect_of(bout).center().toPoint()
+    QTest.mousePress(page.board.viewport(), Qt.MouseButton.LeftButton, pos=start)
+    QTest.mouseMove(page.board.viewport(), start + QPoint(40, 0))
+    page.tell("A sentence that is long enough to need more than one line of the page. " * 4)
+    adopted.document.apply(move_bout("b4", 2, 12 * 60), "move")
+    adopted.qtbot.wait(100)
+    assert page.board.mapTo(page, QPoint(0, 0)).y() == top
+    assert page.hand.bout("b4").start_min == 9 * 60, "shown once the hand is empty"
+    QTest.mouseRelease(page.board.viewport(), Qt.MouseButton.LeftButton, pos=start + QPoint(40, 0))
+    assert page.hand.bout("b4").start_min == 12 * 60
+    assert page.hand.bout("b1").start_min > bout.start_min
