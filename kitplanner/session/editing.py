@@ -44,9 +44,12 @@ class Editing(QObject):
     -------
     draft_changed(path: Path)
         The text kept for a field was kept, changed or dropped.
+    explain_requested(path: Path, what: str)
+        The user asks about a field: "trace", where its value comes from, or "meaning", what it is.
     """
 
     draft_changed = Signal(object)
+    explain_requested = Signal(object, str)
 
     def __init__(self, document: PlanDocument, parent: QObject | None = None) -> None:
         super().__init__(parent)

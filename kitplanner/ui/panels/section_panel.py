@@ -28,6 +28,7 @@ from kitplanner.ui.dialogs.ask import ask_how_many
 from kitplanner.ui.guard import guarded
 from kitplanner.ui.models.field_delegate import FieldDelegate
 from kitplanner.ui.models.records_model import RecordsModel
+from kitplanner.ui.panels.cell_questions import add_questions
 from kitplanner.ui.panels.record_details import RecordDetails, make_details
 from kitplanner.ui.panels.sections import PLAN_SECTION, Section
 from kitplanner.ui.widgets.button_row import ButtonRow
@@ -209,6 +210,7 @@ class SectionPanel(QWidget):
         remove.setShortcutContext(Qt.ShortcutContext.WidgetShortcut)
         remove.triggered.connect(self.remove_chosen)
         self.table.addAction(remove)
+        add_questions(self.table, self._editing)
         self.table.setContextMenuPolicy(Qt.ContextMenuPolicy.ActionsContextMenu)
         self._hint = plain_label(translate("Sections", self.section.hint), wrap=True)
         self._hint.setContentsMargins(8, 4, 8, 4)

@@ -6,8 +6,9 @@ from collections.abc import Mapping
 from types import MappingProxyType
 from typing import Any
 
-from PySide6.QtCore import QEvent, Qt, Signal, Slot
-from PySide6.QtWidgets import QFormLayout, QHBoxLayout, QLabel, QSizePolicy, QVBoxLayout, QWidget
+from PySide6.QtCore import QEvent, QPoint, Qt, Signal, Slot
+from PySide6.QtGui import QAction
+from PySide6.QtWidgets import QFormLayout, QHBoxLayout, QLabel, QLineEdit, QMenu, QSizePolicy, QVBoxLayout, QWidget
 
 from kitplanner.plan.cautions import ShownCaution
 from kitplanner.plan.edits import Path
@@ -54,9 +55,12 @@ class FieldRow(QWidget):
     -------
     entered(key: str, text: str)
         The user finished an entry.
+    explain_requested(key: str, what: str)
+        The user asks where the value comes from ("trace") or what the field means ("meaning").
     """
 
     entered = Signal(str, str)
+    explain_requested = Signal(str, str)
 
     def __init__(self, spec: FieldSpec, parent: QWidget | None = None) -> None:
         super().__init__(parent)
@@ -123,11 +127,42 @@ class FieldRow(QWidget):
         layout.addLayout(line)
         layout.addWidget(self._problem)
         self.setFocusProxy(self.editor)
+        asked = self.editor.line() if isinstance(self.editor, RefsEditor) else self.editor
+        for widget in (asked, self.label):
+            widget.setContextMenuPolicy(Qt.ContextMenuPolicy.CustomContextMenu)
+            widget.customContextMenuRequested.connect(self._on_menu)
         self.recolour()
+
+    @Slot(QPoint)
+    def _on_menu(self, at: QPoint) -> None:
+        asked = self.sender()
+        assert isinstance(asked, QWidget)
+        menu = asked.createStandardContextMenu() if isinstance(asked, QLineEdit) else QMenu(asked)
+        menu.setAttribute(Qt.WidgetAttribute.WA_DeleteOnClose)
+        if menu.actions():
+            menu.addSeparator()
+        for what, text in explanation_texts(self):
+            menu.addAction(text).setData(what)
+        menu.triggered.connect(self._on_triggered)
+        menu.popup(asked.mapToGlobal(at))
+
+    @Slot(QAction)
+    def _on_triggered(self, action: QAction) -> None:
+        if action.data() in EXPLANATIONS:
+            self.explain_requested.emit(self.spec.key, action.data())
 
     @Slot(str)
     def _on_entered(self, text: str) -> None:
         self.entered.emit(self.spec.key, text)
+
+
+EXPLANATIONS = ("trace", "meaning")
+
+
+def explanation_texts(owner: QWidget) -> tuple[tuple[str, str], ...]:
+    """Return the questions about a field with their texts."""
+    texts = (owner.tr("Where does this come from?"), owner.tr("What does this mean?"))
+    return tuple(zip(EXPLANATIONS, texts, strict=True))
 
 
 class RecordForm(QWidget):
@@ -212,6 +247,7 @@ class RecordForm(QWidget):
                 self._layout.addRow(label)
             self._layout.addRow(row.label, row)
             row.entered.connect(self._on_entered)
+            row.explain_requested.connect(self._on_explain)
         self._align_units()
 
     def _align_units(self) -> None:
@@ -242,6 +278,10 @@ class RecordForm(QWidget):
     @Slot(str, str)
     def _on_entered(self, key: str, text: str) -> None:
         self._editing.enter((*self._path, key), self._rows[key].spec, text)
+
+    @Slot(str, str)
+    def _on_explain(self, key: str, what: str) -> None:
+        self._editing.explain_requested.emit((*self._path, key), what)
 
     @Slot(object)
     def _on_draft_changed(self, path: Path) -> None:
