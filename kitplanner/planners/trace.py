@@ -3,7 +3,10 @@
 A formula id names what is traced, `ids` the records it belongs to:
 coverage, need, have, short, first_empty_day, limit, needed_min (no ids); device_use, device_credit (device);
 store_usable (store); station_time, station_made (station); station_output (person, station);
-minutes_p50 (device, station, person, route, charge).
+minutes_p50 (device, station, person, route, charge); days, hours, shares and cuts in `trace_balance`, the other numbers
+of an effort row in `trace_effort`, the energy line in `trace_flow`. Bench and rota have their own entries
+(`trace_bench`, `trace_rota`), because their answers are not among the results. `trace_ids` says which id belongs to
+which number.
 """
 
 from __future__ import annotations
@@ -12,6 +15,7 @@ from collections.abc import Callable, Mapping, Sequence
 from types import MappingProxyType
 
 from kitplanner.plan.records import Plan
+from kitplanner.planners import trace_balance, trace_effort, trace_flow
 from kitplanner.planners.pipeline import Results
 from kitplanner.planners.results import BalanceResult, Trace, TraceStep
 from kitplanner.planners.trace_fields import TraceError, computed, field_step, field_steps, figure, words
@@ -206,5 +210,40 @@ OF_RECORDS: Mapping[str, OfRecords] = MappingProxyType(
         "station_made": station_made,
         "station_output": station_output,
         "minutes_p50": minutes_p50,
+        "station_to_outlet": trace_balance.station_to_outlet,
+        "day_use": trace_balance.day_use,
+        "day_made": trace_balance.day_made,
+        "day_end": trace_balance.day_end,
+        "hour_use": trace_balance.hour_use,
+        "hour_made": trace_balance.hour_made,
+        "device_covered": trace_balance.device_covered,
+        "station_offered": trace_balance.station_offered,
+        "station_used": trace_balance.station_used,
+        "station_human": trace_balance.station_human,
+        "person_cap": trace_balance.person_cap,
+        "person_used": trace_balance.person_used,
+        "cut_need": trace_balance.cut_need,
+        "cut_have": trace_balance.cut_have,
+        "cut_covered": trace_balance.cut_covered,
+        "minutes_p10": trace_effort.minutes_p10,
+        "minutes_p90": trace_effort.minutes_p90,
+        "row_output": trace_effort.row_output,
+        "row_power": trace_effort.row_power,
+        "row_chain": trace_effort.row_chain,
+        "curve_minutes": trace_effort.curve_minutes,
+        "curve_soc": trace_effort.curve_soc,
+        "curve_soc_range": trace_effort.curve_soc_range,
+        "curve_power": trace_effort.curve_power,
+        "flow_people": trace_flow.flow_people,
+        "flow_station": trace_flow.flow_station,
+        "flow_source": trace_flow.flow_source,
+        "flow_b": trace_flow.flow_b,
+        "flow_o": trace_flow.flow_o,
+        "flow_start": trace_flow.flow_start,
+        "flow_device": trace_flow.flow_device,
+        "flow_loss": trace_flow.flow_loss,
+        "flow_missing": trace_flow.flow_missing,
+        "flow_margin": trace_flow.flow_margin,
+        "flow_spare": trace_flow.flow_spare,
     }
 )

@@ -188,7 +188,7 @@ def minutes_p50(plan: Plan, results: Results, ids: Sequence[str]) -> Trace:
     device = _found(plan.devices, ids, 0, "device")
     station = _found(plan.stations, ids, 1, "station")
     person = _found(plan.people, ids, 2, "person")
-    row = _effort_row(results, ids)
+    row = effort_row(results, ids)
     return Trace(
         formula="minutes = integral over state of charge of capacity / power into the battery",
         words="At every state of charge the battery takes the least of what the station brings and what it accepts.",
@@ -222,7 +222,8 @@ def _store_steps(plan: Plan, row: EffortRow) -> tuple[TraceStep, ...]:
     return tuple(step for store in plan.stores for step in field_steps("store", store, ("eta_in", "eta_out")))
 
 
-def _effort_row(results: Results, ids: Sequence[str]) -> EffortRow:
+def effort_row(results: Results, ids: Sequence[str]) -> EffortRow:
+    """Return the effort row with these ids: device, station, person, route, charge."""
     if results.effort is None:
         raise TraceError("The minutes are not computed yet.")
     wanted = tuple(ids)
