@@ -43,6 +43,7 @@ from kitplanner.planners.sensitivity_inputs import (
 from kitplanner.planners.sensitivity_records import (
     P90_Z,
     Answered,
+    InputName,
     Sensitivity,
     SensitivityRow,
     Variation,
@@ -156,40 +157,39 @@ def _people(cover: Cover) -> Iterator[Answered]:
         column = int(np.argmax(output_w[place]))
         low, high = (cover.fraction(made_wh=cover.made_by(_one_row(output_w, end, place))) for end in ends.person)
         yield person_variation(plan, person.id, plan.stations[column].id), low, high
-    low_k, high_k = shared_factors(PEOPLE_SHARED_SPREAD)
+    yield from _together(cover)
+    yield from _outputs(cover, ends)
+
+
+def _together(cover: Cover) -> Iterator[Answered]:
+    """Yield what holds for all people at once: the estimate of their watts, and how many minutes are really turned."""
+    low, high = shared_factors(PEOPLE_SHARED_SPREAD)
     yield (
-        Variation(
-            name="people_shared",
-            record="",
-            kind="person",
-            key="",
-            central=1.0,
-            low=low_k,
-            high=high_k,
-            unit="",
-            mark="default",
-            source=PLANNING_VALUE,
-        ),
-        cover.fraction(made_wh=cover.made_wh * low_k),
-        cover.fraction(made_wh=cover.made_wh * high_k),
+        _of_all("people_shared", (low, 1.0, high), ""),
+        cover.fraction(made_wh=cover.made_wh * low),
+        cover.fraction(made_wh=cover.made_wh * high),
     )
+    fewer = cover.made_by(cover.output_w, ATTENDANCE_LOW_FRACTION)
     yield (
-        Variation(
-            name="attendance",
-            record="",
-            kind="person",
-            key="",
-            central=1.0,
-            low=ATTENDANCE_LOW_FRACTION,
-            high=1.0,
-            unit="%",
-            mark="default",
-            source=PLANNING_VALUE,
-        ),
-        cover.fraction(made_wh=cover.made_by(output_w, ATTENDANCE_LOW_FRACTION)),
+        _of_all("attendance", (ATTENDANCE_LOW_FRACTION, 1.0, 1.0), "%"),
+        cover.fraction(made_wh=fewer),
         cover.fraction(),
     )
-    yield from _outputs(cover, ends)
+
+
+def _of_all(name: InputName, ends: tuple[float, float, float], unit: str) -> Variation:
+    return Variation(
+        name=name,
+        record="",
+        kind="person",
+        key="",
+        central=ends[1],
+        low=ends[0],
+        high=ends[2],
+        unit=unit,
+        mark="default",
+        source=PLANNING_VALUE,
+    )
 
 
 def _one_row(output_w: FloatArray, end: FloatArray, place: int) -> FloatArray:

@@ -143,11 +143,7 @@ def charge_time(plan: Plan, answer: RotaAnswer, ids: Sequence[str]) -> Trace:
         value=f"day {row.day}, {clock(row.start_min)} to {clock(row.end_min)}",
         steps=(
             *field_steps("device", device, ("charge_windows", "use_windows", "priority")),
-            *(
-                step
-                for point in plan.charging_points
-                for step in field_steps("charging_point", point, ("hours", "outlets"))
-            ),
+            *(step for steps in points for step in steps),
         ),
     )
 
