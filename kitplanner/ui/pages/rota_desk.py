@@ -8,13 +8,14 @@ from __future__ import annotations
 import functools
 from collections.abc import Sequence
 
+from msgspec import structs
 from PySide6.QtCore import QObject, QTimer, Signal, Slot
 
 from kitplanner.plan import edits_rota
 from kitplanner.plan.edits import Edit, EditError
 from kitplanner.plan.edits_levers import LeverChange, levers_edit
 from kitplanner.plan.edits_replan import Now
-from kitplanner.plan.records import Bout, Plan
+from kitplanner.plan.records import Bout, ChargeSpell, Plan
 from kitplanner.planners.rota.result import RotaAnswer, Violation
 from kitplanner.session import rota_run
 from kitplanner.session.rota_run import Ask, Errand, Followed, Found, Judged, Levered, Replanned
@@ -31,6 +32,7 @@ from kitplanner.ui.board.board_data import (
 # What a rota does not read; a change there leaves answers valid.
 _UNREAD = frozenset({"rota", "title", "place", "log", "notes", "pack_items", "start"})
 _FOLLOW_MS, _GHOST_MS = 150, 40
+_ROUNDING_WH = 0.01
 
 
 def same_problem(one: Plan, other: Plan) -> bool:
@@ -44,6 +46,17 @@ def same_problem(one: Plan, other: Plan) -> bool:
 def same_rota(one: Plan, other: Plan) -> bool:
     """Return whether two plans hold the same rota for the same problem."""
     return same_problem(one, other) and one.rota == other.rota
+
+
+def same_charging(one: tuple[ChargeSpell, ...], other: tuple[ChargeSpell, ...]) -> bool:
+    """Return whether two charging tables say the same to whoever reads them; rounding is no difference."""
+    if len(one) != len(other):
+        return False
+    plain = (structs.replace(spell, id="", energy_wh=0.0) for spell in one)
+    others = (structs.replace(spell, id="", energy_wh=0.0) for spell in other)
+    return all(left == right for left, right in zip(plain, others, strict=True)) and all(
+        abs(left.energy_wh - right.energy_wh) <= _ROUNDING_WH for left, right in zip(one, other, strict=True)
+    )
 
 
 def _tagged(tag: str, plan: Plan, ask: Ask) -> tuple[str, Judged]:
@@ -178,7 +191,7 @@ class RotaDesk(QObject):
             return False
         if self._known() is not None or not same_rota(self._followed.plan, self.plan):
             return False
-        return self._followed.charging != self.plan.rota.charging
+        return not same_charging(self._followed.charging, self.plan.rota.charging)
 
     def board_data(self) -> BoardData:
         """Return what the board shows."""

@@ -6,7 +6,7 @@ from collections.abc import Callable
 
 from PySide6.QtCore import Qt, Signal, Slot
 from PySide6.QtGui import QKeySequence, QShortcut
-from PySide6.QtWidgets import QComboBox, QListWidget, QMenu, QStackedWidget, QVBoxLayout, QWidget
+from PySide6.QtWidgets import QComboBox, QHBoxLayout, QListWidget, QMenu, QStackedWidget, QVBoxLayout, QWidget
 
 from kitplanner.plan.edits import Edit
 from kitplanner.plan.records import Plan
@@ -165,7 +165,12 @@ class RotaPage(AnswerPage):
             (self.tr("As"), self.view),
             (self.tr("Shown"), self.shown),
         )
-        return ChoiceRow([*boxes, ("", self.zoom_out), ("", self.zoom_in)])
+        self.zoom = QWidget()
+        pair = QHBoxLayout(self.zoom)
+        pair.setContentsMargins(0, 0, 0, 0)
+        pair.addWidget(self.zoom_out)
+        pair.addWidget(self.zoom_in)
+        return ChoiceRow([*boxes, ("", self.zoom)])
 
     def _connect(self) -> None:
         actions: dict[str, Callable[[], None]] = {
@@ -255,8 +260,10 @@ class RotaPage(AnswerPage):
             self._on_chosen(self.hand.chosen)
 
     def _hold_room(self) -> None:
-        """Give the message two lines at the present text size."""
-        self.told.setFixedHeight(2 * self.told.fontMetrics().lineSpacing() + 2)
+        """Give the message as many lines as the hint needs, two at least; that follows width and text size alone."""
+        metrics, wide = self.told.fontMetrics(), max(100, self.told.width())
+        hint = metrics.boundingRect(0, 0, wide, 10_000, int(Qt.TextFlag.TextWordWrap), self.hint()).height()
+        self.told.setFixedHeight(max(2 * metrics.lineSpacing(), hint) + 2)
 
     @Slot(object)
     def _on_tentative(self, edit: Edit | None) -> None:
@@ -373,8 +380,7 @@ class RotaPage(AnswerPage):
     def _on_choice(self) -> None:
         self.stack.setCurrentIndex(int(self.view.currentData()))
         self.legend.setVisible(self.stack.currentWidget() is self.board)
-        for button in (self.zoom_in, self.zoom_out):
-            self.choices_row.show_choice(button, self.stack.currentWidget() is self.board)
+        self.choices_row.show_choice(self.zoom, self.stack.currentWidget() is self.board)
         self.tasks.work, self.tasks.day = int(self.work.currentData()), self.days()[0]
         self.desk.show_proposal(bool(self.shown.currentData()))
         self._show()

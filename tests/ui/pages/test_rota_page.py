@@ -23,6 +23,7 @@ from kitplanner.session.rota_run import Ask, Levered, RefusedError, find_levers,
 from kitplanner.ui import theme
 from kitplanner.ui.pages import rota_export
 from kitplanner.ui.pages.rota_bout_form import BoutForm, HandOverDialog
+from kitplanner.ui.pages.rota_desk import same_charging
 from kitplanner.ui.pages.rota_levers_dialog import LeversDialog
 from kitplanner.ui.pages.rota_page import RotaPage
 from kitplanner.ui.pages.rota_replan_dialog import ReplanDialog, ReplanResultDialog
@@ -475,3 +476,13 @@ def test_nothing_moves_under_the_hand(adopted):
     QTest.mouseRelease(page.board.viewport(), Qt.MouseButton.LeftButton, pos=start + QPoint(40, 0))
     assert page.hand.bout("b4").start_min == 12 * 60
     assert page.hand.bout("b1").start_min > bout.start_min
+
+
+def test_rounding_is_no_other_charging_table(legal):
+    spells = legal.rota.charging
+    nearly = tuple(structs.replace(spell, id="x", energy_wh=spell.energy_wh + 1e-9) for spell in spells)
+    other = tuple(structs.replace(spell, energy_wh=spell.energy_wh + 0.5) for spell in spells)
+    assert spells
+    assert same_charging(spells, nearly)
+    assert not same_charging(spells, other)
+    assert not same_charging(spells, spells[1:])
