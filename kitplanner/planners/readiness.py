@@ -243,7 +243,7 @@ def store_minutes(plan: Plan, store: Store, from_fraction: float, to_fraction: f
     --------
     >>> bank = Store(id="b", name="bank", nominal_wh=74.0, charge_limit_w=10.0)
     >>> round(store_minutes(Plan(), bank, 0.1, 1.0) / 60.0, 1)
-    7.4
+    7.5
     """
     capacity_wh = store.nominal_wh * store.health_fraction
     rate = _STORE_RATE_PER_H[store.chemistry]
