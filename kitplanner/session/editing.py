@@ -20,6 +20,7 @@ from kitplanner.plan.edits import (
     remove_record,
     set_value,
 )
+from kitplanner.plan.edits_use import WAY_KEYS, change_use_way, set_use
 from kitplanner.plan.fields import FieldSpec
 from kitplanner.plan.records import Plan
 from kitplanner.session.document import PlanDocument
@@ -35,6 +36,7 @@ from kitplanner.session.new_records import (
 )
 
 MOST_AT_ONCE = 200
+_USE_KEYS = frozenset(key for keys in WAY_KEYS.values() for key in keys)
 
 
 class Editing(QObject):
@@ -96,9 +98,7 @@ class Editing(QObject):
         if value == get_value(self.plan, path) and _same_kind(value, get_value(self.plan, path)):
             self._drop_draft(path)
             return None
-        edit = set_value(path, value)
-        if path[0] == "stations" and path[-1] == "described_by" and len(path) == 3:
-            edit = chain(edit, edit_described_by(path[:-1], value))
+        edit = edit_of_entry(path, value)
         step = self.tr("Change {field} of {record}").format(
             field=_in_sentence(label_of(spec)), record=self.name_of(path[:-1])
         )
@@ -107,6 +107,10 @@ class Editing(QObject):
             return self._keep_draft(path, text, problem)
         self._drop_draft(path)
         return None
+
+    def carry_out(self, edit: Edit, text: str) -> str | None:
+        """Carry out an edit that a dialog made, as one named step; return why not, or None when done."""
+        return self._document.apply(edit, text)
 
     def add(self, section: str, count: int = 1) -> tuple[str, ...]:
         """Add records at the end of a section as one step; return their ids."""
@@ -216,6 +220,18 @@ class Editing(QObject):
 
     def _on_plan_replaced(self) -> None:
         self.drafts.clear()
+
+
+def edit_of_entry(path: Path, value: Any) -> Edit:
+    """Return the edit of one entered value: a device's use stays in step, a station gets what its way needs."""
+    if len(path) == 3 and path[0] == "devices" and path[2] == "use_by":
+        return change_use_way(path[1], value)
+    if len(path) == 3 and path[0] == "devices" and path[2] in _USE_KEYS and value is not None:
+        return set_use(path[1], path[2], value)
+    edit = set_value(path, value)
+    if len(path) == 3 and path[0] == "stations" and path[2] == "described_by":
+        return chain(edit, edit_described_by(path[:-1], value))
+    return edit
 
 
 def _copy_of(model: Any, record_id: str) -> Any:

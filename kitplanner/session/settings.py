@@ -47,6 +47,15 @@ class AppSettings:
         self._store.setValue("view/text_percent", min(TEXT_PERCENT_HIGH, max(TEXT_PERCENT_LOW, int(value))))
 
     @property
+    def has_started(self) -> bool:
+        """True once the ways to begin a plan were shown without being asked for."""
+        return cast(bool, self._store.value("view/started", False, type=bool))
+
+    @has_started.setter
+    def has_started(self, value: bool) -> None:
+        self._store.setValue("view/started", value)
+
+    @property
     def section(self) -> str:
         """Section shown last, empty at the first start."""
         return self._text("view/section", "")

@@ -2,13 +2,15 @@
 
 from __future__ import annotations
 
+import datetime as dt
 from pathlib import Path
 
-from PySide6.QtCore import QObject, QStandardPaths, Signal, Slot
+from PySide6.QtCore import QDate, QObject, QStandardPaths, Signal, Slot
 from PySide6.QtWidgets import QApplication, QWidget
 
 from kitplanner.plan.catalogue import new_plan
 from kitplanner.plan.codec import PlanFileError
+from kitplanner.plan.edits_start import StartAnswers, restart_from
 from kitplanner.plan.records import Plan
 from kitplanner.session.autosave import Recovered, discard
 from kitplanner.session.document import DocumentError, FileChangedError, FileInUseError, PlanDocument
@@ -33,6 +35,25 @@ class FileActions(QObject):
         self._settings = settings
         self._window = window
 
+    def offer_start(self) -> None:
+        """Show the ways to begin a plan."""
+        from kitplanner.ui.dialogs.start_dialog import StartDialog  # the first picture needs no dialog
+
+        day = QDate.currentDate()
+        today = dt.date(day.year(), day.month(), day.day())
+        dialog = StartDialog(today, self._settings.recent_files, self._window)
+        dialog.answered.connect(self.start_from)
+        dialog.example_chosen.connect(self.start_new)
+        dialog.open_chosen.connect(self._on_open_chosen)
+        dialog.open()
+
+    @Slot(object)
+    def start_from(self, answers: StartAnswers) -> None:
+        """Begin a plan from answers; it is unsaved work from the first moment."""
+        if self.may_leave():
+            self._document.new_plan(Plan())
+            self._document.apply(restart_from(answers), self.tr("Start a plan"))
+
     @Slot(str)
     def start_new(self, kind: str) -> None:
         """Begin a plan from one of the examples, or an empty one."""
@@ -49,6 +70,13 @@ class FileActions(QObject):
         """Ask which file to open, and open it."""
         path = ask.ask_open_path(self._window, self._folder())
         if path is not None:
+            self.open_path(path)
+
+    @Slot(object)
+    def _on_open_chosen(self, path: Path | None) -> None:
+        if path is None:
+            self.open_chosen()
+        else:
             self.open_path(path)
 
     @Slot(object)

@@ -33,6 +33,8 @@ class MainWindow(QMainWindow):
 
     # Qt calls some overrides from inside the base class's constructor.
     _is_ready = False
+    # True where the window began with an example because there was nothing to open.
+    is_on_example = False
 
     def __init__(self, document: PlanDocument, settings: AppSettings, parent: QWidget | None = None) -> None:
         super().__init__(parent)
@@ -103,6 +105,7 @@ class MainWindow(QMainWindow):
 
     def _begin_with_example(self) -> None:
         """Show a plan that can be changed at once instead of an empty window."""
+        self.is_on_example = True
         try:
             self.document.new_plan(new_plan("camp"))
         except (PlanFileError, OSError):

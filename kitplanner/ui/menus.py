@@ -29,11 +29,16 @@ class Item(Struct, frozen=True):
 _RULE = Item()
 
 FILE = (
+    Item("start", QT_TRANSLATE_NOOP("Menus", "&New…"), Key.New),
+    Item("examples"),
     Item("open", QT_TRANSLATE_NOOP("Menus", "&Open…"), Key.Open),
     Item("recent", QT_TRANSLATE_NOOP("Menus", "Open &recent")),
     _RULE,
     Item("save", QT_TRANSLATE_NOOP("Menus", "&Save"), Key.Save),
     Item("save_as", QT_TRANSLATE_NOOP("Menus", "Save &as…"), "Ctrl+Shift+S"),
+    _RULE,
+    Item("import", QT_TRANSLATE_NOOP("Menus", "&Import a table…")),
+    Item("export", QT_TRANSLATE_NOOP("Menus", "&Export a table…")),
     _RULE,
     Item("print_effort", QT_TRANSLATE_NOOP("Menus", "&Print effort table…"), Key.Print),
     Item("pdf_effort", QT_TRANSLATE_NOOP("Menus", "Effort table as P&DF…"), "Ctrl+Shift+P"),
@@ -44,6 +49,14 @@ EDIT = (
     Item("add", QT_TRANSLATE_NOOP("Menus", "&Add to this section"), "Ctrl+Shift+N"),
     Item("duplicate", QT_TRANSLATE_NOOP("Menus", "&Copy the chosen one"), "Ctrl+D"),
     Item("remove", QT_TRANSLATE_NOOP("Menus", "Re&move the chosen ones"), "Ctrl+Del"),
+    _RULE,
+    Item("paste", QT_TRANSLATE_NOOP("Menus", "&Paste rows…")),
+    Item("copy", QT_TRANSLATE_NOOP("Menus", "C&opy rows")),
+    Item("like", QT_TRANSLATE_NOOP("Menus", "Add several &like this…"), "Ctrl+Shift+D"),
+    Item("kinds", QT_TRANSLATE_NOOP("Menus", "Add from the list of &kinds…"), "Ctrl+Shift+K"),
+    Item("set", QT_TRANSLATE_NOOP("Menus", "Set one &field of the chosen rows…"), "Ctrl+Shift+F"),
+    Item("sort_plan", QT_TRANSLATE_NOOP("Menus", "&Sort the plan as shown")),
+    Item("filter", QT_TRANSLATE_NOOP("Menus", "F&ilter the rows"), Key.Find),
 )
 VIEW = (
     Item("next_problem", QT_TRANSLATE_NOOP("Menus", "Go to next &problem"), "F8"),
@@ -94,7 +107,7 @@ class Menus(QObject):
         self._recent.setToolTipsVisible(True)
         bar = window.menuBar()
         file_menu = bar.addMenu(translate("Menus", "&File"))
-        file_menu.addMenu(self._make_new_menu(window))
+        self._examples = self._make_new_menu(window)
         self._fill(file_menu, FILE)
         edit_menu = bar.addMenu(translate("Menus", "&Edit"))
         self._add_undo(edit_menu, stack)
@@ -133,6 +146,8 @@ class Menus(QObject):
         for item in items:
             if item is _RULE:
                 menu.addSeparator()
+            elif item.name == "examples":
+                menu.addMenu(self._examples)
             elif item.name == "recent":
                 self._recent.setTitle(translate("Menus", item.text))
                 self._recent.triggered.connect(self._on_recent)
@@ -146,10 +161,9 @@ class Menus(QObject):
                 self._actions[item.name] = action
 
     def _make_new_menu(self, window: QMainWindow) -> QMenu:
-        menu = QMenu(translate("Menus", "&New from"), window)
+        menu = QMenu(translate("Menus", "New from e&xample"), window)
         for kind, text in KINDS:
             menu.addAction(translate("Menus", text)).setData(kind)
-        menu.actions()[-1].setShortcut(QKeySequence(Key.New))
         menu.triggered.connect(self._on_new)
         self._actions["new"] = menu.menuAction()
         return menu

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import functools
 from typing import TYPE_CHECKING
 
 from PySide6.QtCore import QByteArray, Qt, Slot
@@ -19,8 +20,10 @@ from kitplanner.ui.dialogs.about import TextDialog, about_text, keys_text
 from kitplanner.ui.file_actions import FileActions
 from kitplanner.ui.focus_ring import FocusRing
 from kitplanner.ui.menus import Handler, Menus
+from kitplanner.ui.panels.section_entry import ROW_ACTIONS
 from kitplanner.ui.panels.sections_pane import SectionsPane
 from kitplanner.ui.station_chain import StationChain
+from kitplanner.ui.table_actions import TableActions
 from kitplanner.ui.view_settings import ViewSettings
 from kitplanner.ui.widgets.plain import restyle_labels
 from kitplanner.ui.widgets.recovery_band import RecoveryBand
@@ -45,6 +48,7 @@ class Workbench(QSplitter):
         self.gates = Gates(self._document, self._settings, self)
         self.autosave = Autosave(self._document, recovery_folder(), self)
         self.files = FileActions(self._document, self._settings, window)
+        self.tables = TableActions(self._document, window)
         self.sections = SectionsPane(self.editing, self.gates, self)
         self.answers = Answers(self.gates, self)
         self.recovery = RecoveryBand(window)
@@ -75,7 +79,11 @@ class Workbench(QSplitter):
         self.sections.panel.focus_table()
         self.sections.open_details()
         self.answers.load_pages()
-        self.recovery.offer(find_recovered(recovery_folder()))
+        recovered = find_recovered(recovery_folder())
+        self.recovery.offer(recovered)
+        if self._window.is_on_example and not self._settings.has_started and not recovered:
+            self._settings.has_started = True
+            self.files.offer_start()
 
     def may_close(self) -> bool:
         """Ask about unsaved changes; when the window may close, keep its state and remove the recovery file."""
@@ -101,7 +109,11 @@ class Workbench(QSplitter):
 
     def _handlers(self) -> dict[str, Handler]:
         return {
+            "start": self.files.offer_start,
             "open": self.files.open_chosen,
+            "import": self._import_table,
+            "export": self._export_table,
+            **{name: functools.partial(self._handle_rows, name) for name in ROW_ACTIONS},
             "save": self.files.save,
             "save_as": self.files.save_as,
             "print_effort": self._print_effort,
@@ -130,6 +142,7 @@ class Workbench(QSplitter):
         self.sections.section_chosen.connect(self._on_section_chosen)
         self.answers.page_chosen.connect(self._on_page_chosen)
         self.answers.page_loaded.connect(self._on_page_loaded)
+        self.tables.rows_taken.connect(self.sections.show_section)
         self.files.recent_changed.connect(self._show_recent)
         self.menus.new_requested.connect(self.files.start_new)
         self.menus.recent_requested.connect(self.files.open_path)
@@ -195,6 +208,15 @@ class Workbench(QSplitter):
     @Slot()
     def _show_recent(self) -> None:
         self.menus.show_recent(self._settings.recent_files)
+
+    def _import_table(self) -> None:
+        self.tables.import_chosen(self.sections.current)
+
+    def _export_table(self) -> None:
+        self.tables.export_chosen(self.sections.current)
+
+    def _handle_rows(self, name: str) -> None:
+        self.sections.panel.handle_rows(name)
 
     def _add(self) -> None:
         self.sections.panel.add_one()

@@ -96,6 +96,27 @@ def ask_save_path(parent: QWidget | None, suggestion: Path) -> Path | None:
     return path if path.suffix else path.with_suffix(SUFFIX)
 
 
+def ask_table_path(parent: QWidget | None, folder: Path) -> Path | None:
+    """Ask from which table to take rows."""
+    title = translate("Ask", "Import a table")
+    tables = translate("Ask", "Tables")
+    everything = translate("Ask", "All files")
+    kinds = f"{tables} (*.csv *.tsv *.txt *.xlsx *.xlsm *.xls *.ods);;{everything} (*)"
+    name, _ = QFileDialog.getOpenFileName(parent, title, str(folder), kinds)
+    return Path(name) if name else None
+
+
+def ask_export_path(parent: QWidget | None, suggestion: Path) -> Path | None:
+    """Ask where to write a table; a name without an ending gets that of the kind chosen."""
+    title = translate("Ask", "Export a table")
+    workbook = translate("Ask", "Workbook")
+    name, kind = QFileDialog.getSaveFileName(parent, title, str(suggestion), f"CSV (*.csv);;{workbook} (*.xlsx)")
+    if not name:
+        return None
+    path = Path(name)
+    return path if path.suffix else path.with_suffix(".xlsx" if "xlsx" in kind else ".csv")
+
+
 def ask_pdf_path(parent: QWidget | None, suggestion: Path) -> Path | None:
     """Ask where to write a PDF."""
     title = translate("Ask", "Save as PDF")

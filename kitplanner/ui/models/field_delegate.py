@@ -8,6 +8,7 @@ from PySide6.QtWidgets import QStyledItemDelegate, QStyleOptionViewItem, QWidget
 from kitplanner.session.field_text import default_text, label_of
 from kitplanner.ui.guard import guarded
 from kitplanner.ui.models.records_model import SPEC_ROLE, RecordsModel
+from kitplanner.ui.models.sort_filter import SortFilter
 from kitplanner.ui.widgets.editors import ChoiceEditor, LineEditor, NumberEditor, RefsEditor
 
 Index = QModelIndex | QPersistentModelIndex
@@ -39,7 +40,7 @@ class FieldDelegate(QStyledItemDelegate):
         """Show the cell's exact value (or what was typed there before)."""
         spec, model = index.data(SPEC_ROLE), index.model()
         text = str(index.data(Qt.ItemDataRole.EditRole))
-        names = model.names_for(spec) if isinstance(model, RecordsModel) else {}
+        names = model.names_for(spec) if isinstance(model, (RecordsModel, SortFilter)) else {}
         default = default_text(spec, names)
         if isinstance(editor, (ChoiceEditor, RefsEditor)):
             editor.show_text(text, default, names)

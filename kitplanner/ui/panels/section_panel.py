@@ -5,6 +5,22 @@ from __future__ import annotations
 from collections.abc import Mapping
 from typing import Any
 
+from kitplanner.plan.cautions import ShownCaution
+from kitplanner.plan.edits import Path
+from kitplanner.plan.fields import FIELDS
+from kitplanner.plan.records import Plan
+from kitplanner.session.editing import Editing
+from kitplanner.session.field_text import translate
+from kitplanner.session.new_records import singular
+from kitplanner.ui.guard import guarded
+from kitplanner.ui.models.records_model import RecordsModel
+from kitplanner.ui.models.sort_filter import SortFilter
+from kitplanner.ui.panels.cell_questions import add_questions
+from kitplanner.ui.panels.record_details import RecordDetails, make_details
+from kitplanner.ui.panels.sections import PLAN_SECTION, Section
+from kitplanner.ui.widgets.button_row import ButtonRow
+from kitplanner.ui.widgets.plain import colour_label, plain_label
+from kitplanner.ui.widgets.small_button import SmallButton
 from PySide6.QtCore import QByteArray, QItemSelectionModel, QModelIndex, Qt, Signal, Slot
 from PySide6.QtGui import QAction, QKeySequence, QResizeEvent
 from PySide6.QtWidgets import (
@@ -17,23 +33,9 @@ from PySide6.QtWidgets import (
     QWidget,
 )
 
-from kitplanner.plan.cautions import ShownCaution
-from kitplanner.plan.edits import Path
-from kitplanner.plan.fields import FIELDS
-from kitplanner.plan.records import Plan
-from kitplanner.session.editing import Editing
-from kitplanner.session.field_text import translate
-from kitplanner.session.new_records import singular
 from kitplanner.ui.dialogs.ask import ask_how_many
-from kitplanner.ui.guard import guarded
 from kitplanner.ui.models.field_delegate import FieldDelegate
-from kitplanner.ui.models.records_model import RecordsModel
-from kitplanner.ui.panels.cell_questions import add_questions
-from kitplanner.ui.panels.record_details import RecordDetails, make_details
-from kitplanner.ui.panels.sections import PLAN_SECTION, Section
-from kitplanner.ui.widgets.button_row import ButtonRow
-from kitplanner.ui.widgets.plain import colour_label, plain_label
-from kitplanner.ui.widgets.small_button import SmallButton
+from kitplanner.ui.panels.section_entry import SectionEntry
 
 _MEASURED_ROWS = 60
 # Rows of the table: squeezed to the first, as many as there are records from the second to the third, and never more
@@ -91,9 +93,7 @@ class SectionPanel(QWidget):
         """Id of the chosen record, empty without one."""
         if self.table is None:
             return ""
-        index = self.table.currentIndex()
-        records = self._model.records
-        return records[index.row()].id if index.isValid() and index.row() < len(records) else ""
+        return self._view.id_at(self.table.currentIndex().row())
 
     @property
     def details(self) -> RecordDetails:
@@ -123,6 +123,7 @@ class SectionPanel(QWidget):
         if before is not plan or not same_problems:
             self._show_details()
         self._hint.setVisible(not records)
+        self.entry.refresh()
         self._share_height()
 
     def show_cautions(self, cautions: tuple[ShownCaution, ...]) -> None:
@@ -138,10 +139,11 @@ class SectionPanel(QWidget):
 
     def choose(self, record_id: str) -> bool:
         """Choose a record; False when it is not there."""
-        row = self._model.row_of(record_id) if self.table is not None else -1
-        if row < 0 or self.table is None:
+        if self.table is None or self._model.row_of(record_id) < 0:
             return False
-        self._select_row(row)
+        if self._view.row_of(record_id) < 0:
+            self.entry.show_all()
+        self._select_row(self._view.row_of(record_id))
         return True
 
     def focus_field(self, path: Path) -> bool:
@@ -177,18 +179,23 @@ class SectionPanel(QWidget):
         """Remove the selected records."""
         if self.table is None:
             return
-        rows = sorted({index.row() for index in self.table.selectionModel().selectedIndexes()})
-        records = self._model.records
-        ids = tuple(records[row].id for row in rows if row < len(records))
-        if ids and self._editing.remove(self.section.key, ids) is None and self._model.rowCount():
-            self._select_row(min(rows[0], self._model.rowCount() - 1))
+        ids = self.entry.ids()
+        row = self._view.row_of(ids[0]) if ids else -1
+        if ids and self._editing.remove(self.section.key, ids) is None and self._view.rowCount():
+            self._select_row(min(row, self._view.rowCount() - 1))
+
+    def handle_rows(self, name: str) -> None:
+        """Do one of the things with rows that the Edit menu offers, where this section has it."""
+        if self.table is not None and self.entry.action(name).isVisible():
+            self.entry.action(name).trigger()
 
     def _build_table(self) -> None:
         columns = tuple(spec for spec in FIELDS[self.section.kind] if spec.column)
         title = translate("Sections", self.section.title)
         self._model = RecordsModel((self.section.key,), columns, self._editing, self)
         self.table = QTableView(self)
-        self.table.setModel(self._model)
+        self._view = SortFilter(self._model, self.section.key, self._editing, self)
+        self.table.setModel(self._view)
         self.table.setItemDelegate(FieldDelegate(self.table))
         self.table.setAccessibleName(title)
         self.table.setSelectionBehavior(QAbstractItemView.SelectionBehavior.SelectRows)
@@ -210,6 +217,9 @@ class SectionPanel(QWidget):
         remove.setShortcutContext(Qt.ShortcutContext.WidgetShortcut)
         remove.triggered.connect(self.remove_chosen)
         self.table.addAction(remove)
+        self.entry = SectionEntry(self.section.key, self._editing, self.table, self._view, self)
+        self.entry.added.connect(self._on_added)
+        self.entry.order_changed.connect(self._show_details)
         add_questions(self.table, self._editing)
         self.table.setContextMenuPolicy(Qt.ContextMenuPolicy.ActionsContextMenu)
         self._hint = plain_label(translate("Sections", self.section.hint), wrap=True)
@@ -221,6 +231,7 @@ class SectionPanel(QWidget):
         self._button_row = self._build_buttons()
         layout.addWidget(self._hint)
         layout.addWidget(self._button_row)
+        layout.addWidget(self.entry)
         layout.addWidget(self.table, 1)
         self._splitter = QSplitter(Qt.Orientation.Vertical, self)
         self._splitter.setChildrenCollapsible(False)
@@ -245,6 +256,9 @@ class SectionPanel(QWidget):
             button.setToolTip(help_.format(what=word))
             button.clicked.connect(slot)
             self._buttons[name] = button
+        more = self._buttons["more"] = SmallButton(self.tr("More"), self)
+        more.setAccessibleName(self.tr("More to do with rows: {what}").format(what=word))
+        more.setMenu(self.entry.menu)
         return ButtonRow(tuple(self._buttons.values()), self)
 
     def _fit_rows(self) -> None:
@@ -277,6 +291,7 @@ class SectionPanel(QWidget):
             return
         whole = self._splitter.height()
         others = self._button_row.sizeHint().height() + 8 + (self._hint.height() if self._hint.isVisible() else 0)
+        others += 0 if self.entry.isHidden() else self.entry.sizeHint().height() + 4
         count = self._model.rowCount()
         wanted = others + self._table_height(max(_FEW_TABLE_ROWS, min(count, _MOST_TABLE_ROWS)))
         fair = others + self._table_height(min(max(_FEW_TABLE_ROWS, count), _FAIR_TABLE_ROWS))
@@ -312,7 +327,7 @@ class SectionPanel(QWidget):
             self.details.show_cautions(self._cautions)
         for name in ("duplicate", "remove", "up", "down"):
             if name in self._buttons:
-                self._buttons[name].setEnabled(has_record)
+                self._buttons[name].setEnabled(has_record and (self._view.is_plan or name not in ("up", "down")))
         return has_record
 
     def _chosen_after_adding(self, ids: tuple[str, ...]) -> None:
@@ -348,6 +363,11 @@ class SectionPanel(QWidget):
         if self.current_id:
             self._chosen_after_adding(self._editing.duplicate(self.section.key, self.current_id))
 
+    @Slot(object)
+    def _on_added(self, ids: tuple[str, ...]) -> None:
+        if ids and self.choose(ids[0]) and self.table is not None:
+            self.table.setFocus(Qt.FocusReason.OtherFocusReason)
+
     @Slot()
     def _on_up(self) -> None:
         self._move(-1)
@@ -359,13 +379,13 @@ class SectionPanel(QWidget):
     def _move(self, steps: int) -> None:
         chosen = self.current_id
         if chosen and self._editing.move((self.section.key, chosen), steps) is None:
-            self._select_row(self._model.row_of(chosen))
+            self._select_row(self._view.row_of(chosen))
 
     def _select_row(self, row: int) -> None:
         """Make a row the only selected one, whatever keys are held for the shortcut that led here."""
         if self.table is not None:
             flags = QItemSelectionModel.SelectionFlag.ClearAndSelect | QItemSelectionModel.SelectionFlag.Rows
-            self.table.selectionModel().setCurrentIndex(self._model.index(row, 0), flags)
+            self.table.selectionModel().setCurrentIndex(self._view.index(row, 0), flags)
 
     def recolour(self) -> None:
         """Follow the theme and the text size."""
