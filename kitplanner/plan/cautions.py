@@ -284,6 +284,7 @@ _PLACES: Mapping[str, tuple[_Rule, ...]] = MappingProxyType(
         "balance": (("C1", "inline", _has_medical), ("C10", "inline", _has_devices), ("C14", "inline", _always)),
         "rota": (("C12", "inline", _shares_charging), ("C6", "inline", _counts_minor), ("C7", "inline", _is_hot)),
         "ahead": (("C13", "inline", _has_devices),),
+        "matters": (("C14", "inline", _always),),
         "bench": (("C8", "gate", _always), ("C4", "inline", _has_pedals)),
         "log": (("C7", "inline", _is_hot),),
         "about": (("C14", "inline", _always),),

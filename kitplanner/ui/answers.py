@@ -30,6 +30,12 @@ def _balance_page() -> QWidget:
     return BalancePage()
 
 
+def _matters_page() -> QWidget:
+    from kitplanner.ui.pages.matters_panel import MattersPage  # asked for after the window's first picture
+
+    return MattersPage()
+
+
 def _rota_page() -> QWidget:
     from kitplanner.ui.pages.rota_page import RotaPage  # a large page: loads after the window's first picture
 
@@ -54,6 +60,7 @@ PAGES: tuple[PageEntry, ...] = (
     PageEntry("effort", QT_TRANSLATE_NOOP("Answers", "Effort"), _effort_page),
     PageEntry("balance", QT_TRANSLATE_NOOP("Answers", "Balance"), _balance_page),
     PageEntry("rota", QT_TRANSLATE_NOOP("Answers", "Rota"), _rota_page),
+    PageEntry("matters", QT_TRANSLATE_NOOP("Answers", "What matters"), _matters_page),
     PageEntry("bench", QT_TRANSLATE_NOOP("Answers", "Bench"), _bench_page),
 )
 

@@ -34,6 +34,8 @@ FILE = (
     Item("open", QT_TRANSLATE_NOOP("Menus", "&Open…"), Key.Open),
     Item("recent", QT_TRANSLATE_NOOP("Menus", "Open &recent")),
     _RULE,
+    Item("compare", QT_TRANSLATE_NOOP("Menus", "Co&mpare with…")),
+    _RULE,
     Item("save", QT_TRANSLATE_NOOP("Menus", "&Save"), Key.Save),
     Item("save_as", QT_TRANSLATE_NOOP("Menus", "Save &as…"), "Ctrl+Shift+S"),
     _RULE,
@@ -62,9 +64,17 @@ VIEW = (
     Item("next_problem", QT_TRANSLATE_NOOP("Menus", "Go to next &problem"), "F8"),
     Item("to_table", QT_TRANSLATE_NOOP("Menus", "Go to &table"), "F6"),
     Item("to_line", QT_TRANSLATE_NOOP("Menus", "Go to &energy line"), "F7"),
+    _RULE,
+    Item("problems", QT_TRANSLATE_NOOP("Menus", "All pro&blems…"), "Shift+F8"),
+    Item("ready", QT_TRANSLATE_NOOP("Menus", "Be &ready…"), "Ctrl+B"),
+    Item("privacy", QT_TRANSLATE_NOOP("Menus", "&What is stored about people…")),
 )
 HELP = (
-    Item("keys", QT_TRANSLATE_NOOP("Menus", "&Keys"), Key.HelpContents),
+    Item("help", QT_TRANSLATE_NOOP("Menus", "&Help"), Key.HelpContents),
+    Item("where_from", QT_TRANSLATE_NOOP("Menus", "&Where does this come from?"), "Shift+F1"),
+    Item("meaning", QT_TRANSLATE_NOOP("Menus", "What does this &mean?"), "Ctrl+F1"),
+    _RULE,
+    Item("keys", QT_TRANSLATE_NOOP("Menus", "&Keys")),
     Item("about", QT_TRANSLATE_NOOP("Menus", "&About")),
 )
 KINDS = (

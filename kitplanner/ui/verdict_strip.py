@@ -5,20 +5,21 @@ An unmet evening guarantee is its first line.
 
 from __future__ import annotations
 
-from PySide6.QtCore import QEvent, QPointF, QRectF, QSize, Qt
+from PySide6.QtCore import QEvent, QPointF, QRectF, QSize, Qt, Signal, Slot
 from PySide6.QtGui import QColor, QPainter, QPainterPath, QPaintEvent, QPalette, QPen, QResizeEvent
-from PySide6.QtWidgets import QBoxLayout, QFrame, QSizePolicy, QVBoxLayout, QWidget
+from PySide6.QtWidgets import QBoxLayout, QFrame, QHBoxLayout, QSizePolicy, QVBoxLayout, QWidget
 
 from kitplanner.plan.records import Device, Plan
 from kitplanner.planners.pipeline import Results
 from kitplanner.planners.results import BalanceResult, EffortRow, Verdict
+from kitplanner.report.wording import counted, plain, sentence
 from kitplanner.report.wording import minutes as minutes_words
-from kitplanner.report.wording import plain, sentence
 from kitplanner.report.wording_balance import evening_sentence, medical_sentence, verdict_sentence, verdict_words
 from kitplanner.report.wording_effort import range_words
 from kitplanner.ui.guard import guarded
 from kitplanner.ui.theme import TypeSize, colours, text_scale, type_font
 from kitplanner.ui.widgets.plain import plain_label, restyle_labels
+from kitplanner.ui.widgets.small_button import SmallButton
 
 
 def phone_row(plan: Plan, results: Results) -> tuple[Device, EffortRow] | None:
@@ -112,8 +113,21 @@ class VerdictSign(QWidget):
 
 
 class VerdictStrip(QFrame):
-    """The strip at the bottom of the window."""
+    """The strip at the bottom of the window.
 
+    Signals
+    -------
+    where_requested(button: QWidget)
+        The user asks where the strip's numbers come from.
+    ready_requested()
+        The user wants the lists for before, in and after an outage.
+    problems_requested()
+        The user wants the plan's problems.
+    """
+
+    where_requested = Signal(QWidget)
+    ready_requested = Signal()
+    problems_requested = Signal()
     ready = False
 
     def __init__(self, parent: QWidget | None = None) -> None:
@@ -127,23 +141,66 @@ class VerdictStrip(QFrame):
         self.detail = plain_label(wrap=True)
         self.phone = plain_label(wrap=True)
         self.medical = plain_label(wrap=True, size="small")
+        self.where = SmallButton(self.tr("Why…"))
+        self.be_ready = SmallButton(self.tr("Be ready…"))
+        self.problems = SmallButton("")
         self._said = ("", "")
         self._row = QBoxLayout(QBoxLayout.Direction.LeftToRight)
         self._row.setSpacing(14)
         self._row.addWidget(self.sign, 0, Qt.AlignmentFlag.AlignVCenter)
         self._row.addWidget(self.verdict)
-        self._row.addWidget(self.detail, 3)
-        self._row.addWidget(self.phone, 2)
+        self._row.addWidget(self.detail, 11)
+        self._row.addWidget(self.phone, 10)
+        self._buttons = self._make_buttons()
+        self._foot = QHBoxLayout()
+        self._row.addWidget(self._buttons)
+        self._foot.addWidget(self.medical, 1)
         layout = QVBoxLayout(self)
         layout.setContentsMargins(14, 7, 14, 7)
         layout.setSpacing(3)
         layout.addWidget(self.evening)
         layout.addLayout(self._row)
-        layout.addWidget(self.medical)
+        layout.addLayout(self._foot)
         self.setSizePolicy(QSizePolicy.Policy.Expanding, QSizePolicy.Policy.Maximum)
         self.ready = True
         self._colour()
         self.set_answers(Plan(), None)
+
+    def _make_buttons(self) -> QWidget:
+        box = QWidget(self)
+        line = QHBoxLayout(box)
+        line.setContentsMargins(0, 0, 0, 0)
+        line.setSpacing(5)
+        for button, help_, slot in (
+            (self.problems, self.tr("List the problems of the plan, each with a way to its field"), self._on_problems),
+            (self.where, self.tr("Where do these numbers come from?"), self._on_where),
+            (self.be_ready, self.tr("Warning received, dark hours, power is back, closing down"), self._on_ready),
+        ):
+            button.setToolTip(help_)
+            button.setAccessibleDescription(help_)
+            button.clicked.connect(slot)
+            line.addWidget(button, 0, Qt.AlignmentFlag.AlignVCenter)
+        return box
+
+    @Slot()
+    def _on_problems(self) -> None:
+        self.problems_requested.emit()
+
+    @Slot()
+    def _on_where(self) -> None:
+        self.where_requested.emit(self.where)
+
+    @Slot()
+    def _on_ready(self) -> None:
+        self.ready_requested.emit()
+
+    def _show_problems(self, results: Results | None) -> None:
+        wrong = [one for one in results.problems if one.severity != "note"] if results is not None else []
+        self.problems.setText(f"⚠ {counted(len(wrong), self.tr('problem'), self.tr('problems'))}…")
+        self.problems.setVisible(bool(wrong))
+        has_answer = results is not None and results.balance is not None and not results.has_errors
+        self.where.setVisible(has_answer)
+        self.be_ready.setVisible(has_answer)
 
     def set_answers(self, plan: Plan, results: Results | None) -> None:
         """Show the verdict of a plan."""
@@ -155,6 +212,7 @@ class VerdictStrip(QFrame):
             self._show(None, self.tr("No answer yet"), self.tr("The plan is being worked out."))
         else:
             self._show_balance(plan, balance)
+        self._show_problems(results)
         evening = evening_sentence(plan, balance) if balance is not None else ""
         self._line(self.evening, f"! {evening}" if evening else "")
         self._line(self.medical, medical_sentence(plan))
@@ -188,6 +246,8 @@ class VerdictStrip(QFrame):
         direction = QBoxLayout.Direction.LeftToRight if wide else QBoxLayout.Direction.TopToBottom
         if self._row.direction() != direction:
             self._row.setDirection(direction)
+            # In a narrow window the buttons share the last line with the medical sentence.
+            (self._row if wide else self._foot).addWidget(self._buttons)
         self._row.setSpacing(14 if wide else 2)
         self.sign.setVisible(wide)
         self.verdict.setVisible(wide)

@@ -23,6 +23,7 @@ from kitplanner.ui.menus import Handler, Menus
 from kitplanner.ui.panels.section_entry import ROW_ACTIONS
 from kitplanner.ui.panels.sections_pane import SectionsPane
 from kitplanner.ui.station_chain import StationChain
+from kitplanner.ui.understanding import Understanding
 from kitplanner.ui.table_actions import TableActions
 from kitplanner.ui.view_settings import ViewSettings
 from kitplanner.ui.widgets.plain import restyle_labels
@@ -55,6 +56,7 @@ class Workbench(QSplitter):
         self.focus_ring = FocusRing(window)
         self.chain = StationChain(window.energy_line, self)
         self.view = ViewSettings(self._settings, self)
+        self.understanding = Understanding(window, self)
         self.menus = Menus(window, self._document.stack, self._handlers())
         self.setChildrenCollapsible(False)
         self.addWidget(self.sections)
@@ -125,6 +127,7 @@ class Workbench(QSplitter):
             "next_problem": self.sections.go_to_next_problem,
             "to_table": self._focus_table,
             "to_line": self._window.energy_line.setFocus,
+            **self.understanding.handlers(),
             "keys": self._show_keys,
             "about": self._show_about,
         }
@@ -161,6 +164,7 @@ class Workbench(QSplitter):
     def _on_results_changed(self, results: Results) -> None:
         self.sections.show_problems(results.problems)
         self.answers.set_answers(results.plan, results)
+        self.understanding.set_answers(results)
         self.chain.refresh(results.plan)
 
     @Slot(str)
@@ -191,6 +195,7 @@ class Workbench(QSplitter):
     @Slot(str)
     def _on_page_loaded(self, key: str) -> None:
         page = self.answers.page(key)
+        self.understanding.watch_page(key, page)
         if hasattr(page, "point_changed"):
             page.point_changed.connect(self.chain.show_point)
         if hasattr(page, "edit_requested"):
