@@ -5,22 +5,6 @@ from __future__ import annotations
 from collections.abc import Mapping
 from typing import Any
 
-from kitplanner.plan.cautions import ShownCaution
-from kitplanner.plan.edits import Path
-from kitplanner.plan.fields import FIELDS
-from kitplanner.plan.records import Plan
-from kitplanner.session.editing import Editing
-from kitplanner.session.field_text import translate
-from kitplanner.session.new_records import singular
-from kitplanner.ui.guard import guarded
-from kitplanner.ui.models.records_model import RecordsModel
-from kitplanner.ui.models.sort_filter import SortFilter
-from kitplanner.ui.panels.cell_questions import add_questions
-from kitplanner.ui.panels.record_details import RecordDetails, make_details
-from kitplanner.ui.panels.sections import PLAN_SECTION, Section
-from kitplanner.ui.widgets.button_row import ButtonRow
-from kitplanner.ui.widgets.plain import colour_label, plain_label
-from kitplanner.ui.widgets.small_button import SmallButton
 from PySide6.QtCore import QByteArray, QItemSelectionModel, QModelIndex, Qt, Signal, Slot
 from PySide6.QtGui import QAction, QKeySequence, QResizeEvent
 from PySide6.QtWidgets import (
@@ -33,9 +17,25 @@ from PySide6.QtWidgets import (
     QWidget,
 )
 
+from kitplanner.plan.cautions import ShownCaution
+from kitplanner.plan.edits import Path
+from kitplanner.plan.fields import FIELDS
+from kitplanner.plan.records import Plan
+from kitplanner.session.editing import Editing
+from kitplanner.session.field_text import translate
+from kitplanner.session.new_records import singular
 from kitplanner.ui.dialogs.ask import ask_how_many
+from kitplanner.ui.guard import guarded
 from kitplanner.ui.models.field_delegate import FieldDelegate
+from kitplanner.ui.models.records_model import RecordsModel
+from kitplanner.ui.models.sort_filter import SortFilter
+from kitplanner.ui.panels.cell_questions import add_questions
+from kitplanner.ui.panels.record_details import RecordDetails, make_details
 from kitplanner.ui.panels.section_entry import SectionEntry
+from kitplanner.ui.panels.sections import PLAN_SECTION, Section
+from kitplanner.ui.widgets.button_row import ButtonRow
+from kitplanner.ui.widgets.plain import colour_label, plain_label
+from kitplanner.ui.widgets.small_button import SmallButton
 
 _MEASURED_ROWS = 60
 # Rows of the table: squeezed to the first, as many as there are records from the second to the third, and never more
