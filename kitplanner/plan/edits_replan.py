@@ -6,9 +6,11 @@ no part of the plan.
 
 from __future__ import annotations
 
+import math
+
 from msgspec import field, structs
 
-from kitplanner.domain.units import clock
+from kitplanner.domain.units import clock, minutes_of_day
 from kitplanner.plan.edits import Edit, EditError, chain, get_value, new_id, set_value
 from kitplanner.plan.records import Person, Plan, Record, Rota, Spell, Station, TemperaturePart
 
@@ -42,8 +44,24 @@ class Now(Record, frozen=True):
     air_degc: float | None = None
 
 
+def grid_of(rota: Rota) -> int:
+    """Return the grid on which every bout of a rota stands: its own, finer where bouts were moved by hand [min].
+
+    Examples
+    --------
+    >>> from kitplanner.plan.records import Bout
+    >>> moved = Bout(id="b", day=1, start="09:02", end="09:22", station="s", person="p")
+    >>> grid_of(Rota(id="r", slot_min=10, bouts=(moved,)))
+    2
+    """
+    edges = (int(minutes_of_day(edge)) for bout in rota.bouts for edge in (bout.start, bout.end))
+    return math.gcd(rota.slot_min, DAY_MIN, *edges)
+
+
 def events_edit(now: Now) -> Edit:
     """Return the edit that enters what has happened: absences, outages, and heat with its limits switched on.
+
+    All of it holds from the end of the rota's slot that has begun by now: that slot is past, and who turned in it did.
 
     Raises
     ------
@@ -59,11 +77,12 @@ def events_edit(now: Now) -> Edit:
 
     def edit(plan: Plan) -> Plan:
         _require_inside(plan, now)
-        edits = [_away(person, now, now.day) for person in now.absent if person not in now.gone]
-        edits += [_away(person, now, plan.days) for person in now.gone]
-        edits += [_out(out, now) for out in now.stations_out]
+        since = _slot_end(plan.rota, now)
+        edits = [_away(person, since, now.day) for person in now.absent if person not in now.gone]
+        edits += [_away(person, since, plan.days) for person in now.gone]
+        edits += [_out(out, since) for out in now.stations_out]
         if now.air_degc is not None:
-            edits.append(_heat(now, now.air_degc))
+            edits.append(_heat(since, now.air_degc))
         return chain(*edits)(plan)
 
     return edit
@@ -87,23 +106,30 @@ def _require_inside(plan: Plan, now: Now) -> None:
             )
 
 
-def _spells(now: Now, last_day: int, count: int = 1) -> tuple[Spell, ...]:
-    """Return the rest of today and the whole of each later day up to a last one."""
-    today = Spell(day=now.day, start=clock(now.minute), end="24:00", count=count)
-    later = (Spell(day=day, start="00:00", end="24:00", count=count) for day in range(now.day + 1, last_day + 1))
-    return (today, *later)
+def _slot_end(rota: Rota | None, now: Now) -> Now:
+    """Return the moment at which the slot that has begun by now ends; now itself without a rota."""
+    slot_min = grid_of(rota) if rota is not None else 1
+    return structs.replace(now, minute=-(-now.minute // slot_min) * slot_min)
 
 
-def _away(person_id: str, now: Now, last_day: int) -> Edit:
+def _spells(since: Now, last_day: int, count: int = 1) -> tuple[Spell, ...]:
+    """Return the rest of today, where any is left, and the whole of each later day up to a last one."""
+    whole = (Spell(day=day, start="00:00", end="24:00", count=count) for day in range(since.day + 1, last_day + 1))
+    if since.minute >= DAY_MIN:
+        return tuple(whole)
+    return (Spell(day=since.day, start=clock(since.minute), end="24:00", count=count), *whole)
+
+
+def _away(person_id: str, since: Now, last_day: int) -> Edit:
     def edit(plan: Plan) -> Plan:
         person: Person = get_value(plan, ("people", person_id))
-        absences = (*person.absences, *_spells(now, last_day))
+        absences = (*person.absences, *_spells(since, last_day))
         return set_value(("people", person_id, "absences"), absences)(plan)
 
     return edit
 
 
-def _out(out: StationOut, now: Now) -> Edit:
+def _out(out: StationOut, since: Now) -> Edit:
     def edit(plan: Plan) -> Plan:
         station: Station = get_value(plan, ("stations", out.station))
         if not 1 <= out.units <= station.count:
@@ -112,20 +138,22 @@ def _out(out: StationOut, now: Now) -> Edit:
                 f"{out.units} units cannot be out of {station.count}",
                 "enter how many are out",
             )
-        last = now.day if out.last_day is None else min(out.last_day, plan.days)
-        outages = (*station.outages, *_spells(now, last, out.units))
+        last = since.day if out.last_day is None else min(out.last_day, plan.days)
+        outages = (*station.outages, *_spells(since, last, out.units))
         return set_value(("stations", out.station, "outages"), outages)(plan)
 
     return edit
 
 
-def _heat(now: Now, air_degc: float) -> Edit:
+def _heat(since: Now, air_degc: float) -> Edit:
     def edit(plan: Plan) -> Plan:
+        if since.minute >= DAY_MIN:
+            return plan
         part = TemperaturePart(
             id=new_id(plan, ("conditions", "temperatures")),
-            name=f"Day {now.day} from {clock(now.minute)}",
-            day=now.day,
-            start=clock(now.minute),
+            name=f"Day {since.day} from {clock(since.minute)}",
+            day=since.day,
+            start=clock(since.minute),
             end="24:00",
             air_degc=float(air_degc),
         )

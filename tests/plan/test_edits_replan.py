@@ -5,13 +5,14 @@ from __future__ import annotations
 import doctest
 
 import pytest
+from msgspec import structs
 
 from kitplanner.plan import edits_replan
 from kitplanner.plan.checks import check, has_errors
 from kitplanner.plan.edits import EditError
 from kitplanner.plan.edits_replan import Now, StationOut, events_edit
 from kitplanner.plan.files import read_plan
-from kitplanner.plan.records import Spell
+from kitplanner.plan.records import Rota, Spell
 from kitplanner.plan.shipped import demo
 
 
@@ -34,6 +35,24 @@ def test_absent_is_for_the_rest_of_today_and_gone_for_good(camp):
     assert person(plan, "L3").absences == (Spell(day=2, start="12:05", end="24:00"), Spell(day=3))
     assert person(plan, "L2") is person(camp, "L2")
     assert not has_errors(check(plan))
+
+
+def test_what_happens_holds_from_the_end_of_the_slot_that_has_begun(camp):
+    plan = structs.replace(camp, rota=Rota(id="rota", slot_min=5))
+    now = Now(day=2, minute=723, absent=("L1",), stations_out=(StationOut(station="B-S1"),), air_degc=33)
+    after = events_edit(now)(plan)
+    assert person(after, "L1").absences[0].start == "12:05"
+    assert next(each for each in after.stations if each.id == "B-S1").outages[0].start == "12:05"
+    assert after.conditions.temperatures[-1].start == "12:05"
+
+
+def test_in_the_last_slot_nothing_is_left_of_today(camp):
+    plan = structs.replace(camp, rota=Rota(id="rota", slot_min=5))
+    after = events_edit(Now(day=2, minute=1438, absent=("L1",), gone=("L3",), air_degc=33))(plan)
+    assert person(after, "L1").absences == ()
+    assert person(after, "L3").absences == (Spell(day=3),)
+    assert after.conditions.temperatures == plan.conditions.temperatures
+    assert not has_errors(check(after))
 
 
 def test_a_station_is_out_to_the_day_named(camp):

@@ -15,12 +15,12 @@ from msgspec import Struct, structs
 
 from kitplanner.domain.units import clock, minutes_of_day
 from kitplanner.plan.edits import Edit, chain
-from kitplanner.plan.edits_replan import Now, events_edit, put_rota
+from kitplanner.plan.edits_replan import Now, events_edit, grid_of, put_rota
 from kitplanner.plan.records import Bout, ChargeSpell, Plan, Rota
 from kitplanner.planners.rota.check import judge
 from kitplanner.planners.rota.draft import Draft
 from kitplanner.planners.rota.replan_fill import Filler
-from kitplanner.planners.rota.replan_now import grid_of, problem_from, shortfall_wh, spared_heat
+from kitplanner.planners.rota.replan_now import problem_from, shortfall_wh, spared_heat
 from kitplanner.planners.rota.replan_posted import Posted, place_posted
 from kitplanner.planners.rota.replan_records import PersonChange, bout_record, changes_of, turn_of
 from kitplanner.planners.rota.replan_remake import remade

@@ -2,14 +2,12 @@
 
 from __future__ import annotations
 
-import math
 from dataclasses import replace
 
 import numpy as np
 from msgspec import structs
 
 from kitplanner.domain.heat import volunteer_rule
-from kitplanner.domain.units import minutes_of_day
 from kitplanner.plan.edits_replan import Now
 from kitplanner.plan.records import Plan, Rota
 from kitplanner.planners.balance_windows import DAY_MIN
@@ -17,20 +15,6 @@ from kitplanner.planners.rota.answer import rota_bouts
 from kitplanner.planners.rota.charging import charging_table
 from kitplanner.planners.rota.problem import RotaProblem, build
 from kitplanner.planners.supply import store_wh
-
-
-def grid_of(rota: Rota) -> int:
-    """Return the grid on which every bout of a rota stands: its own, finer where bouts were moved by hand [min].
-
-    Examples
-    --------
-    >>> from kitplanner.plan.records import Bout
-    >>> moved = Bout(id="b", day=1, start="09:02", end="09:22", station="s", person="p")
-    >>> grid_of(Rota(id="r", slot_min=10, bouts=(moved,)))
-    2
-    """
-    edges = (int(minutes_of_day(edge)) for bout in rota.bouts for edge in (bout.start, bout.end))
-    return math.gcd(rota.slot_min, DAY_MIN, *edges)
 
 
 def now_slot(now: Now, slot_min: int) -> int:
