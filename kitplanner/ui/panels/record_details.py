@@ -12,6 +12,7 @@ from kitplanner.plan.edits import Path
 from kitplanner.plan.fields import FIELDS
 from kitplanner.session.editing import Editing
 from kitplanner.session.new_records import STAGE_WORDS
+from kitplanner.session.use_text import same_use_text
 from kitplanner.ui.panels.nested_list import NestedList
 from kitplanner.ui.widgets.plain import plain_label
 from kitplanner.ui.widgets.record_form import RecordForm
@@ -106,6 +107,22 @@ class StationDetails(RecordDetails):
         self._layout.addWidget(box)
 
 
+class DeviceDetails(RecordDetails):
+    """A device: its form, and the same use said in the other ways."""
+
+    def _build_more(self) -> None:
+        self.same_use = plain_label(wrap=True)
+        self.same_use.setContentsMargins(10, 0, 10, 8)
+        self._layout.addWidget(self.same_use)
+
+    def show_record(self, path: Path, record: Any, problems: Mapping[Path, str]) -> None:
+        """Show a device and what its use comes to in every way."""
+        super().show_record(path, record, problems)
+        text = same_use_text(record)
+        self.same_use.setText(text)
+        self.same_use.setVisible(bool(text))
+
+
 class ConditionsDetails(RecordDetails):
     """The plan's own fields, its conditions and the temperatures of single days."""
 
@@ -145,5 +162,5 @@ class ConditionsDetails(RecordDetails):
 
 def make_details(kind: str, editing: Editing, parent: QWidget | None = None) -> RecordDetails:
     """Make the details that fit a record kind."""
-    classes = {"station": StationDetails, "plan": ConditionsDetails}
+    classes = {"station": StationDetails, "device": DeviceDetails, "plan": ConditionsDetails}
     return classes.get(kind, RecordDetails)(kind, editing, parent)

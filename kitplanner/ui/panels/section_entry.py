@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from PySide6.QtCore import Qt, Signal, Slot
-from PySide6.QtGui import QAction, QGuiApplication, QKeySequence
+from PySide6.QtGui import QAction, QGuiApplication, QKeySequence, QShortcut
 from PySide6.QtWidgets import QAbstractItemView, QHBoxLayout, QLineEdit, QMenu, QTableView, QWidget
 
 from kitplanner.plan.catalogue_kinds import CATALOGUE_SECTIONS
@@ -44,6 +44,7 @@ class SectionEntry(QWidget):
         super().__init__(parent)
         self._section, self._editing, self._table, self._view = section, editing, table, view
         self._actions: dict[str, QAction] = {}
+        self._is_asked_for = False
         self.menu = QMenu(self)
         self.filter = QLineEdit(self)
         self.filter.setClearButtonEnabled(True)
@@ -76,7 +77,7 @@ class SectionEntry(QWidget):
     def refresh(self) -> None:
         """Show how many rows are shown and which actions have something to work on."""
         shown, every = self._view.rowCount(), self._view.sourceModel().rowCount()
-        self.setVisible(every >= _MANY_ROWS or bool(self._view.filter_text) or self.filter.hasFocus())
+        self.setVisible(every >= _MANY_ROWS or bool(self._view.filter_text) or self._is_asked_for)
         self.shown.setText(self.tr("{shown} of {all} shown").format(shown=shown, all=every))
         colour_label(self.shown, "muted" if shown == every else "ink")
         for name in ("like", "set", "copy", "copy_all"):
@@ -149,9 +150,17 @@ class SectionEntry(QWidget):
     @Slot()
     def focus_filter(self) -> None:
         """Put the keyboard into the filter."""
-        self.show()
+        self._is_asked_for = True
+        self.refresh()
         self.filter.setFocus(Qt.FocusReason.ShortcutFocusReason)
         self.filter.selectAll()
+
+    @Slot()
+    def leave_filter(self) -> None:
+        """Show all rows again and go back to the table."""
+        self._is_asked_for = False
+        self.filter.clear()
+        self._focus_table()
         self.refresh()
 
     @Slot()
@@ -211,6 +220,9 @@ class SectionEntry(QWidget):
     def _connect(self) -> None:
         self.filter.textChanged.connect(self._on_filter)
         self.filter.returnPressed.connect(self._focus_table)
+        leave = QShortcut(QKeySequence(Qt.Key.Key_Escape), self.filter)
+        leave.setContext(Qt.ShortcutContext.WidgetShortcut)
+        leave.activated.connect(self.leave_filter)
         self._view.order_changed.connect(self._on_order)
 
     def _sort_by_header(self) -> None:

@@ -131,6 +131,12 @@ def test_the_filter_counts_and_never_hides_what_is_asked_for(people, qtbot):
     assert people.panel.choose("L1")
     assert people.panel.current_id == "L1"
     assert people.entry.shown.text() == "24 of 24 shown"
+    qtbot.keyClick(people.table, Qt.Key.Key_F, Qt.KeyboardModifier.ControlModifier)
+    qtbot.keyClicks(people.entry.filter, "nobody")
+    qtbot.keyClick(people.entry.filter, Qt.Key.Key_Escape)
+    assert people.entry.isHidden()
+    assert people.panel._view.rowCount() == 24
+    assert QApplication.focusWidget() is people.table
 
 
 def test_adding_while_filtered_shows_the_new_record(people):
