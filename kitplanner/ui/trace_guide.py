@@ -14,19 +14,26 @@ from PySide6.QtWidgets import QAbstractItemView, QMenu, QWidget
 
 from kitplanner.plan.records import Plan
 from kitplanner.planners.pipeline import Results
+from kitplanner.planners.results import BenchPoint
 from kitplanner.ui.guard import guarded
 from kitplanner.ui.trace_refs import FIELD, TraceRef, ref_words
 
-MOST_OFFERED = 24
+MOST_OFFERED = 26
 
 
 class Seen(QObject):
-    """The plan and the answers that the window shows now."""
+    """The plan and the answers that the window shows now, and the point of the bench."""
 
     def __init__(self, parent: QObject | None = None) -> None:
         super().__init__(parent)
         self.plan = Plan()
         self.results: Results | None = None
+        self.point: BenchPoint | None = None
+
+    @Slot(object, str)
+    def set_point(self, point: BenchPoint | None, _name: str) -> None:
+        """Take the point that the bench shows."""
+        self.point = point
 
 
 Source = Callable[[Seen, QWidget, int], tuple[TraceRef, ...]]

@@ -25,7 +25,7 @@ from kitplanner.ui.dialogs import ask
 from kitplanner.ui.menus import Handler
 from kitplanner.ui.trace_guide import TraceGuide
 from kitplanner.ui.trace_refs import FIELD, TraceRef, ref_words, traced
-from kitplanner.ui.trace_sources import plan_refs, watch_entries, watch_page
+from kitplanner.ui.trace_sources import flow_refs, plan_refs, watch_entries, watch_page
 
 if TYPE_CHECKING:
     from kitplanner.ui.main_window import MainWindow
@@ -44,7 +44,7 @@ class Understanding(QObject):
         self.guide = TraceGuide(window)
         self.guide.trace_requested.connect(self.show_trace)
         self.guide.nothing_here.connect(self._on_nothing_here)
-        self.guide.watch(window.energy_line, plan_refs)
+        self.guide.watch(window.energy_line, flow_refs)
         self.guide.watch(window.verdict, plan_refs)
         watch_entries(self.guide)
         bench.editing.explain_requested.connect(self._on_explain)
@@ -94,7 +94,7 @@ class Understanding(QObject):
         seen = self.guide.seen
         plan = self._document.plan if ref.formula == FIELD or seen.results is None else seen.plan
         try:
-            found = traced(plan, seen.results or Results(plan=plan, problems=()), ref)
+            found = traced(plan, seen.results or Results(plan=plan, problems=()), ref, seen.point)
             name = ref_words(plan, ref)
         except (TraceError, EditError) as error:
             ask.tell(self._window, str(error))

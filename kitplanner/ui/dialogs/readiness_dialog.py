@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from msgspec import Struct
 from PySide6.QtCore import QSize, Qt, Slot
+from PySide6.QtGui import QKeySequence, QShortcut
 from PySide6.QtWidgets import QDialog, QDialogButtonBox, QScrollArea, QTabWidget, QVBoxLayout, QWidget
 
 from kitplanner.plan.fields import QT_TRANSLATE_NOOP
@@ -27,6 +28,7 @@ from kitplanner.report.wording_readiness import (
 from kitplanner.session.field_text import translate
 from kitplanner.ui.dialogs.jump_dialog import room_for
 from kitplanner.ui.dialogs.reading_table import Line, ReadingTable
+from kitplanner.ui.guard import guarded
 from kitplanner.ui.widgets.caution_note import CautionNote
 from kitplanner.ui.widgets.plain import plain_label
 
@@ -98,12 +100,28 @@ class ReadinessDialog(QDialog):
         layout.addWidget(self.tabs, 1)
         layout.addWidget(plain_label(self.tr("These lists never replace official instructions."), wrap=True))
         layout.addWidget(buttons)
+        for key, slot in ((Qt.Key.Key_PageDown, self._on_page_down), (Qt.Key.Key_PageUp, self._on_page_up)):
+            QShortcut(QKeySequence(key), self).activated.connect(slot)
         self.resize(room_for(self, 108, 34))
         self.tabs.tabBar().setFocus(Qt.FocusReason.OtherFocusReason)
 
     def text_of(self, key: str) -> str:
         """Return everything one list says: warning, dark, power_back, close_down."""
         return self._texts[key]
+
+    @Slot()
+    def _on_page_down(self) -> None:
+        self._scroll(1)
+
+    @Slot()
+    def _on_page_up(self) -> None:
+        self._scroll(-1)
+
+    def _scroll(self, pages: int) -> None:
+        area = self.tabs.currentWidget()
+        if isinstance(area, QScrollArea):
+            bar = area.verticalScrollBar()
+            bar.setValue(bar.value() + pages * bar.pageStep())
 
     def _page(self, sheet: Sheet) -> QWidget:
         page = QWidget()
@@ -128,6 +146,7 @@ class ReadinessDialog(QDialog):
         area = QScrollArea()
         area.setWidgetResizable(True)
         area.setFrameShape(QScrollArea.Shape.NoFrame)
+        area.setFocusPolicy(Qt.FocusPolicy.NoFocus)
         area.setAccessibleName(translate("Ready", sheet.title).replace("&", ""))
         area.setAccessibleDescription(self._texts[sheet.key])
         area.setWidget(page)
@@ -146,5 +165,7 @@ class SheetTable(ReadingTable):
         wanted = self.verticalHeader().length() + self.horizontalHeader().sizeHint().height() + 6
         self.setFixedHeight(min(wanted, self.fontMetrics().height() * 22))
 
-    def sizeHint(self) -> QSize:  # noqa: D102 - the base's words hold
+    @guarded(QSize(300, 120))
+    def sizeHint(self) -> QSize:
+        """Return the height of the rows."""
         return QSize(300, self.height())
