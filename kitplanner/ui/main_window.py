@@ -26,6 +26,7 @@ if TYPE_CHECKING:
 
 _FIRST_SIZE = (1280, 800)
 _SUFFIX = ".kitplan"
+_TABLES = (".csv", ".tsv", ".xlsx", ".xlsm", ".xls", ".ods")
 
 
 class MainWindow(QMainWindow):
@@ -160,17 +161,20 @@ class MainWindow(QMainWindow):
 
     @guarded()
     def dragEnterEvent(self, event: QDragEnterEvent) -> None:
-        """Take plan files dropped on the window."""
-        if _dropped_plan(event) is not None:
+        """Take plan files and tables dropped on the window."""
+        if _dropped_file(event) is not None:
             event.acceptProposedAction()
 
     @guarded()
     def dropEvent(self, event: QDropEvent) -> None:
-        """Open a dropped plan file."""
-        path = _dropped_plan(event)
+        """Open a dropped plan file, or show what the rows of a dropped table would do."""
+        path = _dropped_file(event)
         if path is not None:
             event.acceptProposedAction()
-            self.desk.files.open_path(path)
+            if path.suffix.lower() in _TABLES:
+                self.desk.tables.import_path(path, self.desk.sections.current)
+            else:
+                self.desk.files.open_path(path)
 
     @guarded()
     def closeEvent(self, event: QCloseEvent) -> None:
@@ -186,7 +190,7 @@ class MainWindow(QMainWindow):
         event.accept()
 
 
-def _dropped_plan(event: QDropEvent) -> Path | None:
-    """Return the first dropped file that may be a plan."""
+def _dropped_file(event: QDropEvent) -> Path | None:
+    """Return the first dropped file that may be a plan or a table."""
     paths = [Path(url.toLocalFile()) for url in event.mimeData().urls() if url.isLocalFile()]
-    return next((path for path in paths if path.suffix == _SUFFIX), None)
+    return next((path for path in paths if path.suffix == _SUFFIX or path.suffix.lower() in _TABLES), None)

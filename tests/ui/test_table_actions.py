@@ -1,6 +1,9 @@
 """Tables in and out of files, through the File menu."""
 
 import pytest
+from PySide6.QtCore import QMimeData, QPointF, Qt, QUrl
+from PySide6.QtGui import QDragEnterEvent, QDropEvent
+from PySide6.QtWidgets import QApplication
 
 from kitplanner.plan.exchange_tables import read_table
 from kitplanner.ui import table_actions
@@ -76,6 +79,24 @@ def test_without_the_writer_of_workbooks_the_sentence_says_what_to_install(windo
     window.findChildren(ExportDialog)[0].save.click()
     assert "spreadsheets" in told[0]
     assert not (tmp_path / "devices.xlsx").exists()
+
+
+def test_a_dropped_table_is_shown_before_it_is_taken(window, tmp_path, qtbot):
+    path = tmp_path / "people.csv"
+    path.write_text("Name,Age\nZora,31\n", encoding="utf-8")
+    before = window.document.plan
+    window.desk.sections.show_section("people")
+    data = QMimeData()
+    data.setUrls([QUrl.fromLocalFile(str(path))])
+    keys = (Qt.MouseButton.LeftButton, Qt.KeyboardModifier.NoModifier)
+    enter = QDragEnterEvent(window.rect().center(), Qt.DropAction.CopyAction, data, *keys)
+    QApplication.sendEvent(window, enter)
+    assert enter.isAccepted()
+    QApplication.sendEvent(window, QDropEvent(QPointF(5, 5), Qt.DropAction.CopyAction, data, *keys))
+    (dialog,) = window.findChildren(ImportDialog)
+    qtbot.waitUntil(lambda: dialog.seen is not None, timeout=20000)
+    assert dialog.section == "people"
+    assert window.document.plan is before
 
 
 def test_a_change_of_mind_writes_nothing(window, monkeypatch, tmp_path):

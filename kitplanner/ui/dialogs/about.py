@@ -59,6 +59,8 @@ def keys_text(bar: QMenuBar) -> str:
         if isinstance(menu, QMenu):
             lines += [plain_words(action), *_lines_of(menu, 1), ""]
     lines.append(QCoreApplication.translate("About", "In tables: F2 or typing edits, Delete removes, arrows move."))
+    lines.append(QCoreApplication.translate("About", "In tables: Ctrl+C copies rows, Ctrl+V shows copied rows first."))
+    lines.append(QCoreApplication.translate("About", "In a filter: Enter goes to the rows, Escape shows all."))
     lines.append(QCoreApplication.translate("About", "In numbers: up and down step, page keys step by ten."))
     lines.append(QCoreApplication.translate("About", "In a field: Escape gives back what was there before."))
     lines.append(
