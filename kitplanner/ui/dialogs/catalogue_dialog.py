@@ -28,7 +28,8 @@ from kitplanner.ui.dialogs.dialog_size import fair_size
 from kitplanner.ui.widgets.plain import as_tool_tip, plain_label
 
 _KEY = Qt.ItemDataRole.UserRole
-_SIZE_CHARS, _SIZE_LINES = 118, 26
+_LEAST_PX = 24
+_SIZE_CHARS, _SIZE_LINES = 136, 30
 
 
 class CatalogueDialog(QDialog):
@@ -77,7 +78,7 @@ class CatalogueDialog(QDialog):
         for kind in self._kinds.values():
             item = QListWidgetItem(translate("Catalogue", kind.name))
             item.setData(_KEY, kind.key)
-            item.setSizeHint(QSize(0, self._row_px()))
+            item.setSizeHint(self._room_for(item.text()))
             self.list.addItem(item)
         self.help = plain_label(wrap=True)
         self.values = QTreeWidget(self)
@@ -100,8 +101,10 @@ class CatalogueDialog(QDialog):
         buttons.rejected.connect(self.reject)
         self._lay_out(buttons)
 
-    def _row_px(self) -> int:
-        return max(24, self.fontMetrics().height() + 6)
+    def _room_for(self, text: str) -> QSize:
+        metrics = self.fontMetrics()
+        width = metrics.horizontalAdvance(text) + 2 * metrics.averageCharWidth()
+        return QSize(width, max(_LEAST_PX, metrics.height() + 6))
 
     def _lay_out(self, buttons: QDialogButtonBox) -> None:
         left = QVBoxLayout()
@@ -118,8 +121,8 @@ class CatalogueDialog(QDialog):
         count.addRow(self.tr("&How many"), self.count)
         right.addLayout(count)
         middle = QHBoxLayout()
-        middle.addLayout(left, 2)
-        middle.addLayout(right, 5)
+        middle.addLayout(left, 3)
+        middle.addLayout(right, 7)
         layout = QVBoxLayout(self)
         layout.addLayout(middle, 1)
         layout.addWidget(buttons)
@@ -150,11 +153,18 @@ class CatalogueDialog(QDialog):
         for spec in FIELDS[SECTION_KINDS[self._section]]:
             if spec.key in kind.values and is_shown(spec, record):
                 line = _line(spec, getattr(record, spec.key), kind)
-                line.setSizeHint(0, QSize(0, self._row_px()))
+                line.setSizeHint(0, self._room_for(line.text(0)))
                 self.values.addTopLevelItem(line)
         for column in range(4):
             self.values.resizeColumnToContents(column)
+        first = next((line for line in self._lines() if line.text(4)), None)
+        if first is not None:
+            self.values.setCurrentItem(first)
         self._show_source()
+
+    def _lines(self) -> list[QTreeWidgetItem]:
+        lines = (self.values.topLevelItem(row) for row in range(self.values.topLevelItemCount()))
+        return [line for line in lines if line is not None]
 
     @Slot()
     def _show_source(self) -> None:
