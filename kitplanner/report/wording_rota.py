@@ -77,6 +77,8 @@ def verdict_lines(plan: Plan, answer: RotaAnswer) -> tuple[str, ...]:
     if answer.solution.cut_off:
         seconds = number(answer.solution.seconds, 1)
         lines.append(f"The search was cut off after {seconds} s; with more time the rota may get better.")
+    if not answer.has_charging:
+        lines.append("The charging table was not made any more; adopt the rota and renew the table, or plan again.")
     return tuple(lines)
 
 

@@ -20,7 +20,7 @@ from PySide6.QtCore import QObject, Qt, QTimer, Signal, Slot
 
 from kitplanner.domain.units import clock
 from kitplanner.plan.edits import EditError
-from kitplanner.plan.edits_replan import Now
+from kitplanner.plan.edits_replan import DAY_MIN, Now
 from kitplanner.plan.records import ChargeSpell, Plan
 
 if TYPE_CHECKING:
@@ -131,7 +131,7 @@ def replan_rota(plan: Plan, now: Now, work: int, ask: Ask) -> Replanned:
         raise RefusedError(str(error)) from error
     rota = replanned_rota(answer)
     after = structs.replace(answer.plan, rota=rota)
-    fresh = fitting_charging(after)
+    fresh = fitting_charging(after, now, ask.cancelled)
     charging = _continued(plan.rota.charging if plan.rota else (), fresh, now)
     found = judge(after, structs.replace(rota, charging=charging))
     if any(one.person is None and one.station is None for one in found):
@@ -152,17 +152,30 @@ def _continued(past: tuple[ChargeSpell, ...], fresh: tuple[ChargeSpell, ...], no
     )
 
 
-def fitting_charging(plan: Plan) -> tuple[ChargeSpell, ...]:
-    """Return the charging table that fits the turns of the plan's rota."""
+def _nobody_stops() -> bool:
+    return False
+
+
+def fitting_charging(
+    plan: Plan, now: Now | None = None, cancelled: Callable[[], bool] = _nobody_stops
+) -> tuple[ChargeSpell, ...]:
+    """Return the charging table that fits the turns of the plan's rota, from levels read at a moment on."""
     from kitplanner.planners.rota.answer import rota_bouts, saved_rota
-    from kitplanner.planners.rota.charging import charging_table
+    from kitplanner.planners.rota.charging import StoresRead, charging_table
+    from kitplanner.planners.rota.charging_dispatch import ChargingStoppedError
     from kitplanner.planners.rota.result import RotaSolution
 
     rota = plan.rota
     if rota is None:
         return ()
     bouts = rota_bouts(plan, rota)
-    table = charging_table(plan, bouts, rota.slot_min)
+    read = None
+    if now is not None and now.store_fractions:
+        read = StoresRead(minute=(now.day - 1) * DAY_MIN + now.minute, fractions=now.store_fractions)
+    try:
+        table = charging_table(plan, bouts, rota.slot_min, read=read, cancelled=cancelled)
+    except ChargingStoppedError as error:
+        raise CancelledError from error
     solution = RotaSolution(
         slot_min=rota.slot_min,
         bouts=(),
@@ -187,7 +200,7 @@ def follow_rota(plan: Plan, ask: Ask) -> Followed | None:
     answer = answer_of_adopted(plan)
     if answer is None or ask.cancelled():
         return None
-    return Followed(plan, answer, fitting_charging(plan))
+    return Followed(plan, answer, fitting_charging(plan, None, ask.cancelled))
 
 
 def judge_rota(plan: Plan, _ask: Ask) -> Judged:

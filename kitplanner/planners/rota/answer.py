@@ -3,9 +3,11 @@
 from __future__ import annotations
 
 import math
-from collections.abc import Iterable
+import time
+from collections.abc import Callable, Iterable
 from importlib import metadata
 
+import numpy as np
 from msgspec import structs
 
 from kitplanner.domain.units import clock, minutes_of_day
@@ -13,14 +15,17 @@ from kitplanner.plan.edits import Edit
 from kitplanner.plan.records import Bout, ChargeSpell, Plan, Rota
 from kitplanner.planners.balance_windows import DAY_MIN
 from kitplanner.planners.rota.charging import ChargingResult, charging_table
+from kitplanner.planners.rota.charging_dispatch import ChargingStoppedError
 from kitplanner.planners.rota.check import judge
 from kitplanner.planners.rota.problem import build
 from kitplanner.planners.rota.result import (
+    FloatArray,
     RotaAnswer,
     RotaBout,
     RotaCharge,
     RotaObjective,
     RotaSolution,
+    StoreLevels,
     Violation,
 )
 from kitplanner.planners.rota.solver import Effort, RotaSolver, WalkAndImprove
@@ -28,6 +33,8 @@ from kitplanner.planners.rota.solver import Effort, RotaSolver, WalkAndImprove
 ROTA_ID = "rota"
 SOLVER = "walk-and-improve 1"
 _PROVED_WH = 0.0015
+# Whoever stops a search waits this long for the charging table, and no more.
+GRACE_S = 0.25
 
 
 def solver_words() -> str:
@@ -52,12 +59,45 @@ def rota_answer(plan: Plan, effort: Effort | None = None, *, solver: RotaSolver 
     RotaAnswer
         Unmet use and margin are those of the exact charging table, not the solver's own estimate.
     """
-    solution = (solver or WalkAndImprove()).solve(plan, effort or Effort())
-    return _answer(plan, solution)
+    allowed = effort or Effort()
+    solution = (solver or WalkAndImprove()).solve(plan, allowed)
+    try:
+        table = charging_table(plan, solution.bouts, solution.slot_min, cancelled=_with_grace(allowed.cancelled))
+    except ChargingStoppedError:
+        return _without_charging(plan, solution)
+    return _answer(plan, solution, table)
 
 
-def _answer(plan: Plan, solution: RotaSolution) -> RotaAnswer:
-    table = charging_table(plan, solution.bouts, solution.slot_min)
+def _with_grace(cancelled: Callable[[], bool]) -> Callable[[], bool]:
+    """Return a stop question that gives a small plan's table the time to be made."""
+    asked: list[float] = []
+
+    def over() -> bool:
+        if not cancelled():
+            return False
+        asked.append(time.monotonic())
+        return asked[-1] - asked[0] > GRACE_S
+
+    return over
+
+
+def _without_charging(plan: Plan, solution: RotaSolution) -> RotaAnswer:
+    """Return a rota whose charging table nobody waited for: unmet use and margin are the search's own figures."""
+    by_name = {row.name: row.value for row in solution.objectives}
+    nothing: FloatArray = np.zeros(0)
+    return RotaAnswer(
+        solution=structs.replace(solution, cut_off=True),
+        charging=(),
+        unmet=(),
+        unmet_wh=by_name.get("unmet", 0.0),
+        unmet_margin_wh=by_name.get("margin", 0.0),
+        levels=StoreLevels(slot_min=solution.slot_min, stores_wh={}, devices_wh={}, pooled_wh=nothing, due_wh=nothing),
+        violations=judge(plan, saved_rota(plan, solution, (), edition=1)),
+        has_charging=False,
+    )
+
+
+def _answer(plan: Plan, solution: RotaSolution, table: ChargingResult) -> RotaAnswer:
     exact_wh = {"unmet": table.unmet_wh, "margin": table.unmet_margin_wh}
     objectives = tuple(_exact(row, exact_wh[row.name]) if row.name in exact_wh else row for row in solution.objectives)
     solution = structs.replace(solution, objectives=objectives)

@@ -6,13 +6,14 @@ the station: the cautious side, and the same as in the balance.
 
 from __future__ import annotations
 
-from collections.abc import Sequence
+import functools
+from collections.abc import Callable, Mapping, Sequence
 
 import numpy as np
 from msgspec import Struct
 
 from kitplanner.domain.units import clock
-from kitplanner.plan.records import Device, Plan
+from kitplanner.plan.records import Device, Plan, Store
 from kitplanner.planners.balance_windows import DAY_MIN
 from kitplanner.planners.rota.charging_dispatch import (
     ACCEPTANCE,
@@ -21,6 +22,7 @@ from kitplanner.planners.rota.charging_dispatch import (
     NOT_ATTENDED,
     OUTLETS,
     Dispatch,
+    Reading,
     dispatch,
 )
 from kitplanner.planners.rota.charging_inputs import ChargingInputs, charging_inputs
@@ -37,6 +39,13 @@ REASONS = {
 }
 # Less than this is rounding.
 _LEAST_WH = 1e-6
+
+
+class StoresRead(Struct, frozen=True, kw_only=True):
+    """States of charge read at stores at a minute since day 1, 00:00; more than planned counts as planned."""
+
+    minute: int
+    fractions: Mapping[str, float]
 
 
 class EveningMiss(Struct, frozen=True, kw_only=True):
@@ -64,7 +73,18 @@ class ChargingResult(Struct, frozen=True, kw_only=True):
     levels: StoreLevels
 
 
-def charging_table(plan: Plan, bouts: Sequence[RotaBout], slot_min: int) -> ChargingResult:
+def _nobody_stops() -> bool:
+    return False
+
+
+def charging_table(
+    plan: Plan,
+    bouts: Sequence[RotaBout],
+    slot_min: int,
+    *,
+    read: StoresRead | None = None,
+    cancelled: Callable[[], bool] = _nobody_stops,
+) -> ChargingResult:
     """Return the charging table of a plan's bouts.
 
     Parameters
@@ -75,19 +95,30 @@ def charging_table(plan: Plan, bouts: Sequence[RotaBout], slot_min: int) -> Char
         Bouts with their energy at S.
     slot_min : int
         The rota's grid, a divisor of a day [min].
+    read : StoresRead, optional
+        What stores really held at a moment; the table goes on from there.
+    cancelled : callable
+        Asked again and again whether anybody waits still.
 
     Returns
     -------
     ChargingResult
         Rows, unserved use, levels.
+
+    Raises
+    ------
+    ChargingStoppedError
+        Nobody waits any more.
     """
+    reading = _reading(plan, read, slot_min) if read is not None else None
+    run = functools.partial(dispatch, is_shared=plan.cut == "shared", reading=reading, cancelled=cancelled)
     inputs = charging_inputs(plan, bouts, slot_min, 1.0)
-    done = dispatch(inputs, is_shared=plan.cut == "shared")
+    done = run(inputs)
     unmet_wh = _whole(done)
     unmet_margin_wh = 0.0
     if plan.margin_fraction > 0.0:
         careful = charging_inputs(plan, bouts, slot_min, 1.0 + plan.margin_fraction)
-        unmet_margin_wh = max(0.0, _whole(dispatch(careful, is_shared=plan.cut == "shared")) - unmet_wh)
+        unmet_margin_wh = max(0.0, _whole(run(careful)) - unmet_wh)
     return ChargingResult(
         evening=_evenings(plan, inputs, done),
         charging=rows_of(plan.devices, done, slot_min, has_stores=bool(plan.stores)),
@@ -97,6 +128,18 @@ def charging_table(plan: Plan, bouts: Sequence[RotaBout], slot_min: int) -> Char
         wasted_wh=done.wasted_wh,
         levels=_levels(plan, done, slot_min),
     )
+
+
+def _reading(plan: Plan, read: StoresRead, slot_min: int) -> Reading:
+    """Return levels read as energy above the floor, at the start of the slot of their minute."""
+
+    def above_wh(store: Store) -> float | None:
+        if store.id not in read.fractions:
+            return None
+        capacity = store.count * store.nominal_wh * store.health_fraction
+        return capacity * max(0.0, read.fractions[store.id] - store.floor_fraction)
+
+    return Reading(read.minute // slot_min, tuple(above_wh(store) for store in plan.stores))
 
 
 def _whole(done: Dispatch) -> float:

@@ -6,6 +6,7 @@ taken from the device's own battery or, without one, from the stores.
 
 from __future__ import annotations
 
+from collections.abc import Callable
 from dataclasses import dataclass
 
 import numpy as np
@@ -25,6 +26,21 @@ OVERFLOW_MISSING_FRACTION = 0.05
 # Needs are told apart in steps of two hours, so that lines do not change places at every slot.
 NEED_STEP_MIN = 120
 _NOTHING_WH = 1e-9
+
+
+_ASK_EVERY_SLOTS = 16
+
+
+class ChargingStoppedError(RuntimeError):
+    """Nobody waits for the charging table any more."""
+
+
+@dataclass(frozen=True, slots=True)
+class Reading:
+    """What the stores really held at the start of a slot: cells' energy above the floor [Wh at B], None: not read."""
+
+    slot: int
+    level_wh: tuple[float | None, ...]
 
 
 @dataclass(frozen=True, slots=True)
@@ -56,7 +72,13 @@ class Dispatch:
     wasted_wh: float
 
 
-def dispatch(inputs: ChargingInputs, *, is_shared: bool) -> Dispatch:
+def dispatch(
+    inputs: ChargingInputs,
+    *,
+    is_shared: bool,
+    reading: Reading | None = None,
+    cancelled: Callable[[], bool] = lambda: False,
+) -> Dispatch:
     """Return the dispatch of a plan's charging.
 
     Parameters
@@ -65,13 +87,29 @@ def dispatch(inputs: ChargingInputs, *, is_shared: bool) -> Dispatch:
         The plan and its bouts as arrays.
     is_shared : bool
         True where all lines are cut alike, set anew each day; else better classes are served first.
+    reading : Reading, optional
+        Levels of stores read at a moment; they hold from there on.
+    cancelled : callable
+        Asked every few slots whether anybody waits still.
 
     Returns
     -------
     Dispatch
         Every slot.
+
+    Raises
+    ------
+    ChargingStoppedError
+        Nobody waits any more.
     """
-    return _Run(inputs, is_shared=is_shared).all_slots()
+    run = _Run(inputs, is_shared=is_shared)
+    for slot in range(inputs.slots):
+        if slot % _ASK_EVERY_SLOTS == 0 and cancelled():
+            raise ChargingStoppedError
+        if reading is not None and slot == reading.slot:
+            run.read(reading)
+        run.one_slot(slot)
+    return run.done()
 
 
 class _Run:
@@ -100,16 +138,27 @@ class _Run:
         self.device_wh = np.zeros((shape[0], shape[1] + 1))
         self.store_wh = np.zeros((len(inputs.start_wh), shape[1] + 1))
 
-    def all_slots(self) -> Dispatch:
         self._note_levels(0)
-        for slot in range(self.inputs.slots):
-            if self.is_shared and slot % self.inputs.per_day == 0:
-                self.ahead.share_out(slot, self.stores.outlet_wh(), self._headroom())
-            self.stores.fill(self.inputs.feeds, slot)
-            self._serve(slot)
-            self._use(slot)
-            self.stores.close()
-            self._note_levels(slot + 1)
+
+    def read(self, reading: Reading) -> None:
+        """Go on with what the stores really hold; cuts shared for the day are shared anew."""
+        self.stores.read(reading.level_wh)
+        self._note_levels(reading.slot)
+        if self.is_shared:
+            self.ahead.share_out(reading.slot, self.stores.outlet_wh(), self._headroom())
+
+    def one_slot(self, slot: int) -> None:
+        """Take in what arrives, give to those on charge, take what is used."""
+        if self.is_shared and slot % self.inputs.per_day == 0:
+            self.ahead.share_out(slot, self.stores.outlet_wh(), self._headroom())
+        self.stores.fill(self.inputs.feeds, slot)
+        self._serve(slot)
+        self._use(slot)
+        self.stores.close()
+        self._note_levels(slot + 1)
+
+    def done(self) -> Dispatch:
+        """Return every slot."""
         return Dispatch(
             self.given, self.units, self.unmet, self.why, self.device_wh, self.store_wh, self.stores.wasted_wh
         )

@@ -33,6 +33,12 @@ class Stores:
         self.direct_wh = 0.0
         self.wasted_wh = 0.0
 
+    def read(self, level_wh: Sequence[float | None]) -> None:
+        """Go on from levels that were read; what a store holds beyond the plan stays a reserve nobody counts on."""
+        for store, level in enumerate(level_wh):
+            if level is not None:
+                self.level[store] = min(self.level[store], level)
+
     def outlet_wh(self) -> float:
         """Return what the stores can give, at O."""
         return sum(level * eta for level, eta in zip(self.level, self._eta_out, strict=True))

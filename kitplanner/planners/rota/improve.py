@@ -19,5 +19,13 @@ def improve(search: Search, least_load: float) -> None:
         Proven least greatest share of one's own minutes [-].
     """
     energy, loads, shape = EnergyPasses(search, least_load), LoadPasses(search, least_load), ShapePasses(search)
-    for stage in (energy.fill, energy.trim, loads.level, loads.even, shape.turn_round, shape.join):
+    for aim, stage in (
+        ("unmet", energy.fill),
+        ("excess", energy.trim),
+        ("greatest_load", loads.level),
+        ("spread", loads.even),
+        ("unpopular", shape.turn_round),
+        ("handovers", shape.join),
+    ):
+        search.begin(aim)
         search.run(stage)

@@ -37,7 +37,7 @@ class LoadPasses(Passes):
                 stuck.clear()
             else:
                 stuck.add(person)
-            self.search.report("load", self.greatest(), self.least_load)
+            self.search.report()
 
     def _relieve(self, person: int, load: float) -> bool:
         """Move some of one person's turning to others so that the greatest load of the two falls."""

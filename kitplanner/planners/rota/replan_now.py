@@ -63,7 +63,7 @@ def spared_heat(problem: RotaProblem, now: Now) -> RotaProblem:
 def shortfall_wh(plan: Plan, rota: Rota, now: Now) -> float:
     """Return how much less the stores that were read hold than the adopted rota and its charging would have left there.
 
-    sum over stores read of planned level - level read, at O; negative where they hold more
+    sum over stores read of max(0, planned level - level read), at O; more than planned is a reserve
 
     Parameters
     ----------
@@ -84,7 +84,7 @@ def shortfall_wh(plan: Plan, rota: Rota, now: Now) -> float:
     levels = charging_table(plan, rota_bouts(plan, rota), rota.slot_min).levels
     slot = ((now.day - 1) * DAY_MIN + now.minute) // levels.slot_min
     return sum(
-        float(levels.stores_wh[store.id][slot]) - store_wh(store, now.store_fractions[store.id])
+        max(0.0, float(levels.stores_wh[store.id][slot]) - store_wh(store, now.store_fractions[store.id]))
         for store in plan.stores
         if store.id in now.store_fractions
     )

@@ -126,7 +126,8 @@ class RotaAnswer(Struct, frozen=True, kw_only=True):
     """A whole rota: bouts, charging table, what stays unmet and why, levels, and the judge's findings.
 
     `evening` are the evenings at whose lights-out no phone or radio, or no lamp, is ready (rule "evening");
-    `wasted_wh` is energy made at S that found every store full.
+    `wasted_wh` is energy made at S that found every store full. Without `has_charging` the search was stopped before
+    the table was made: unmet use and margin are then the search's own figures, not yet told by device.
     """
 
     solution: RotaSolution
@@ -138,3 +139,4 @@ class RotaAnswer(Struct, frozen=True, kw_only=True):
     violations: tuple[Violation, ...]
     evening: tuple[Violation, ...] = ()
     wasted_wh: float = 0.0
+    has_charging: bool = True

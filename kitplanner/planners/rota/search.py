@@ -3,13 +3,15 @@
 from __future__ import annotations
 
 import time
-from collections.abc import Callable
+from collections.abc import Callable, Mapping
 from contextlib import suppress
 from dataclasses import dataclass, field
 
 from kitplanner.planners.rota.draft import Draft
 from kitplanner.planners.rota.result import RotaProgress
-from kitplanner.planners.rota.value import Value, value_of
+from kitplanner.planners.rota.value import MWH_PER_WH, Value, value_of
+
+_TELL_EVERY_STEPS = 10
 
 
 class SearchEndedError(Exception):
@@ -30,6 +32,10 @@ class Search:
         Steps that may be spent.
     seconds : float
         Ceiling on time [s].
+    bounds : mapping of str to float
+        Proven bound of an aim, where one is known.
+    aim : str
+        The aim at work.
     """
 
     draft: Draft
@@ -42,6 +48,8 @@ class Search:
     steps: int = 0
     cut_off: bool = False
     began: float = field(default_factory=time.monotonic)
+    bounds: Mapping[str, float] = field(default_factory=dict)
+    aim: str = "unmet"
     value: Value = field(init=False)
 
     def __post_init__(self) -> None:
@@ -66,6 +74,8 @@ class Search:
             self.cut_off = True
             raise SearchEndedError
         self.steps += 1
+        if self.steps % _TELL_EVERY_STEPS == 0:
+            self.report()
 
     def keep_if_better(self, mark: int) -> bool:
         """Keep the changes since a mark if they improve the rota, else undo them."""
@@ -77,10 +87,35 @@ class Search:
         self.draft.rollback(mark)
         return False
 
-    def report(self, stage: str, value: float, bound: float) -> None:
-        """Tell the caller where the search is."""
-        seconds = time.monotonic() - self.began
-        self.progress(RotaProgress(seconds=seconds, steps=self.steps, stage=stage, value=value, bound=bound))
+    def report(self) -> None:
+        """Tell the caller where the search is: the aim at work, its value and its bound."""
+        self.progress(
+            RotaProgress(
+                seconds=time.monotonic() - self.began,
+                steps=self.steps,
+                stage=self.aim,
+                value=self._value_at(self.aim),
+                bound=self.bounds.get(self.aim, 0.0),
+            )
+        )
+
+    def _value_at(self, aim: str) -> float:
+        value = self.value
+        by_aim = {
+            "unmet": value.unmet_mwh[-1] / MWH_PER_WH,
+            "margin": value.margin_mwh / MWH_PER_WH,
+            "excess": value.excess_steps * self.step_wh,
+            "greatest_load": value.greatest_load,
+            "spread": value.spread,
+            "unpopular": float(value.unpopular),
+            "handovers": float(value.bouts),
+        }
+        return by_aim.get(aim, 0.0)
+
+    def begin(self, aim: str) -> None:
+        """Turn to another aim and say so."""
+        self.aim = aim
+        self.report()
 
     def attempt(self, change: Callable[..., bool], *args: int) -> bool:
         """Try one change: `change(*args)` returns False where it could not be made."""

@@ -60,9 +60,14 @@ class WalkAndImprove:
         def over() -> bool:
             return effort.cancelled() or time.monotonic() - began > effort.seconds
 
+        def tell(stage: str) -> None:
+            seconds = time.monotonic() - began
+            effort.progress(RotaProgress(seconds=seconds, steps=0, stage=stage, value=0.0, bound=0.0))
+
+        tell("bounds")
         problem = build(plan)
         limits = bounds(problem, over)
-        effort.progress(RotaProgress(seconds=time.monotonic() - began, steps=0, stage="bounds", value=0.0, bound=0.0))
+        tell("first_rota")
         locked = locked_bouts(problem, plan)
         draft = best_start(problem, limits, locked, over)
         search = Search(
@@ -73,6 +78,11 @@ class WalkAndImprove:
             effort.cancelled,
             effort.progress,
             began=began,
+            bounds={
+                "unmet": float(limits.unmet_wh[-1]) if len(limits.unmet_wh) else 0.0,
+                "margin": limits.margin_wh,
+                "greatest_load": limits.greatest_load,
+            },
         )
         search.cut_off = over()
         if not search.cut_off and not _solved_exactly(problem, search, locked):

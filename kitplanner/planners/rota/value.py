@@ -13,7 +13,7 @@ from kitplanner.planners.rota.problem import RotaProblem
 FloatArray = npt.NDArray[np.float64]
 
 # Energies are compared to the milliwatt-hour; less is rounding.
-_MWH = 1000.0
+MWH_PER_WH = 1000.0
 _LEAST_STEP_FRACTION = 0.005
 
 
@@ -85,8 +85,8 @@ def value_of(draft: Draft, step_wh: float, changed: int = 0) -> Value:
     able = problem.allowance > 0
     excess = excess_wh(draft, float(unmet[-1]) + margin)
     return Value(
-        unmet_mwh=tuple(round(each * _MWH) for each in unmet),
-        margin_mwh=round(margin * _MWH),
+        unmet_mwh=tuple(round(each * MWH_PER_WH) for each in unmet),
+        margin_mwh=round(margin * MWH_PER_WH),
         excess_steps=int(np.ceil(max(0.0, excess) / step_wh - 1e-6)),
         greatest_load=round(float(relative.max(initial=0.0)), 9),
         spread=round(float(relative[able].std()) if able.any() else 0.0, 9),

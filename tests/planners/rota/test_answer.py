@@ -22,6 +22,7 @@ from kitplanner.planners.rota.answer import (
 )
 from kitplanner.planners.rota.result import RotaAnswer
 from kitplanner.planners.rota.solver import Effort, WalkAndImprove
+from kitplanner.report.wording_rota import verdict_lines
 
 DEMOS = ("household", "camp", "shelter")
 
@@ -199,3 +200,34 @@ def test_locks_that_contradict_each_other_are_named() -> None:
     assert "overlap" in {row.rule for row in found}
     loose = replace(second, locked=False)
     assert locked_violations(replace(plan, rota=Rota(id="rota", bouts=(first, loose)))) == ()
+
+
+def test_a_stopped_search_still_answers_and_says_that_the_table_is_missing(monkeypatch):
+    plan = new_plan("shelter")
+    monkeypatch.setattr("kitplanner.planners.rota.answer.GRACE_S", 0.0)
+    answer = rota_answer(plan, Effort(cancelled=lambda: True))
+    assert not answer.has_charging
+    assert answer.solution.cut_off
+    assert answer.charging == ()
+    assert answer.violations == ()
+    unmet = next(row for row in answer.solution.objectives if row.name == "unmet")
+    assert answer.unmet_wh == unmet.value > 0.0
+    assert any("charging table was not made" in line for line in verdict_lines(plan, answer))
+    assert adopt(answer, plan, work=1)(plan).rota.charging == ()
+
+
+def test_a_table_made_within_the_grace_comes_although_the_search_was_stopped(monkeypatch):
+    monkeypatch.setattr("kitplanner.planners.rota.answer.GRACE_S", 60.0)
+    answer = rota_answer(new_plan("household"), Effort(cancelled=lambda: True))
+    assert answer.has_charging
+    assert answer.charging
+
+
+def test_every_stage_tells_how_far_it_is():
+    told = []
+    rota_answer(new_plan("camp"), Effort(progress=told.append))
+    stages = list(dict.fromkeys(moment.stage for moment in told))
+    assert stages == ["bounds", "first_rota", "unmet", "excess", "greatest_load", "spread", "unpopular", "handovers"]
+    load = next(moment for moment in told if moment.stage == "greatest_load")
+    assert load.value >= load.bound > 0.0
+    assert max(moment.steps for moment in told) > 0

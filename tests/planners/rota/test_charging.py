@@ -12,8 +12,8 @@ from msgspec import structs
 
 from kitplanner.plan.files import read_plan
 from kitplanner.plan.records import Block, ChargingPoint, Device, OtherSource, Plan, Station, Store, Window
-from kitplanner.planners.rota.charging import ChargingResult, charging_table
-from kitplanner.planners.rota.charging_dispatch import Dispatch, dispatch
+from kitplanner.planners.rota.charging import ChargingResult, StoresRead, charging_table
+from kitplanner.planners.rota.charging_dispatch import ChargingStoppedError, Dispatch, dispatch
 from kitplanner.planners.rota.charging_inputs import charging_inputs
 from kitplanner.planners.rota.check import judge
 from kitplanner.planners.rota.need import need_curves
@@ -454,3 +454,23 @@ def check_solved(plan: Plan) -> None:
     solution = WalkAndImprove().solve(plan, Effort(work=200))
     result = charging_table(plan, solution.bouts, solution.slot_min)
     assert judge(plan, as_rota(solution.bouts, result.charging, solution.slot_min)) == ()
+
+
+def test_the_table_goes_on_from_the_level_that_was_read() -> None:
+    """3 W from 18 to 19 on 10 Wh: 7 Wh after day 1; read at a tenth of it all, 1 Wh, day 2 lacks 2 Wh after 20 min."""
+    lamp = Device(id="lamp", name="Lamp", use_wh_per_day=3.0, use_windows=window("18:00", "19:00"), priority=2)
+    plan = plan_of(lamp, store=bank(10.0, nominal_wh=10.0), days=2)
+    assert charging_table(plan, (), 5).unmet_wh == 0.0
+    store = plan.stores[0].id
+    result = charging_table(plan, (), 5, read=StoresRead(minute=1440 + 600, fractions={store: 0.1}))
+    assert result.unmet_wh == pytest.approx(2.0)
+    assert [(use.day, use.start_min, use.why) for use in result.unmet] == [(2, 1100, "store empty")]
+    assert result.levels.stores_wh[store][(1440 + 600) // 5] == pytest.approx(1.0)
+    more = charging_table(plan, (), 5, read=StoresRead(minute=1440 + 600, fractions={store: 1.0}))
+    assert more.levels.stores_wh[store][-1] == pytest.approx(4.0)
+
+
+def test_nobody_waits_for_a_table_that_was_stopped() -> None:
+    lamp = Device(id="lamp", name="Lamp", use_wh_per_day=3.0, use_windows=window("18:00", "19:00"))
+    with pytest.raises(ChargingStoppedError):
+        charging_table(plan_of(lamp, store=bank(10.0)), (), 5, cancelled=lambda: True)
