@@ -11,12 +11,12 @@ from kitplanner.planners.levers import levers
 from kitplanner.planners.levers_records import LeverRow, LeversResult
 from kitplanner.planners.levers_rota import rota_unmet_wh
 from kitplanner.report.tables import aligned
-from kitplanner.report.wording import number as number_words
 from kitplanner.report.wording import percent
 from kitplanner.report.wording_levers import (
     ask_first_sentence,
     combination_sentence,
     lever_name,
+    short_number,
     value_words,
     verdict_sentence,
 )
@@ -64,7 +64,7 @@ def _what(plan: Plan, row: LeverRow) -> str:
 
 
 def _span(row: LeverRow) -> tuple[str, str]:
-    before = percent(row.from_value) if row.unit.startswith("of its") else number_words(row.from_value)
+    before = percent(row.from_value) if row.unit.startswith("of its") else short_number(row.from_value)
     return before, value_words(row.to, row.unit)
 
 

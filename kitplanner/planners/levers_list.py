@@ -130,7 +130,8 @@ def _device_levers(device: Device) -> Iterator[Lever]:
     def use(to: float) -> tuple[LeverChange, ...]:
         return (LeverChange(lever=key, to=to),)
 
-    yield Lever(key, now, use_steps(device), unit, use)
+    # Nothing left of a use is a row of its own below.
+    yield Lever(key, now, tuple(step for step in use_steps(device) if step > 0.0), unit, use)
     half_use = max(use_step(device), round(now / 2 / use_step(device)) * use_step(device))
     if least_use(device) <= half_use < now:
         yield Lever(f"half:{device.id}", now, (half_use,), unit, use)

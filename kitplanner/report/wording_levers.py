@@ -15,8 +15,12 @@ def lever_name(plan: Plan, lever: str) -> str:
     kind, _, target = lever.partition(":")
     name = _name_of(plan, target)
     match kind:
-        case "use" | "half" | "off":
-            return name
+        case "use":
+            return f"{name}, less use"
+        case "half":
+            return f"{name}, half the use"
+        case "off":
+            return f"{name}, left out"
         case "fewer" | "count":
             return f"{name}, number" if kind == "count" else f"{name}, half of them"
         case "minutes" | "minutes+units":
@@ -49,10 +53,10 @@ def value_words(value: float, unit: str) -> str:
     if unit.startswith("of its"):
         return f"{percent(value)} {unit}"
     words = unit.partition(",")[0]
-    return "1 day" if value == 1.0 and words == "days" else f"{_short(value)} {words}"
+    return "1 day" if value == 1.0 and words == "days" else f"{short_number(value)} {words}"
 
 
-def _short(value: float) -> str:
+def short_number(value: float) -> str:
     """Return a number with no more decimals than it has, up to two."""
     return number(value, next((places for places in (0, 1) if abs(value - round(value, places)) < 1e-9), 2))
 
@@ -67,12 +71,12 @@ def row_sentence(plan: Plan, row: LeverRow) -> str:
 
 
 def _from_words(row: LeverRow | ChangeRow) -> str:
-    return percent(row.from_value) if row.unit.startswith("of its") else _short(row.from_value)
+    return percent(row.from_value) if row.unit.startswith("of its") else short_number(row.from_value)
 
 
 def _with_units(plan: Plan, row: LeverRow) -> str:
     added = [change for change in row.changes if change.lever.startswith("units:") and change.lever != row.lever]
-    return "".join(f", with {_short(change.to)} of {_target_name(plan, change)}" for change in added)
+    return "".join(f", with {short_number(change.to)} of {_target_name(plan, change)}" for change in added)
 
 
 def _target_name(plan: Plan, change: LeverChange | ChangeRow) -> str:
@@ -85,11 +89,11 @@ def change_words(plan: Plan, row: ChangeRow) -> str:
     if kind == "use" and row.to == 0.0:
         return f"{name} off"
     if kind == "count":
-        return f"{_short(row.to)} of {_short(row.from_value)} {name}"
+        return f"{short_number(row.to)} of {short_number(row.from_value)} {name}"
     if kind == "units":
-        return f"{_short(row.to)} instead of {_short(row.from_value)} of {name}"
+        return f"{short_number(row.to)} instead of {short_number(row.from_value)} of {name}"
     if kind == "minutes":
-        return f"{name} up to {_short(row.to)} instead of {_short(row.from_value)} min a day"
+        return f"{name} up to {short_number(row.to)} instead of {short_number(row.from_value)} min a day"
     return f"{name} {value_words(row.to, row.unit)} instead of {_from_words(row)}"
 
 

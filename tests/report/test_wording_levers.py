@@ -31,7 +31,7 @@ def test_rows_say_from_what_to_what_and_whether_it_is_enough(shelter, answer):
     rows = {row.lever: row for row in answer.singles}
     assert (
         row_sentence(shelter, rows["half:C-D1"])
-        == "Resident phone, one top-up a day: from 6 to 3 Wh a day is not enough alone, 63 % covered."
+        == "Resident phone, one top-up a day, half the use: from 6 to 3 Wh a day is not enough alone, 63 % covered."
     )
     assert row_sentence(shelter, rows["source"]).endswith("from 0 to 687 Wh a day is enough, 100 % covered.")
     assert "to 60 min a day, with 3 of Pedal stand, enclosed is not" in row_sentence(
@@ -81,3 +81,10 @@ def test_verdicts(answer):
     assert verdict_sentence(answer) == "As given 51 % are covered; no cut alone is enough."
     fits = levers(read_plan(demo("camp")))
     assert verdict_sentence(fits) == "It fits already, 103 % covered; nothing has to change."
+
+
+def test_rows_of_one_device_are_told_apart_and_none_stands_twice(shelter, answer):
+    names = [lever_name(shelter, row.lever) for row in answer.singles if row.lever.partition(":")[2] == "C-D8"]
+    assert names == ["Children's tablet, less use", "Children's tablet, half the use", "Children's tablet, left out"]
+    ends = [row.to for row in answer.singles if row.lever.partition(":")[2] == "C-D8"]
+    assert len(set(ends)) == len(ends)
