@@ -240,6 +240,11 @@ QCheckBox::indicator, QAbstractItemView::indicator {{ width: {box}px; height: {b
     border-radius: 3px; background: {scheme.field}; }}
 QCheckBox::indicator:checked, QAbstractItemView::indicator:checked {{ image: url("{tick}"); }}
 QCheckBox::indicator:focus {{ border: 2px solid {scheme.accent}; }}
+QLineEdit {{ background: {scheme.field}; border: 1px solid {scheme.edge}; border-radius: 3px; padding: 0px 2px; }}
+QLineEdit:focus {{ border: 2px solid {scheme.accent}; padding: 0px 1px; }}
+QLineEdit:disabled {{ background: {scheme.panel}; }}
+QAbstractSpinBox QLineEdit, QAbstractSpinBox QLineEdit:focus, QComboBox QLineEdit {{ border: none; padding: 0px;
+    background: transparent; }}
 QSplitter::handle {{ background: {scheme.rule}; }}
 """
 

@@ -79,6 +79,7 @@ class BenchControls(QWidget):
         # What belongs together stands together; the slider alone takes the width.
         for row, pair in enumerate(((self.rpm, self.best), (self.fixed, self.amps)), start=2):
             line = QHBoxLayout()
+            line.setSpacing(10)
             for control in pair:
                 line.addWidget(control)
             line.addStretch(1)

@@ -9,7 +9,8 @@ from PySide6.QtWidgets import QVBoxLayout, QWidget
 from kitplanner.plan.records import Plan, Station
 from kitplanner.planners.bench import BenchError, bench_point, bench_sweep
 from kitplanner.planners.results import BenchPoint, BenchSweep
-from kitplanner.planners.stations import StationError, comfort_of
+from kitplanner.planners.station_error import StationError
+from kitplanner.planners.stations import comfort_of
 from kitplanner.report.wording import number
 from kitplanner.report.wording_bench import meter_sentence, point_sentence, sweep_sentence
 from kitplanner.ui.charts.chart_data import Mark
@@ -117,9 +118,13 @@ class BenchPage(AnswerPage):
         if plan is None or not self.isVisible():
             return
         station = self._station(plan)
+        self.controls.setVisible(station is not None)
         if station is None:
             self._say(
-                self.tr("No station of the plan is described by its parts; the bench needs its machine and stages.")
+                self.tr(
+                    "No station of this plan is described by its parts, and the bench needs its machine and stages. "
+                    "Choose “its parts” at “Described by” of a station, or look at the example: File, New from, Bench."
+                )
             )
             return
         amps = self.controls.asked_amps()

@@ -64,6 +64,8 @@ class BarPicture(QWidget):
         self.setAccessibleName(name)
         self.setFocusPolicy(Qt.FocusPolicy.StrongFocus)
         self.setSizePolicy(QSizePolicy.Policy.Expanding, QSizePolicy.Policy.Fixed)
+        # Nothing to stand on until the first answer.
+        self.hide()
 
     @property
     def bars(self) -> tuple[Bar, ...]:

@@ -44,6 +44,7 @@ _LEAST_TABLE_ROWS, _FAIR_TABLE_ROWS, _MOST_TABLE_ROWS = 3, 6, 14
 _FEW_TABLE_ROWS = 3
 _TABLE_SHARE = 0.5
 _MOST_COLUMN_CHARS = 34
+_FRAME_PX = 8
 _LEAST_FORM_LINES = 4
 
 
@@ -217,10 +218,10 @@ class SectionPanel(QWidget):
         remove.setShortcutContext(Qt.ShortcutContext.WidgetShortcut)
         remove.triggered.connect(self.remove_chosen)
         self.table.addAction(remove)
+        add_questions(self.table, self._editing)
         self.entry = SectionEntry(self.section.key, self._editing, self.table, self._view, self)
         self.entry.added.connect(self._on_added)
         self.entry.order_changed.connect(self._show_details)
-        add_questions(self.table, self._editing)
         self.table.setContextMenuPolicy(Qt.ContextMenuPolicy.ActionsContextMenu)
         self._hint = plain_label(translate("Sections", self.section.hint), wrap=True)
         self._hint.setContentsMargins(8, 4, 8, 4)
@@ -278,7 +279,7 @@ class SectionPanel(QWidget):
         assert self.table is not None
         head, bar = self.table.horizontalHeader(), self.table.horizontalScrollBar()
         row = self.table.verticalHeader().defaultSectionSize()
-        return head.sizeHint().height() + rows * row + bar.sizeHint().height() + 4
+        return head.sizeHint().height() + rows * row + bar.sizeHint().height() + _FRAME_PX
 
     def keep_split(self, state: QByteArray) -> None:
         """Take over where the user put the bar between table and form."""
@@ -290,8 +291,8 @@ class SectionPanel(QWidget):
         if self.table is None or self._is_split_kept:
             return
         whole = self._splitter.height()
-        others = self._button_row.sizeHint().height() + 8 + (self._hint.height() if self._hint.isVisible() else 0)
-        others += 0 if self.entry.isHidden() else self.entry.sizeHint().height() + 4
+        above = self._splitter.widget(0).layout()
+        others = 0 if above is None else above.minimumSize().height() - self.table.minimumHeight()
         count = self._model.rowCount()
         wanted = others + self._table_height(max(_FEW_TABLE_ROWS, min(count, _MOST_TABLE_ROWS)))
         fair = others + self._table_height(min(max(_FEW_TABLE_ROWS, count), _FAIR_TABLE_ROWS))

@@ -31,5 +31,5 @@ class SmallButton(QPushButton):
     def _needed(self) -> QSize:
         metrics = self.fontMetrics()
         arrow = 2 * metrics.averageCharWidth() if self.menu() is not None else 0
-        width = metrics.horizontalAdvance(self.text()) + 2 * metrics.averageCharWidth() + 8 + arrow
+        width = metrics.horizontalAdvance(self.text()) + 2 * metrics.averageCharWidth() + 4 + arrow
         return QSize(max(_LEAST_PX, width), max(_LEAST_PX, metrics.height() + 8))
