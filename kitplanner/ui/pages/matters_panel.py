@@ -109,7 +109,8 @@ class MattersFrame(QWidget):
         layout.addLayout(head)
         for widget in (self.sentence, self.picture, self.table, self.chosen):
             layout.addWidget(widget)
-        self.table.hide()
+        for part in (self.toggle, self.picture, self.table, self.chosen):
+            part.hide()
 
     def show_answer(self, plan: Plan, found: Sensitivity | None, why_none: str) -> None:
         """Show an answer, or say why there is none."""
@@ -219,9 +220,9 @@ class MattersPage(AnswerPage):
         wanted = []
         for device in sorted(plan.devices, key=lambda one: one.kind != "phone"):
             direct = [row for row in found.get(device.id, []) if row.route == "direct"]
-            row = typical_row(direct or found.get(device.id, []))
-            if row is not None:
-                self._rows[device.id] = row
+            typical = typical_row(direct or found.get(device.id, []))
+            if typical is not None:
+                self._rows[device.id] = typical
                 wanted.append((plain(device.name) or device.id, device.id))
         now = [(self.device.itemText(n), self.device.itemData(n)) for n in range(self.device.count())]
         if wanted != now:

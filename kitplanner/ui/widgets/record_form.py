@@ -128,9 +128,9 @@ class FieldRow(QWidget):
         layout.addWidget(self._problem)
         self.setFocusProxy(self.editor)
         asked = self.editor.line() if isinstance(self.editor, RefsEditor) else self.editor
-        for widget in (asked, self.label):
-            widget.setContextMenuPolicy(Qt.ContextMenuPolicy.CustomContextMenu)
-            widget.customContextMenuRequested.connect(self._on_menu)
+        for part in (asked, self.label):
+            part.setContextMenuPolicy(Qt.ContextMenuPolicy.CustomContextMenu)
+            part.customContextMenuRequested.connect(self._on_menu)
         self.recolour()
 
     @Slot(QPoint)
