@@ -23,8 +23,8 @@ from kitplanner.ui.menus import Handler, Menus
 from kitplanner.ui.panels.section_entry import ROW_ACTIONS
 from kitplanner.ui.panels.sections_pane import SectionsPane
 from kitplanner.ui.station_chain import StationChain
-from kitplanner.ui.understanding import Understanding
 from kitplanner.ui.table_actions import TableActions
+from kitplanner.ui.understanding import Understanding
 from kitplanner.ui.view_settings import ViewSettings
 from kitplanner.ui.widgets.plain import restyle_labels
 from kitplanner.ui.widgets.recovery_band import RecoveryBand
