@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from types import MappingProxyType
+
 from kitplanner.plan.edits_levers import LeverChange
 from kitplanner.plan.records import Plan
 from kitplanner.planners.levers_records import ChangeRow, Character, Combination, LeverRow, LeversResult
@@ -10,34 +12,31 @@ from kitplanner.report.wording import energy, listed, minutes, number, percent, 
 _ASK_FIRST = "Minutes, volunteers and stations are only counted here: ask the people first, and nobody at 0 is asked."
 
 
+_LEVER_NAMES = MappingProxyType(
+    {
+        "use": "{name}, less use",
+        "half": "{name}, half the use",
+        "off": "{name}, left out",
+        "fewer": "{name}, half of them",
+        "count": "{name}, number",
+        "minutes": "minutes a day of {name}",
+        "minutes+units": "minutes a day of {name}",
+        "volunteers": "more adults at {name}",
+        "volunteers+units": "more adults at {name}",
+        "units": "more of {name}",
+        "source": "another source into the stores",
+        "days": "days to get through",
+        "start": "start charge of {name}",
+        "stores": "more of {name}",
+    }
+)
+
+
 def lever_name(plan: Plan, lever: str) -> str:
     """Return what a lever works on, as the first words of a line."""
     kind, _, target = lever.partition(":")
-    name = _name_of(plan, target)
-    match kind:
-        case "use":
-            return f"{name}, less use"
-        case "half":
-            return f"{name}, half the use"
-        case "off":
-            return f"{name}, left out"
-        case "fewer" | "count":
-            return f"{name}, number" if kind == "count" else f"{name}, half of them"
-        case "minutes" | "minutes+units":
-            return f"minutes a day of {name}"
-        case "volunteers" | "volunteers+units":
-            return f"more adults at {name}"
-        case "units":
-            return f"more of {name}"
-        case "source":
-            return "another source into the stores"
-        case "days":
-            return "days to get through"
-        case "start":
-            return f"start charge of {name}"
-        case "stores":
-            return f"more of {name}"
-    return plain(lever)
+    words = _LEVER_NAMES.get(kind)
+    return plain(lever) if words is None else words.format(name=_name_of(plan, target))
 
 
 def _name_of(plan: Plan, target: str) -> str:

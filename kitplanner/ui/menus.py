@@ -44,6 +44,7 @@ FILE = (
     _RULE,
     Item("print_effort", QT_TRANSLATE_NOOP("Menus", "&Print effort table…"), Key.Print),
     Item("pdf_effort", QT_TRANSLATE_NOOP("Menus", "Effort table as P&DF…"), "Ctrl+Shift+P"),
+    Item("print_rota", QT_TRANSLATE_NOOP("Menus", "Print ro&ta…")),
     _RULE,
     Item("quit", QT_TRANSLATE_NOOP("Menus", "&Quit"), "Ctrl+Q"),
 )

@@ -123,11 +123,14 @@ class VerdictStrip(QFrame):
         The user wants the lists for before, in and after an outage.
     problems_requested()
         The user wants the plan's problems.
+    fit_requested()
+        The user wants to know what would make the plan fit.
     """
 
     where_requested = Signal(QWidget)
     ready_requested = Signal()
     problems_requested = Signal()
+    fit_requested = Signal()
     ready = False
 
     def __init__(self, parent: QWidget | None = None) -> None:
@@ -144,6 +147,7 @@ class VerdictStrip(QFrame):
         self.where = SmallButton(self.tr("Why…"))
         self.be_ready = SmallButton(self.tr("Be ready…"))
         self.problems = SmallButton("")
+        self.fit = SmallButton(self.tr("What would make it fit…"))
         self._said = ("", "")
         self._row = QBoxLayout(QBoxLayout.Direction.LeftToRight)
         self._row.setSpacing(14)
@@ -173,6 +177,7 @@ class VerdictStrip(QFrame):
         line.setSpacing(5)
         for button, help_, slot in (
             (self.problems, self.tr("List the problems of the plan, each with a way to its field"), self._on_problems),
+            (self.fit, self.tr("Every change alone, then the mildest together"), self._on_fit),
             (self.where, self.tr("Where do these numbers come from?"), self._on_where),
             (self.be_ready, self.tr("Warning received, dark hours, power is back, closing down"), self._on_ready),
         ):
@@ -185,6 +190,10 @@ class VerdictStrip(QFrame):
     @Slot()
     def _on_problems(self) -> None:
         self.problems_requested.emit()
+
+    @Slot()
+    def _on_fit(self) -> None:
+        self.fit_requested.emit()
 
     @Slot()
     def _on_where(self) -> None:
@@ -201,6 +210,8 @@ class VerdictStrip(QFrame):
         has_answer = results is not None and results.balance is not None and not results.has_errors
         self.where.setVisible(has_answer)
         self.be_ready.setVisible(has_answer)
+        balance = results.balance if results is not None else None
+        self.fit.setVisible(has_answer and balance is not None and balance.verdict == "short")
 
     def set_answers(self, plan: Plan, results: Results | None) -> None:
         """Show the verdict of a plan."""

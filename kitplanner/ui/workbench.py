@@ -22,6 +22,7 @@ from kitplanner.ui.focus_ring import FocusRing
 from kitplanner.ui.menus import Handler, Menus
 from kitplanner.ui.panels.section_entry import ROW_ACTIONS
 from kitplanner.ui.panels.sections_pane import SectionsPane
+from kitplanner.ui.rota_links import RotaLinks
 from kitplanner.ui.station_chain import StationChain
 from kitplanner.ui.table_actions import TableActions
 from kitplanner.ui.understanding import Understanding
@@ -57,6 +58,7 @@ class Workbench(QSplitter):
         self.chain = StationChain(window.energy_line, self)
         self.view = ViewSettings(self._settings, self)
         self.understanding = Understanding(window, self)
+        self.rota_links = RotaLinks(window, self)
         self.menus = Menus(window, self._document.stack, self._handlers())
         self.setChildrenCollapsible(False)
         self.addWidget(self.sections)
@@ -128,6 +130,7 @@ class Workbench(QSplitter):
             "to_table": self._focus_table,
             "to_line": self._window.energy_line.setFocus,
             **self.understanding.handlers(),
+            **self.rota_links.handlers(),
             "keys": self._show_keys,
             "about": self._show_about,
         }
@@ -145,6 +148,7 @@ class Workbench(QSplitter):
         self.sections.section_chosen.connect(self._on_section_chosen)
         self.answers.page_chosen.connect(self._on_page_chosen)
         self.answers.page_loaded.connect(self._on_page_loaded)
+        self.answers.page_loaded.connect(self.rota_links.page_loaded)
         self.tables.rows_taken.connect(self.sections.show_section)
         self.files.recent_changed.connect(self._show_recent)
         self.menus.new_requested.connect(self.files.start_new)

@@ -66,7 +66,20 @@ def keys_text(bar: QMenuBar) -> str:
     lines.append(
         QCoreApplication.translate("About", "In the energy line: left and right walk, Enter opens what is shown.")
     )
+    lines += ["", QCoreApplication.translate("About", "On the rota board:"), *(f"    {line}" for line in board_keys())]
     return "\n".join(lines)
+
+
+def board_keys() -> tuple[str, ...]:
+    """Return the keys of the rota board, one sentence each."""
+    translate = QCoreApplication.translate
+    return (
+        translate("About", "Insert adds a turn. With none chosen, arrows choose one; Home and End the first and last."),
+        translate("About", "Ctrl+arrows choose another turn. Left and right move the chosen one in time."),
+        translate("About", "Up and down hand it to the next row. Shift+left and Shift+right change its end."),
+        translate("About", "Enter opens its form, H hands it over, S swaps two people, L locks it, Delete removes it."),
+        translate("About", "Escape lets go of what is dragged or chosen. Plus and minus change the width of a day."),
+    )
 
 
 def plain_words(action: QAction) -> str:

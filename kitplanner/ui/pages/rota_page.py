@@ -54,7 +54,7 @@ class RotaPage(AnswerPage):
         super().__init__(self.tr("Rota"), parent)
         self.desk, self.hand = RotaDesk(self), BoardHand(self)
         self.tasks = RotaTasks(self.desk, self.hand, self)
-        self.verdict, self.state = plain_label(size="title", bold=True), plain_label()
+        self.verdict, self.state = plain_label(bold=True), plain_label()
         self.told = plain_label()
         self.board, self.table, self.legend = RotaBoard(self.hand), BoutsTable(self.hand), BoardLegend()
         self.work_line = RotaWorkLine()
@@ -111,11 +111,11 @@ class RotaPage(AnswerPage):
             self.work_line,
             self.choices_row,
             self.told,
-            self.legend,
         ):
             self.column.addWidget(widget)
-        self.column.setSpacing(8)
+        self.column.setSpacing(5)
         self.column.addWidget(self.stack, 1)
+        self.column.addWidget(self.legend)
         for title, part in (
             (self.tr("Broken rules"), self.broken),
             (self.tr("What cannot be met"), self.unmet),

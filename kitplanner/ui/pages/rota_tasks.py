@@ -100,16 +100,17 @@ class RotaTasks(QObject):
     @Slot()
     def print_rota(self) -> None:
         """Show the wall rota as it will be printed."""
-        rota_export.print_rota(self._window, self._desk.plan, self._proposed())
+        rota_export.print_rota(self._window, self._desk.plan, self.proposed())
 
-    def _proposed(self) -> RotaAnswer | None:
+    def proposed(self) -> RotaAnswer | None:
+        """Return the proposal where it is shown."""
         return self._desk.answer if self._desk.is_proposal else None
 
     @Slot(QAction)
     def export(self, action: QAction) -> None:
         """Write what a menu line says: CSV or calendars, with names or without."""
         kind = str(action.data())
-        rota = rota_export.rota_of(self._desk.plan, self._proposed())
+        rota = rota_export.rota_of(self._desk.plan, self.proposed())
         if rota is None:
             return
         export = rota_export.export_csv if kind.startswith("csv") else rota_export.export_calendars

@@ -34,7 +34,7 @@ def rota_state(plan: Plan, rota: Rota | None) -> str:
 
 def progress_words(moment: RotaProgress) -> str:
     """Return how far a search is: steps, value and bound of the aim at work."""
-    stage = "greatest_load" if moment.stage == "load" else str(moment.stage)
+    stage = str(moment.stage)
     aim = aim_words(stage) if stage in get_args(ObjectiveName) else stage.replace("_", " ")  # type: ignore[arg-type]
     text = translate("RotaPage", "step {steps}, {aim}").format(steps=moment.steps, aim=aim)
     if not moment.value and not moment.bound:

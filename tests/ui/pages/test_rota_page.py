@@ -22,11 +22,13 @@ from kitplanner.session.document import PlanDocument
 from kitplanner.session.rota_run import Ask, Levered, RefusedError, find_levers, fitting_charging
 from kitplanner.ui import theme
 from kitplanner.ui.pages import rota_export
+from kitplanner.ui.pages.plain_table import TableData
 from kitplanner.ui.pages.rota_bout_form import BoutForm, HandOverDialog
 from kitplanner.ui.pages.rota_desk import same_charging
 from kitplanner.ui.pages.rota_levers_dialog import LeversDialog
 from kitplanner.ui.pages.rota_page import RotaPage
 from kitplanner.ui.pages.rota_replan_dialog import ReplanDialog, ReplanResultDialog
+from kitplanner.ui.pages.rota_wrapped_table import WrappedTable
 from tests.ui.board.boards import small_plan
 
 
@@ -486,3 +488,17 @@ def test_rounding_is_no_other_charging_table(legal):
     assert same_charging(spells, nearly)
     assert not same_charging(spells, other)
     assert not same_charging(spells, spells[1:])
+
+
+def test_sentences_in_a_table_wrap_at_any_width_without_being_laid_out_for_ever(qtbot):
+    rows = tuple((f"aim {n}", "1.0", "0.5", "at most a little above the least possible " * (n + 1)) for n in range(8))
+    table = WrappedTable("Aims")
+    qtbot.addWidget(table)
+    table.set_data(TableData(("aim", "reached", "bound", "gap"), rows))
+    table.show()
+    high = {}
+    for width in (*range(900, 300, -37), *range(300, 900, 41)):
+        table.resize(width, table.sizeHint().height())
+        qtbot.wait(1)
+        high[width] = table.sizeHint().height()
+    assert high[min(high)] > high[max(high)]
