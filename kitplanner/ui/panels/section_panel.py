@@ -291,8 +291,9 @@ class SectionPanel(QWidget):
         if self.table is None or self._is_split_kept:
             return
         whole = self._splitter.height()
-        above = self._splitter.widget(0).layout()
-        others = 0 if above is None else above.minimumSize().height() - self.table.minimumHeight()
+        above = self._splitter.widget(0)
+        layout = None if above is None else above.layout()
+        others = 0 if layout is None else layout.minimumSize().height() - self.table.minimumHeight()
         count = self._model.rowCount()
         wanted = others + self._table_height(max(_FEW_TABLE_ROWS, min(count, _MOST_TABLE_ROWS)))
         fair = others + self._table_height(min(max(_FEW_TABLE_ROWS, count), _FAIR_TABLE_ROWS))
