@@ -21,7 +21,10 @@ APT_LINE = (
     "apt-get install libegl1 libgl1 libglib2.0-0 libdbus-1-3 libfontconfig1 libxkbcommon0 libxcb-cursor0 "
     "libxcb-icccm4 libxcb-keysyms1 libxcb-shape0 libxcb-xkb1 libxkbcommon-x11-0"
 )
-WITHOUT_SCREEN = "kitplanner effort, balance, rota, levers, bench and print (see kitplanner --help)"
+WITHOUT_SCREEN = (
+    "kitplanner effort PLAN, kitplanner balance PLAN, kitplanner rota PLAN, kitplanner bench PLAN STATION, "
+    "and on paper kitplanner print PLAN effort -o FILE.pdf"
+)
 
 
 def unsound_pair(qt_version: str, python_version: tuple[int, int]) -> str | None:
