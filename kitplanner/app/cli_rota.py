@@ -24,7 +24,15 @@ from kitplanner.plan.files import write_bytes, write_plan
 from kitplanner.plan.records import Plan
 from kitplanner.planners.rota.answer import adopt, edition_of, locked_violations, rota_answer, saved_rota
 from kitplanner.planners.rota.remarks import remarks
-from kitplanner.planners.rota.result import RotaAnswer, RotaBout, RotaCharge, RotaProgress, Violation
+from kitplanner.planners.rota.result import (
+    RotaAnswer,
+    RotaBout,
+    RotaCharge,
+    RotaObjective,
+    RotaProgress,
+    UnmetUse,
+    Violation,
+)
 from kitplanner.planners.rota.solver import DEFAULT_WORK, Effort
 from kitplanner.report.calendar import CalendarOf, calendar_files
 from kitplanner.report.tables import aligned, pairs
@@ -152,29 +160,8 @@ def rota_json(plan: Plan, answer: RotaAnswer) -> dict[str, object]:
         "unmet_margin_wh": answer.unmet_margin_wh,
         "wasted_wh": answer.wasted_wh,
         "evening": [_finding_json(found) for found in answer.evening],
-        "unmet": [
-            {
-                "device": row.device,
-                "priority": row.priority,
-                "day": row.day,
-                "start": clock(row.start_min),
-                "unmet_wh": row.wh,
-                "why": row.why,
-            }
-            for row in answer.unmet
-        ],
-        "objective": [
-            {
-                "name": row.name,
-                "value": row.value,
-                "unit": row.unit,
-                "bound": row.bound,
-                "gap": row.gap,
-                "proved": row.proved,
-                "relaxed": row.relaxed,
-            }
-            for row in solution.objectives
-        ],
+        "unmet": [_unmet_json(row) for row in answer.unmet],
+        "objective": [_aim_json(row) for row in solution.objectives],
         "made_wh": solution.made_wh,
         "bound": solution.made_bound_wh,
         "gap_fraction": gap_fraction(solution),
@@ -184,6 +171,29 @@ def rota_json(plan: Plan, answer: RotaAnswer) -> dict[str, object]:
         "cut_off": solution.cut_off,
         "violations": [_finding_json(found) for found in answer.violations],
         "remarks": [remark.kind for remark in remarks(plan)],
+    }
+
+
+def _unmet_json(row: UnmetUse) -> dict[str, object]:
+    return {
+        "device": row.device,
+        "priority": row.priority,
+        "day": row.day,
+        "start": clock(row.start_min),
+        "unmet_wh": row.wh,
+        "why": row.why,
+    }
+
+
+def _aim_json(row: RotaObjective) -> dict[str, object]:
+    return {
+        "name": row.name,
+        "value": row.value,
+        "unit": row.unit,
+        "bound": row.bound,
+        "gap": row.gap,
+        "proved": row.proved,
+        "relaxed": row.relaxed,
     }
 
 
