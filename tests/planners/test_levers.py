@@ -247,3 +247,10 @@ def test_the_search_is_exact(parts, missing):
         assert found is not None
         assert found.cost == pytest.approx(min(costs))
         assert found.wh >= missing
+
+
+def test_what_belongs_to_the_evening_is_never_left_out():
+    plan = read_plan(demo("shelter"))
+    assert "off:C-D8" in {row.lever for row in levers(plan).singles}
+    devices = tuple(replace(each, evening=True) if each.id == "C-D8" else each for each in plan.devices)
+    assert "off:C-D8" not in {row.lever for row in levers(replace(plan, devices=devices)).singles}

@@ -260,3 +260,17 @@ def test_the_past_is_untouched_and_every_answer_is_legal(camp, house, data):
     for bout in set(answer.bouts) - set(plan.rota.bouts):
         assert not begun(bout, now) or minutes_of_day(bout.end) == now.minute // 5 * 5
     assert broken_rules(answer) == []
+
+
+def test_a_posted_turn_that_lacks_its_watcher_gets_one(camp):
+    watched = next(bout for bout in camp.rota.bouts if bout.watcher and bout.day == 2)
+    bouts = tuple(replace(bout, watcher=None) if bout is watched else bout for bout in camp.rota.bouts)
+    answer = replan(replace(camp, rota=replace(camp.rota, bouts=bouts)), Now(day=1, minute=0))
+    assert broken_rules(answer) == []
+
+
+def test_posted_turns_beyond_what_a_station_may_do_in_a_day_fall_away(camp):
+    stations = tuple(replace(station, daily_min=20) for station in camp.stations)
+    answer = replan(replace(camp, stations=stations), Now(day=1, minute=0))
+    assert broken_rules(answer) == []
+    assert len(answer.bouts) < len(camp.rota.bouts)
