@@ -7,12 +7,13 @@ import threading
 from collections.abc import Callable
 from concurrent.futures import CancelledError, Future, ThreadPoolExecutor
 
-from PySide6.QtCore import QObject, Qt, QTimer, Signal, Slot
+from PySide6.QtCore import QObject, QTimer, Signal, Slot
 
 from kitplanner.plan.records import Plan
 from kitplanner.planners import pipeline
 from kitplanner.planners.pipeline import Results
 from kitplanner.session.document import PlanDocument
+from kitplanner.session.mailbox import Mailbox
 
 DEBOUNCE_MS = 100
 
@@ -44,7 +45,6 @@ class Recompute(QObject):
 
     results_changed = Signal(object)
     busy_changed = Signal(bool)
-    _finished = Signal(object)
 
     def __init__(
         self,
@@ -69,7 +69,8 @@ class Recompute(QObject):
         self._timer.setSingleShot(True)
         self._timer.setInterval(debounce_ms)
         self._timer.timeout.connect(self._start_slow)
-        self._finished.connect(self._on_finished, Qt.ConnectionType.QueuedConnection)
+        self._mail = Mailbox(self)
+        self._mail.arrived.connect(self._on_finished)
         document.plan_changed.connect(self._on_plan_changed)
 
     @property
@@ -129,17 +130,18 @@ class Recompute(QObject):
         self._token = token = threading.Event()
         generation = self._generation
         future = self._executor.submit(self._run_slow, self._plan, self._results, token.is_set)
-        signal = self._finished
+        post = self._mail.open()
 
         def hand_over(done: Future[Results]) -> None:
-            # Runs in the worker: only a queued signal leaves it.
+            # Runs in the worker: it knows the queue, never this object.
             fault = CancelledError() if done.cancelled() else done.exception()
-            signal.emit(_Finished(generation, None if fault is not None else done.result(), fault))
+            post(_Finished(generation, None if fault is not None else done.result(), fault))
 
         future.add_done_callback(hand_over)
 
     @Slot(object)
     def _on_finished(self, finished: _Finished) -> None:
+        self._mail.done()
         if finished.generation != self._generation or self._is_closed:
             return
         self._set_busy(False)

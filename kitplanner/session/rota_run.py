@@ -16,12 +16,13 @@ from dataclasses import dataclass
 from typing import TYPE_CHECKING
 
 from msgspec import structs
-from PySide6.QtCore import QObject, Qt, QTimer, Signal, Slot
+from PySide6.QtCore import QObject, QTimer, Signal, Slot
 
 from kitplanner.domain.units import clock
 from kitplanner.plan.edits import EditError
 from kitplanner.plan.edits_replan import DAY_MIN, Now
 from kitplanner.plan.records import ChargeSpell, Plan
+from kitplanner.session.mailbox import Mailbox
 
 if TYPE_CHECKING:
     from kitplanner.planners.levers_records import LeversResult
@@ -270,8 +271,6 @@ class Errand(QObject):
     progressed = Signal(object)
     refused = Signal(str)
     busy_changed = Signal(bool)
-    _told = Signal(object)
-    _ended = Signal(object)
 
     def __init__(self, parent: QObject | None = None) -> None:
         super().__init__(parent)
@@ -283,8 +282,8 @@ class Errand(QObject):
         self._patience.setSingleShot(True)
         self._patience.setInterval(PATIENCE_MS)
         self._patience.timeout.connect(self._give_up_waiting)
-        self._told.connect(self._on_told, Qt.ConnectionType.QueuedConnection)
-        self._ended.connect(self._on_ended, Qt.ConnectionType.QueuedConnection)
+        self._mail = Mailbox(self)
+        self._mail.arrived.connect(self._on_arrived)
         # A partial keeps the thread's owner alive until then; a bound method would not.
         self.destroyed.connect(functools.partial(_close, self._thread))
 
@@ -301,13 +300,13 @@ class Errand(QObject):
         self._thread.token.set()
         self._thread.token = token = threading.Event()
         self._number += 1
-        number, told, ended = self._number, self._told, self._ended
-        future = self._thread.submit(job, Ask(token, lambda moment: _emit(told, (number, moment))))
+        number, post = self._number, self._mail.open()
+        future = self._thread.submit(job, Ask(token, lambda moment: post((number, moment))))
 
         def hand_over(done: Future[object]) -> None:
-            # Runs in the worker: only a queued signal leaves it.
+            # Runs in the worker: it knows the queue, never this object.
             fault = CancelledError() if done.cancelled() else done.exception()
-            _emit(ended, _Ended(number, None if fault is not None else done.result(), fault))
+            post(_Ended(number, None if fault is not None else done.result(), fault))
 
         future.add_done_callback(hand_over)
         self._set_busy(True)
@@ -337,12 +336,17 @@ class Errand(QObject):
         self._set_busy(False)
 
     @Slot(object)
-    def _on_told(self, told: tuple[int, object]) -> None:
-        number, moment = told
+    def _on_arrived(self, value: object) -> None:
+        if isinstance(value, _Ended):
+            self._mail.done()
+            self._on_ended(value)
+        elif isinstance(value, tuple):
+            self._on_told(*value)
+
+    def _on_told(self, number: int, moment: object) -> None:
         if number == self._number and self._is_busy and not self._thread.token.is_set():
             self.progressed.emit(moment)
 
-    @Slot(object)
     def _on_ended(self, ended: _Ended) -> None:
         if ended.number != self._number or self._is_closed:
             return
@@ -365,12 +369,3 @@ class Errand(QObject):
 def _is_sentence(fault: ValueError) -> bool:
     """Return whether a fault is one that speaks to the user: refusals of this module and of edits."""
     return isinstance(fault, (RefusedError, EditError))
-
-
-def _emit(signal: object, value: object) -> None:
-    """Emit from the worker; an errand whose window is gone has nobody to tell."""
-    try:
-        signal.emit(value)  # type: ignore[attr-defined]
-    except RuntimeError as error:
-        if "deleted" not in str(error):
-            raise

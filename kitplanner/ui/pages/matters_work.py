@@ -15,6 +15,7 @@ from kitplanner.planners.results import EffortRow
 from kitplanner.planners.sensitivity import coverage_sensitivity, joined_people
 from kitplanner.planners.sensitivity_minutes import minutes_sensitivity
 from kitplanner.planners.sensitivity_records import Sensitivity
+from kitplanner.session.mailbox import Mailbox
 
 
 class Wanted(Struct, frozen=True):
@@ -53,13 +54,13 @@ class MattersWork(QObject):
     """
 
     answered = Signal(object)
-    _finished = Signal(object)
 
     def __init__(self, parent: QObject | None = None) -> None:
         super().__init__(parent)
         self._running = False
         self._waiting: Wanted | None = None
-        self._finished.connect(self._on_finished)
+        self._mail = Mailbox(self)
+        self._mail.arrived.connect(self._on_finished)
 
     @property
     def is_busy(self) -> bool:
@@ -77,19 +78,14 @@ class MattersWork(QObject):
         if wanted is None:
             return
         self._running = True
-        signal = self._finished
-
-        def report(done: Future[Answered]) -> None:
-            # The window may have gone meanwhile; then nobody waits.
-            with suppress(RuntimeError):
-                signal.emit(done)
-
+        post = self._mail.open()
         executor = ThreadPoolExecutor(max_workers=1, thread_name_prefix="kitplanner-matters")
-        executor.submit(answer, wanted).add_done_callback(report)
+        executor.submit(answer, wanted).add_done_callback(post)
         executor.shutdown(wait=False)
 
     @Slot(object)
     def _on_finished(self, done: Future[Answered]) -> None:
+        self._mail.done()
         self._running = False
         error = done.exception()
         if error is not None:
