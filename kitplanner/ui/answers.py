@@ -65,6 +65,10 @@ PAGES: tuple[PageEntry, ...] = (
 )
 
 
+# How often and how many times to look whether the first page has its chart; a second at most.
+_LOOK_MS, _MOST_LOOKS = 20, 50
+
+
 class Answers(QTabWidget):
     """Tabs of answer pages.
 
@@ -91,6 +95,7 @@ class Answers(QTabWidget):
         self._pages: dict[str, Any] = {}
         self._bands: dict[str, CautionBand] = {}
         self._waiting: list[PageEntry] = []
+        self._patience = 0
         # A timer of its own ends with the tabs; a single shot would still come after the window is gone.
         self._timer = QTimer(self)
         self._timer.setSingleShot(True)
@@ -141,6 +146,11 @@ class Answers(QTabWidget):
         if not self._waiting:
             self.pages_loaded.emit()
             return
+        if self._patience and self.isVisible() and not getattr(self._pages.get(self.current), "is_loaded", True):
+            # The page in sight gets its chart before the hidden ones are built.
+            self._patience -= 1
+            self._timer.start(_LOOK_MS)
+            return
         entry = self._waiting.pop(0)
         page: Any = entry.make()
         self._pages[entry.key] = page
@@ -152,8 +162,9 @@ class Answers(QTabWidget):
         band.show_cautions(cautions_for(self._plan, entry.key))
         self._bands[entry.key] = band
         page.set_answers(self._plan, self._results)
+        self._patience = _MOST_LOOKS if len(self._pages) == 1 else 0
         self.page_loaded.emit(entry.key)
-        self._timer.start()
+        self._timer.start(0)
 
     @Slot(int)
     def _on_current_changed(self, _index: int) -> None:

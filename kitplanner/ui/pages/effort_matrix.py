@@ -34,6 +34,8 @@ ROW_ROLE = Qt.ItemDataRole.UserRole + 1
 SHADE_ROLE = Qt.ItemDataRole.UserRole + 2
 SHADE_LOW_MIN, SHADE_HIGH_MIN = 60.0, 600.0
 
+_NAMES_STEP_PX = 16
+
 
 class Matrix(Struct, frozen=True):
     """Names down and across, and a row or None for each cell."""
@@ -278,7 +280,9 @@ class EffortMatrix(QTableView):
         header.setMinimumSectionSize(round(bold.horizontalAdvance("00 h 00 min") + 14))
         names = QFontMetricsF(self.verticalHeader().font())
         widest = max((names.horizontalAdvance(name) for name in self._model.matrix.devices), default=0.0) + 24
-        self.verticalHeader().setFixedWidth(round(min(widest, max(0.34 * self.width(), 120.0))))
+        # In steps, so that a scroll bar of the page that comes and goes moves no column.
+        share = _NAMES_STEP_PX * (0.34 * self.width() // _NAMES_STEP_PX)
+        self.verticalHeader().setFixedWidth(round(min(widest, max(share, 120.0))))
 
     @Slot()
     def _on_current_changed(self) -> None:
