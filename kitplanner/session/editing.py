@@ -11,6 +11,7 @@ from PySide6.QtCore import QObject, Signal
 
 from kitplanner.plan.edits import (
     Edit,
+    EditError,
     Path,
     add_record,
     chain,
@@ -95,7 +96,12 @@ class Editing(QObject):
             value = parse_value(spec, text, self.names(spec.refs_to) if spec.refs_to else {})
         except FieldTextError as error:
             return self._keep_draft(path, text, str(error))
-        if value == get_value(self.plan, path) and _same_kind(value, get_value(self.plan, path)):
+        try:
+            old = get_value(self.plan, path)
+        except EditError as error:
+            # The record went, by undo or in a table, while its form still held the text.
+            return self._keep_draft(path, text, str(error))
+        if value == old and _same_kind(value, old):
             self._drop_draft(path)
             return None
         edit = edit_of_entry(path, value)

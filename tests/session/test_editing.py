@@ -187,3 +187,10 @@ def test_every_section_and_part_can_be_made():
     for kind in STAGE_KINDS:
         assert new_part(kind, "s1").id == "s1"
         assert FIELDS[kind]
+
+
+def test_a_text_for_a_record_that_went_is_kept_and_refused_in_a_sentence(editing):
+    spec = field("person", "age")
+    problem = editing.enter(("people", "nobody", "age"), spec, "41")
+    assert problem is not None
+    assert "nobody" in problem
