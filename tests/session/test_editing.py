@@ -189,7 +189,8 @@ def test_every_section_and_part_can_be_made():
         assert FIELDS[kind]
 
 
-def test_a_text_for_a_record_that_went_is_kept_and_refused_in_a_sentence(editing):
+def test_a_text_for_a_record_that_went_is_kept_and_refused_in_a_sentence(camp):
+    _, editing = camp
     spec = field("person", "age")
     problem = editing.enter(("people", "nobody", "age"), spec, "41")
     assert problem is not None
